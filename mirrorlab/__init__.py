@@ -1,0 +1,1 @@
+"""Mirrorlab: mirrors, the group their reflections generate, and what each trade makes of it."""
