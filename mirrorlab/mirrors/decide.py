@@ -1,0 +1,121 @@
+"""From an arrangement to its finding."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from fractions import Fraction
+from functools import lru_cache
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from mirrorlab.mirrors.closure import Array, Fractions, Part, decide_part, split
+from mirrorlab.mirrors.counting import chambers_in_region
+from mirrorlab.mirrors.exact import definiteness
+from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
+from mirrorlab.mirrors.flags import cycle_flags, pair_flags
+from mirrorlab.mirrors.group import ReflectionGroup, build_group, family_of, generic_point
+from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
+from mirrorlab.mirrors.tube import Tube, describe_tube
+
+if TYPE_CHECKING:
+    from mirrorlab.mirrors.arrangement import Arrangement
+
+
+def buildable(gram: Array, fractions: Fractions) -> int | None:
+    """Rank of the Gram matrix, part by part, or None when no planes have these angles."""
+    rank = 0
+    for members in split(fractions):
+        inner = [[fractions[i][j] for j in members] for i in members]
+        own, semidefinite = definiteness(gram[np.ix_(members, members)], inner)
+        if not semidefinite:
+            return None
+        rank += own
+    return rank
+
+
+def decide(arrangement: Arrangement) -> Finding:
+    """What an arrangement does, with evidence."""
+    fractions, gram, normals = arrangement.fractions, arrangement.gram, arrangement.normals
+    letters = "".join(arrangement.letters)
+    parts = tuple(decide_part(members, gram, fractions, normals, letters) for members in split(fractions))
+    rank = sum(part.rank for part in parts)
+    cycles = cycle_flags(fractions, letters)
+    flags = (*pair_flags(arrangement.angles, arrangement.pairs, letters), *cycles)
+    evidence = gather_evidence(arrangement, parts)
+
+    def finish(
+        kind: str,
+        group: ReflectionGroup | None = None,
+        between: int | None = None,
+        crystallographic: bool | None = False,
+        tube: Tube | None = None,
+    ) -> Finding:
+        def suggest() -> tuple[Suggestion, ...]:
+            if kind == CLOSED or arrangement.given_normals or arrangement.size < 2:
+                return ()
+            return nearest_closing(arrangement.angles, arrangement.size, arrangement.pair_names, verdict)
+
+        def flip() -> tuple[Suggestion, ...]:
+            if kind in (CLOSED, SUBDIVIDED) or arrangement.given_normals:
+                return ()
+            return supplements(arrangement.angles, arrangement.pair_names, verdict)
+
+        return Finding(
+            kind, rank, group, between, crystallographic, flags, tube, evidence, parts, suggest, flip
+        )
+
+    if normals is None or not all(part.semidefinite for part in parts):
+        return finish(UNBUILDABLE, crystallographic=None)
+    dependent = any(part.singular for part in parts)
+    if not all(part.finite for part in parts):
+        if dependent and not arrangement.given_normals:
+            inside = np.zeros(normals.shape[1])
+            return finish(TUBE, tube=describe_tube(list(parts), fractions, normals, cycles, None, inside))
+        return finish(OPEN)
+    roots = np.concatenate([part.roots for part in parts if part.roots is not None])
+    inside = generic_point(roots, region_frame(normals, dependent))
+    group = build_group(roots, inside, normals, arrangement.letters)
+    if dependent and not arrangement.given_normals:
+        tube = describe_tube(list(parts), fractions, normals, cycles, group, inside)
+        return finish(TUBE, crystallographic=tube.tiling in ("once", "subdivided"), tube=tube)
+    between = None if dependent else _between(parts, fractions, normals, inside)
+    kind = SUBDIVIDED if between is not None and between > 1 else CLOSED
+    return finish(kind, group, between, group.crystallographic)
+
+
+def region_frame(normals: Array, dependent: bool) -> Array:
+    """Rows along which a point of the typed region has positive coordinates: its corners, where it has them."""
+    if dependent:
+        return np.eye(normals.shape[1])
+    corners = np.linalg.pinv(normals).T
+    return np.asarray(corners / np.linalg.norm(corners, axis=1, keepdims=True))
+
+
+def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array, inside: Array) -> int:
+    counts = []
+    for part in parts:
+        mine = list(part.members)
+        known = [[fractions[i][j] or Fraction(0) for j in mine] for i in mine]
+        roots = part.roots
+        if roots is None:
+            msg = "chambers are counted for finite groups"
+            raise ValueError(msg)
+        counts.append(chambers_in_region(family_of(roots), known, normals[mine], roots, inside))
+    return math.prod(counts)
+
+
+@lru_cache(maxsize=2048)
+def verdict(fractions: Sequence[Fraction]) -> Verdict:
+    """Kind, families, order, chambers between and symbol of a set of exact angles."""
+    from mirrorlab.angles import AngleSettings
+    from mirrorlab.mirrors.arrangement import Arrangement
+
+    wide = AngleSettings(max_denominator=max(360, *(f.denominator for f in fractions)))
+    finding = Arrangement.from_angles(fractions, wide).finding()
+    symbols = finding.point_group
+    name = " × ".join(finding.families)
+    if symbols is not None:
+        name = f"{symbols.hermann_mauguin} ({name})"
+    return finding.kind, finding.families, finding.order, finding.chambers_between, name

@@ -1,0 +1,84 @@
+"""A finding as one sentence for a person."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from mirrorlab.mirrors.finding import Finding
+
+COUNTS = ("No", "One", "Two", "Three", "Four", "Five", "Six", "Seven", "Eight")
+
+
+def sentence(finding: Finding) -> str:
+    """The finding as one sentence, or two where a way out is known."""
+    return {
+        "closed": _closed,
+        "closed-subdivided": _closed,
+        "open": _open,
+        "tube": _tube,
+        "unbuildable": _unbuildable,
+    }[finding.kind](finding) + _way_out(finding)
+
+
+def _group(finding: Finding) -> str:
+    symbols = finding.point_group
+    families = " × ".join(finding.families)
+    return families if symbols is None else f"{symbols.hermann_mauguin} ({families})"
+
+
+def _lattice(finding: Finding) -> str:
+    if finding.crystallographic:
+        return "a lattice can carry it"
+    pairs = [flag.letters for flag in finding.flags if flag.code == "no-lattice"]
+    return "no lattice can carry it" + (f", because of {' and '.join(pairs)}" if pairs else "")
+
+
+def _closed(finding: Finding) -> str:
+    order, mirrors, between = finding.order, finding.mirror_count, finding.chambers_between
+    numbers = f"{order:,} images, {mirrors} mirror{'' if mirrors == 1 else 's'}"
+    head = f"Closes as {_group(finding)}: {numbers}"
+    if between is not None and between > 1:
+        head = (
+            f"Finite but cut up: {_group(finding)}, {numbers}, {between:,} chambers between the typed mirrors"
+        )
+    return f"{head}; {_lattice(finding)}."
+
+
+def _open(finding: Finding) -> str:
+    broken = finding.evidence.broken
+    return f"Never closes: {broken[0]}." if broken else "Never closes."
+
+
+def _tube(finding: Finding) -> str:
+    tube = finding.tube
+    assert tube is not None
+    how = {
+        "once": f"the images tile the {tube.fills} once",
+        "subdivided": f"the images tile the {tube.fills}, with the region between the mirrors subdivided",
+        "overlap": "the images overlap without end",
+        "undetermined": f"the distances between the mirrors decide whether the images tile the {tube.fills}",
+    }[tube.tiling]
+    if tube.chambers is not None and tube.chambers > 1:
+        how += f" into {tube.chambers} chambers"
+    plane = f" ({tube.plane_group})" if tube.plane_group else ""
+    moved = ""
+    if tube.moved is not None:
+        families = " × ".join(tube.moved_families)
+        symbol = tube.moved_point_group
+        name = families if symbol is None else f"{symbol.hermann_mauguin} ({families})"
+        moved = f"; moved through one {'line' if finding.rank == 2 else 'point'} the same planes make {name}"
+    head = "Parallel mirrors" if finding.rank == 1 else "A tube" if finding.rank == 2 else "A closed cell"
+    return f"{head}: {how}{plane}{moved}."
+
+
+def _unbuildable(finding: Finding) -> str:
+    return "Cannot be built: no planes have these angles."
+
+
+def _way_out(finding: Finding) -> str:
+    if not finding.supplements:
+        return ""
+    way = finding.supplements[0]
+    pair = way.changed_pairs[0]
+    return f" With {pair} read as {way.degrees_of(pair)} it closes as {way.name}."

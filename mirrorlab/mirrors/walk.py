@@ -1,0 +1,97 @@
+"""The walk over an orbit: every image once, without a search for repeats.
+
+It starts from a point of the chamber. From an image, mirror i leads on when the image lies on its inner side;
+the new image is kept only when i is the last wall that it lies behind, so each has one parent and is met once.
+
+References
+----------
+.. [1] D. M. Snow, Weyl group orbits, ACM Trans. Math. Software 16 (1990) 94–108.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+Ints = NDArray[np.int64]
+Progress = Callable[[int, int], object]
+
+
+class OrbitCancelled(Exception):
+    """The progress callback asked to stop."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Walk:
+    """The walk over an orbit: for each image its parent, the mirror that led there, and its depth.
+
+    `levels` holds (start, stop) for each depth; the images of one depth stand together.
+    """
+
+    points: Array
+    parent: Ints
+    mirror: Ints
+    depth: Ints
+    levels: tuple[tuple[int, int], ...]
+
+
+def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = None) -> Walk:
+    """Walk over the orbit of a point of the closed chamber.
+
+    Parameters
+    ----------
+    simple : ndarray, shape (r, d)
+        Unit inward normals of the chamber's walls.
+    dominant : ndarray, shape (d,)
+        A point with no negative height; heights within 1e-9 of zero count as zero.
+    size : int
+        Number of images, known from the group's order and the stabiliser.
+    progress : callable, optional
+        Called with (done, size) after each depth; a return of False cancels.
+    """
+    rank, d = simple.shape
+    two_gram = 2 * simple @ simple.T
+    heights = simple @ dominant
+    small = 1e-9 * max(1.0, float(np.abs(heights).max(initial=0)))
+    heights[np.abs(heights) <= small] = 0
+    points = np.empty((size, d))
+    parent = np.zeros(size, dtype=np.int64)
+    mirror = np.full(size, -1, dtype=np.int64)
+    depth = np.zeros(size, dtype=np.int64)
+    points[0] = dominant
+    levels = [(0, 1)]
+    frontier = heights[None, :]
+    half = 0.5 * float(heights[heights > 0].min(initial=np.inf))
+    while True:
+        start, stop = levels[-1]
+        new_heights, new_parent, new_mirror = [], [], []
+        for i in range(rank):
+            ahead = np.flatnonzero(frontier[:, i] > half)
+            image = frontier[ahead] - frontier[ahead, i, None] * two_gram[i]
+            kept = (image[:, i + 1 :] > -half).all(axis=1)
+            new_heights.append(image[kept])
+            new_parent.append(ahead[kept] + start)
+            new_mirror.append(np.full(int(kept.sum()), i, dtype=np.int64))
+        frontier = np.concatenate(new_heights) if new_heights else np.empty((0, rank))
+        if not len(frontier):
+            break
+        end = stop + len(frontier)
+        if end > size:
+            msg = f"the walk met more than the {size} images that the order allows"
+            raise AssertionError(msg)
+        parent[stop:end] = np.concatenate(new_parent)
+        mirror[stop:end] = np.concatenate(new_mirror)
+        depth[stop:end] = len(levels)
+        old, normals = points[parent[stop:end]], simple[mirror[stop:end]]
+        points[stop:end] = old - 2 * (old * normals).sum(axis=1, keepdims=True) * normals
+        levels.append((stop, end))
+        if progress is not None and progress(end, size) is False:
+            raise OrbitCancelled
+    if levels[-1][1] != size:
+        msg = f"the walk met {levels[-1][1]} images, not the {size} that the order gives"
+        raise AssertionError(msg)
+    return Walk(points, parent, mirror, depth, tuple(levels))
