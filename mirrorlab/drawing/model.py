@@ -71,7 +71,7 @@ class Line:
 
 @dataclass(frozen=True, slots=True)
 class Points:
-    """Points of one role; `keys` has one entry a point. `symbol` is a trade mark such as "2", "3", "-4", "m"."""
+    """Points of one role; `keys` has one entry a point. `symbol` is a trade mark: "2", "3", "-4", "m" …"""
 
     role: Role
     positions: NDArray[np.float64]
