@@ -1,0 +1,178 @@
+"""The bench: one trade's place at the right of the window, and the list of those there are.
+
+How a bench is written
+----------------------
+A bench is a widget about 300 px wide that only watches the document. It lives in a package of its own
+(``mirrorlab/desktop/crystal/``) and its class is named in `BENCHES` below; nothing else needs to know it::
+
+    class CrystalBench(Bench):
+        title = "Crystal"
+
+        def __init__(self, document, parent=None):
+            super().__init__(document, parent)
+            layout = QVBoxLayout(self.body)              # the body scrolls when it is higher than the window
+            layout.addWidget(...)
+            document.arrangement_changed.connect(self.refresh)
+
+        def table_model(self):
+            return self._rows                            # a RowsModel: columns, sorting and keys come with it
+
+        def pictures(self):
+            return {"Stereogram": stereogram_of}         # callable(document) -> Drawing or QWidget
+
+- A bench is imported and built when it is shown for the first time, or when one of the pictures that its
+  slot names is chosen. So its slot names its pictures, and its package imports nothing heavy at the top.
+- `refresh` does nothing while the bench is hidden: override `refresh`, connect the document's signals to
+  `watch`, and it is called when the bench is in sight, and again when it comes into sight after a change.
+- A picture is made by a pure function of the document. It returns a `Drawing`, which the stage shows and
+  keeps in step, or a `QWidget` that watches the document itself (a traced view). It raises `NoPicture`
+  with one sentence where there is nothing to show; the stage shows that sentence in its place.
+- Undoable state of a trade is one frozen value: ``document.set_crystal(value, "change form")`` and
+  ``document.set_glass(value, "set opening", gesture="opening")``; read it back as ``document.crystal``.
+- Long work goes through ``document.work``, which shows progress and a cancel button in the status line.
+"""
+
+from __future__ import annotations
+
+import importlib
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, TypeAlias
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtGui import QShowEvent
+from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
+
+if TYPE_CHECKING:
+    from mirrorlab.desktop.document import Document
+    from mirrorlab.desktop.rows import RowsModel
+    from mirrorlab.drawing.model import Drawing
+
+PictureMaker: TypeAlias = "Callable[[Document], Drawing | QWidget]"
+
+
+class NoPicture(ValueError):
+    """There is nothing to show of this arrangement; the message is one sentence for the stage."""
+
+
+class Bench(QWidget):
+    """Base of every bench.
+
+    Attributes
+    ----------
+    title : str
+        The word on its tab.
+    document : Document
+        What it watches.
+    body : QWidget
+        Where a bench lays its widgets; it scrolls when it does not fit.
+
+    Signals
+    -------
+    rows_changed()
+        `table_model()` or `table_title()` now answer something else. A model that only resets its rows
+        need not emit it.
+    pictures_changed()
+        `pictures()` has other names now.
+    picture_wanted(str)
+        Asks the stage to show the picture of that name.
+    says(str)
+        A sentence for the status line.
+    """
+
+    title = ""
+    rows_changed = Signal()
+    pictures_changed = Signal()
+    picture_wanted = Signal(str)
+    says = Signal(str)
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.document = document
+        self._stale = True
+        self.body = QWidget()
+        self.body.setObjectName("benchBody")
+        area = QScrollArea()
+        area.setObjectName("benchArea")
+        area.setFrameShape(QFrame.Shape.NoFrame)
+        area.setWidgetResizable(True)
+        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        area.setWidget(self.body)
+        outer = QVBoxLayout(self)
+        outer.setContentsMargins(0, 0, 0, 0)
+        outer.addWidget(area)
+
+    def table_model(self) -> RowsModel | None:
+        """The rows for the table along the bottom, or None when this bench has none."""
+        return None
+
+    def table_title(self) -> str:
+        """One short phrase above the table, e.g. "48 images"."""
+        return ""
+
+    def pictures(self) -> dict[str, PictureMaker]:
+        """The pictures this bench offers to the stage, by the name shown in the chooser."""
+        return {}
+
+    def refresh(self) -> None:
+        """Bring the widgets in step with the document. Called only while the bench is in sight."""
+
+    def watch(self) -> None:
+        """Slot for the document's signals: refresh now when in sight, else when it comes into sight."""
+        self._stale = True
+        if self.isVisible():
+            self._stale = False
+            self.refresh()
+
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        if self._stale:
+            self._stale = False
+            self.refresh()
+
+
+@dataclass(frozen=True, slots=True)
+class BenchSlot:
+    """One entry of the list of benches.
+
+    Attributes
+    ----------
+    title : str
+        The word on the tab.
+    place : str
+        ``"module:Class"``; imported on first use.
+    pictures : tuple of str
+        Names of the pictures it will offer, so that they can be chosen before the bench is loaded.
+    about : str
+        What it is for, as the tab's hint.
+    """
+
+    title: str
+    place: str
+    pictures: tuple[str, ...] = ()
+    about: str = ""
+
+    def build(self, document: Document, parent: QWidget | None = None) -> Bench:
+        """Import and build the bench."""
+        module, name = self.place.split(":")
+        made: Bench = getattr(importlib.import_module(module), name)(document, parent)
+        return made
+
+
+BENCHES: tuple[BenchSlot, ...] = (
+    BenchSlot(
+        "Points", "mirrorlab.desktop.points_bench:PointsBench", about="Seed, images, stabiliser and export"
+    ),
+    BenchSlot(
+        "Crystal",
+        "mirrorlab.desktop.crystal:CrystalBench",
+        pictures=("Stereogram", "Form"),
+        about="Point groups, positions, forms, planes and comparison",
+    ),
+    BenchSlot(
+        "Glass",
+        "mirrorlab.desktop.glass:GlassBench",
+        pictures=("Eye's view", "Assembly", "Panels"),
+        about="Assembly, images, tolerance and panels",
+    ),
+)
