@@ -16,6 +16,7 @@ from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
 from mirrorlab.mirrors.group import ReflectionGroup, build_group, family_of, generic_point
+from mirrorlab.mirrors.spelling import spell_walls
 from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
 
@@ -62,8 +63,13 @@ def decide(arrangement: Arrangement) -> Finding:
                 return ()
             return supplements(arrangement.angles, arrangement.pair_names, verdict)
 
+        def spell() -> tuple[str, ...]:
+            if group is None or normals is None:
+                return ()
+            return spell_walls(group, normals, arrangement.letters)
+
         return Finding(
-            kind, rank, group, between, crystallographic, flags, tube, evidence, parts, suggest, flip
+            kind, rank, group, between, crystallographic, flags, tube, evidence, parts, spell, suggest, flip
         )
 
     if normals is None or not all(part.semidefinite for part in parts):

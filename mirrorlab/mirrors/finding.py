@@ -103,6 +103,7 @@ class Finding:
     tube: Tube | None
     evidence: Evidence
     parts: tuple[Part, ...] = field(repr=False)
+    _spell: Callable[[], tuple[str, ...]] = field(repr=False)
     _suggest: Callable[[], tuple[Suggestion, ...]] = field(repr=False)
     _supplements: Callable[[], tuple[Suggestion, ...]] = field(repr=False)
 
@@ -146,6 +147,11 @@ class Finding:
         return self._suggest()
 
     @cached_property
+    def wall_words(self) -> tuple[str, ...]:
+        """For each wall of the true chamber its typed letter, or a word such as "ab(c)": c seen in b, that in a."""
+        return self._spell()
+
+    @cached_property
     def supplements(self) -> tuple[Suggestion, ...]:
         """Sets with one angle θ read as 180° − θ that close, when these do not."""
         return self._supplements()
@@ -186,6 +192,7 @@ class Finding:
                 "rotation_order": group.rotation_order,
                 "rotation_point_group": None if rotations is None else rotations.to_dict(),
                 "letters": list(group.letters),
+                "walls": dict(zip(group.letters, self.wall_words, strict=True)),
                 "simple_mirrors": group.simple.tolist(),
                 "cartan_matrix": group.cartan.tolist(),
                 "coxeter_matrix": group.coxeter_matrix.tolist(),
