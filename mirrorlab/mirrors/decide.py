@@ -15,7 +15,7 @@ from mirrorlab.mirrors.counting import chambers_in_region
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
-from mirrorlab.mirrors.group import ReflectionGroup, build_group, family_of, generic_point
+from mirrorlab.mirrors.group import SAME_MIRROR, ReflectionGroup, build_group, family_of, generic_point
 from mirrorlab.mirrors.spelling import spell_walls
 from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
@@ -82,13 +82,38 @@ def decide(arrangement: Arrangement) -> Finding:
         return finish(OPEN)
     roots = np.concatenate([part.roots for part in parts if part.roots is not None])
     inside = generic_point(roots, region_frame(normals, dependent))
-    group = build_group(roots, inside, normals, arrangement.letters)
     if dependent and not arrangement.given_normals:
+        group = build_group(roots, inside, normals, arrangement.letters)
         tube = describe_tube(list(parts), fractions, normals, cycles, group, inside)
         return finish(TUBE, crystallographic=tube.tiling in ("once", "subdivided"), tube=tube)
     between = None if dependent else _between(parts, fractions, normals, inside)
     kind = SUBDIVIDED if between is not None and between > 1 else CLOSED
+    if kind == SUBDIVIDED:
+        groups = [
+            build_group(roots, point, normals, arrangement.letters)
+            for point in corner_points(roots, region_frame(normals, dependent))
+        ]
+        group = max(groups, key=lambda g: sum(letter in arrangement.letters for letter in g.letters))
+    else:
+        group = build_group(roots, inside, normals, arrangement.letters)
     return finish(kind, group, between, group.crystallographic)
+
+
+def corner_points(roots: Array, corners: Array) -> list[Array]:
+    """Points of the region's chambers that stand in its corners, off every mirror: these share typed walls.
+
+    Each starts on a corner and moves towards the next ones by less than the distance to any mirror not met.
+    """
+    count = len(corners)
+    turns = [[(start + way * k) % count for k in range(count)] for start in range(count) for way in (1, -1)]
+    points = []
+    for turn in turns:
+        point = corners[turn[0]]
+        for k in turn[1:]:
+            rooms = np.abs(roots @ point)
+            point = point + 0.3 * float(rooms[rooms > SAME_MIRROR].min()) * corners[k]
+        points.append(point)
+    return points
 
 
 def region_frame(normals: Array, dependent: bool) -> Array:
