@@ -1,0 +1,163 @@
+"""Group symbols set as the trade prints them: overbars, slanted letters, lowered indices."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable
+from dataclasses import dataclass
+from html import escape
+
+from PySide6.QtCore import QPointF, QSize, Qt
+from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPaintEvent, QPen
+from PySide6.QtWidgets import QSizePolicy, QWidget
+
+from mirrorlab.desktop.theming import theming
+
+LOWERED = 0.66
+"""Size of an index beside its letter, about what book printing takes."""
+
+BAR_GAP = 0.07
+BAR_WEIGHT = 0.055
+"""Gap above a digit and thickness of its overbar, as parts of the font's height."""
+
+
+@dataclass(frozen=True, slots=True)
+class Run:
+    """A stretch of a symbol set one way."""
+
+    text: str
+    slanted: bool = False
+    barred: bool = False
+    lowered: bool = False
+
+
+def hermann_mauguin(symbol: str) -> tuple[Run, ...]:
+    """Runs of a Hermann–Mauguin symbol in plain characters, ``"m-3m"``; "-" bars the next number."""
+    runs = []
+    for bar, digits, letters, other in re.findall(r"(-?)(\d+)|([a-zA-Z]+)|(.)", symbol):
+        if digits:
+            runs.append(Run(digits, barred=bool(bar)))
+        elif letters:
+            runs.append(Run(letters, slanted=True))
+        else:
+            runs.append(Run(other))
+    return tuple(runs)
+
+
+def schoenflies(symbol: str) -> tuple[Run, ...]:
+    """Runs of a Schoenflies symbol: a slanted capital and a lowered rest, ``"Oh"``, ``"D5h"``."""
+    if not symbol:
+        return ()
+    head, rest = Run(symbol[0], slanted=True), symbol[1:]
+    return (head, Run(rest, lowered=True)) if rest else (head,)
+
+
+def families(names: Iterable[str]) -> tuple[Run, ...]:
+    """Runs of the product of families: ``("A1", "I2(5)")`` is A₁ × I₂(5)."""
+    runs: list[Run] = []
+    for name in names:
+        if runs:
+            runs.append(Run(" × "))
+        match = re.fullmatch(r"([A-Z])(\d+)(\(.*\))?", name)
+        if match is None:
+            runs.append(Run(name))
+            continue
+        runs += [Run(match[1], slanted=True), Run(match[2], lowered=True)]
+        if match[3]:
+            runs.append(Run(match[3]))
+    return tuple(runs)
+
+
+def as_html(runs: Iterable[Run]) -> str:
+    """Runs as rich text for a label."""
+    parts = []
+    for run in runs:
+        text = escape(run.text)
+        if run.slanted:
+            text = f"<i>{text}</i>"
+        if run.barred:
+            text = f'<span style="text-decoration:overline">{text}</span>'
+        if run.lowered:
+            text = f"<sub>{text}</sub>"
+        parts.append(text)
+    return "".join(parts)
+
+
+def as_spoken(runs: Iterable[Run]) -> str:
+    """Runs as words for a screen reader: "m bar 3 m"."""
+    return " ".join(f"bar {run.text}" if run.barred else run.text for run in runs)
+
+
+class SymbolText(QWidget):
+    """A symbol in large type, its overbars drawn at the right height.
+
+    Parameters
+    ----------
+    size : float
+        Points.
+    tint : str
+        Name of the `Theme` tint it is written in.
+    """
+
+    def __init__(self, size: float, tint: str = "text", parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._runs: tuple[Run, ...] = ()
+        self._size = size
+        self._tint = tint
+        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
+        theming().changed.connect(self.update)
+
+    def set_runs(self, runs: Iterable[Run]) -> None:
+        """Show another symbol; nothing at all hides the widget."""
+        self._runs = tuple(runs)
+        self.setVisible(bool(self._runs))
+        self.setAccessibleName(as_spoken(self._runs))
+        self.updateGeometry()
+        self.update()
+
+    @property
+    def runs(self) -> tuple[Run, ...]:
+        """What is shown."""
+        return self._runs
+
+    def _font(self, run: Run) -> QFont:
+        font = QFont(list(theming().theme.fonts.display))
+        font.setPointSizeF(self._size * (LOWERED if run.lowered else 1.0))
+        font.setItalic(run.slanted)
+        return font
+
+    def sizeHint(self) -> QSize:
+        metrics = QFontMetricsF(self._font(Run("")))
+        width = sum(QFontMetricsF(self._font(r)).horizontalAdvance(r.text) for r in self._runs)
+        return QSize(round(width + 0.12 * metrics.height()), round(metrics.height() * 1.12))
+
+    def minimumSizeHint(self) -> QSize:
+        return self.sizeHint()
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        painter = QPainter(self)
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        tint = QColor(getattr(theming().theme, self._tint))
+        whole = QFontMetricsF(self._font(Run("")))
+        base = (self.height() - whole.height()) / 2 + whole.ascent() + 0.05 * whole.height()
+        x = 0.0
+        for run in self._runs:
+            font = self._font(run)
+            metrics = QFontMetricsF(font)
+            painter.setFont(font)
+            painter.setPen(tint)
+            drop = 0.22 * whole.xHeight() + 0.1 * whole.ascent() if run.lowered else 0.0
+            painter.drawText(QPointF(x, base + drop), run.text)
+            wide = metrics.horizontalAdvance(run.text)
+            if run.barred:
+                top = base - metrics.tightBoundingRect(run.text).height() - BAR_GAP * whole.height()
+                weight = max(1.2, BAR_WEIGHT * whole.height())
+                pen = QPen(tint, weight)
+                pen.setCapStyle(Qt.PenCapStyle.FlatCap)
+                painter.setPen(pen)
+                inset = 0.06 * wide
+                painter.drawLine(
+                    QPointF(x + inset, top - weight / 2), QPointF(x + wide - inset, top - weight / 2)
+                )
+            x += wide
+        painter.end()
