@@ -151,7 +151,7 @@ def _flatten(panel: Panel, index: int, panels: Sequence[Panel]) -> FlatPanel:
     outline = np.asarray(panel.outline, dtype=float)
     normal = np.asarray(panel.normal, dtype=float)
     if len(outline) < 3 or len(panel.edges) != len(outline):
-        msg = f"panel {panel.letter}: {len(outline)} corners, {len(panel.edges)} sides named; needs one name a side"
+        msg = f"panel {panel.letter}: {len(outline)} corners but {len(panel.edges)} sides named"
         raise PanelError(msg)
     size = float(np.ptp(outline, axis=0).max())
     heights = (outline - outline[0]) @ normal

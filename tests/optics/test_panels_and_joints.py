@@ -57,7 +57,7 @@ def wedge(degrees, width=120.0, length=200.0):
 
 
 def corner(ab, ac, bc, size=150.0, cut=0.0):
-    """Three mirrors to a point, dihedral angles in degrees; `cut` is the part of each edge cut off at the tip."""
+    """Three mirrors to a point, angles in degrees; `cut` is the part of each edge cut off at the tip."""
     gram = -np.cos(np.radians([[180, ab, ac], [ab, 180, bc], [ac, bc, 180]]))
     normals = np.linalg.cholesky(gram)
     edges = {}
