@@ -1,1 +1,38 @@
+"""Assemblies of real mirrors: what they show, how exact they must be, and the panels to cut.
 
+Names load on first use, so that importing the package costs nothing.
+"""
+
+from __future__ import annotations
+
+import importlib
+
+_HOMES: dict[str, str] = {
+    # assemblies
+    "Assembly": "assembly",
+    "AssemblyError": "lengths",
+    "MirrorSpec": "mirror",
+    "ObjectPlace": "assembly",
+    "PRESETS": "mirror",
+    "Panel": "assembly",
+    "assembly_for": "build",
+    "assembly_from": "build",
+    "corner": "build_corner",
+    "parse_length": "lengths",
+    "tube": "build_tube",
+    "wedge": "build_wedge",
+}
+"""Public name to the module of this package that holds it."""
+
+__all__ = sorted(_HOMES)
+
+
+def __getattr__(name: str) -> object:
+    if name not in _HOMES:
+        msg = f"module {__name__!r} has no attribute {name!r}"
+        raise AttributeError(msg)
+    return getattr(importlib.import_module(f"{__name__}.{_HOMES[name]}"), name)
+
+
+def __dir__() -> list[str]:
+    return list(__all__)
