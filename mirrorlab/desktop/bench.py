@@ -35,11 +35,13 @@ A bench is a widget about 300 px wide that only watches the document. It lives i
 from __future__ import annotations
 
 import importlib
+import importlib.util
 from collections.abc import Callable
 from dataclasses import dataclass
+from pathlib import Path
 from typing import TYPE_CHECKING, TypeAlias
 
-from PySide6.QtCore import Qt, Signal
+from PySide6.QtCore import QIODevice, QSaveFile, Qt, Signal
 from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
 
@@ -66,6 +68,8 @@ class Bench(QWidget):
         What it watches.
     body : QWidget
         Where a bench lays its widgets; it scrolls when it does not fit.
+    exports_rows_as : str
+        Name of an export of the window that writes the rows better than `save_rows` does; "" for none.
 
     Signals
     -------
@@ -81,6 +85,7 @@ class Bench(QWidget):
     """
 
     title = ""
+    exports_rows_as = ""
     rows_changed = Signal()
     pictures_changed = Signal()
     picture_wanted = Signal(str)
@@ -110,6 +115,16 @@ class Bench(QWidget):
         """One short phrase above the table, e.g. "48 images"."""
         return ""
 
+    def table_note(self) -> str:
+        """Beside the title, e.g. which axes the coordinates are in; or why there are no rows."""
+        return ""
+
+    def save_rows(self, path: Path) -> None:
+        """Write all rows as CSV. A bench overrides it where its rows need a frame or units beside them."""
+        model = self.table_model()
+        if model is not None:
+            write_csv(path, model)
+
     def pictures(self) -> dict[str, PictureMaker]:
         """The pictures this bench offers to the stage, by the name shown in the chooser."""
         return {}
@@ -129,6 +144,25 @@ class Bench(QWidget):
         if self._stale:
             self._stale = False
             self.refresh()
+
+
+def write_csv(path: Path, model: RowsModel) -> None:
+    """Write a model's rows as CSV (RFC 4180), whole or not at all."""
+    import csv
+    import io
+
+    text = io.StringIO()
+    rows = csv.writer(text, lineterminator="\r\n")
+    for line in model.as_rows():
+        rows.writerow(line)
+    file = QSaveFile(str(path))
+    if not file.open(QIODevice.OpenModeFlag.WriteOnly):
+        msg = f"{path}: {file.errorString()}"
+        raise OSError(msg)
+    file.write(text.getvalue().encode())
+    if not file.commit():
+        msg = f"{path}: {file.errorString()}"
+        raise OSError(msg)
 
 
 @dataclass(frozen=True, slots=True)
@@ -176,3 +210,8 @@ BENCHES: tuple[BenchSlot, ...] = (
         about="Assembly, images, tolerance and panels",
     ),
 )
+
+
+def there(slots: tuple[BenchSlot, ...] = BENCHES) -> tuple[BenchSlot, ...]:
+    """The benches whose package is installed; a build for one trade may leave the other's out."""
+    return tuple(slot for slot in slots if importlib.util.find_spec(slot.place.split(":")[0]) is not None)

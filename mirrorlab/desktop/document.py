@@ -171,6 +171,7 @@ class Document(QObject):
         self._selection: Key | None = None
         self._paths: dict[int, Path] = {}
         self._gestures = 0
+        self._sheets = state.sheet
         self._make_orbit()
 
     @property
@@ -240,6 +241,41 @@ class Document(QObject):
         if name is not None:
             fields["name"] = name
         self.change(text, gesture, **fields)
+
+    def put_sheet(self, arrangement: Arrangement, name: str, path: Path | None = None, **fields: Any) -> None:
+        """Put another sheet in place: a sample, a family, a file. Undo brings the former one back."""
+        self._sheets += 1
+        if path is not None:
+            self._paths[self._sheets] = path
+        fields.setdefault("seed", fitted(self.seed, arrangement))
+        self.change(f"open {name}", arrangement=arrangement, name=name, sheet=self._sheets, **fields)
+        if path is not None:
+            self.undo_stack.setClean()
+
+    def saved_as(self, path: Path) -> None:
+        """The sheet now stands in that file."""
+        self._paths[self.state.sheet] = path
+        self.undo_stack.setClean()
+        self.name_changed.emit()
+
+    def add_mirror(self) -> None:
+        """One more mirror, at right angles to all others."""
+        old = self.arrangement
+        angles = dict(zip(old.pairs, old.angles, strict=True))
+        pairs = [(i, j) for i in range(old.size + 1) for j in range(i + 1, old.size + 1)]
+        made = Arrangement.from_angles([angles.get(pair, "90") for pair in pairs], self.settings.reading)
+        self.set_arrangement(made, f"add mirror {made.letters[-1]}")
+
+    def remove_mirror(self, index: int) -> None:
+        """Take a mirror away; the later ones move up by a letter."""
+        old = self.arrangement
+        if old.given_normals and old.normals is not None:
+            rows = [row for i, row in enumerate(old.normals) if i != index]
+            made = Arrangement.from_normals(rows, self.settings.reading)
+        else:
+            kept = [a for pair, a in zip(old.pairs, old.angles, strict=True) if index not in pair]
+            made = Arrangement.from_angles(kept, self.settings.reading)
+        self.set_arrangement(made, f"remove mirror {old.letters[index]}")
 
     def set_seed(self, seed: Seed, text: str = "seed", gesture: str = "") -> None:
         """Move the seed."""

@@ -4,9 +4,18 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QKeyEvent
-from PySide6.QtWidgets import QButtonGroup, QFrame, QHBoxLayout, QLabel, QPushButton, QSizePolicy, QWidget
+from PySide6.QtCore import QEvent, Qt, Signal
+from PySide6.QtGui import QKeyEvent, QKeySequence, QPainter, QPaintEvent
+from PySide6.QtWidgets import (
+    QButtonGroup,
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QLineEdit,
+    QPushButton,
+    QSizePolicy,
+    QWidget,
+)
 
 from mirrorlab.desktop.stylesheet import set_kind
 
@@ -20,6 +29,28 @@ def label(text: str = "", kind: str = "", wrap: bool = False) -> QLabel:
     if wrap:
         made.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Minimum)
     return made
+
+
+class Elided(QLabel):
+    """A label of one line that ends in "…" where there is no room, with the whole text as its hint."""
+
+    def __init__(self, text: str = "", kind: str = "") -> None:
+        super().__init__(text)
+        if kind:
+            set_kind(self, kind)
+        self.setTextFormat(Qt.TextFormat.PlainText)
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        painter = QPainter(self)
+        shown = self.fontMetrics().elidedText(self.text(), Qt.TextElideMode.ElideRight, self.width())
+        hint = self.text() if shown != self.text() else ""
+        if self.toolTip() != hint:
+            self.setToolTip(hint)
+        painter.setFont(self.font())
+        painter.setPen(self.palette().color(self.foregroundRole()))
+        painter.drawText(self.rect(), int(self.alignment()), shown)
+        painter.end()
 
 
 def button(text: str, kind: str = "", hint: str = "") -> QPushButton:
@@ -38,6 +69,21 @@ def rule() -> QFrame:
     set_kind(made, "rule")
     made.setFixedHeight(1)
     return made
+
+
+class Field(QLineEdit):
+    """A line to type in that leaves undo and redo to the document, so that they mean one thing everywhere."""
+
+    def event(self, event: QEvent) -> bool:
+        if event.type() == QEvent.Type.ShortcutOverride and isinstance(event, QKeyEvent) and undoes(event):
+            event.ignore()
+            return True
+        return super().event(event)
+
+
+def undoes(event: QKeyEvent) -> bool:
+    """Whether a key is that of undo or redo."""
+    return event.matches(QKeySequence.StandardKey.Undo) or event.matches(QKeySequence.StandardKey.Redo)
 
 
 class Segments(QWidget):

@@ -204,6 +204,12 @@ class RowsModel(QAbstractTableModel):
             place = np.array(sorted(range(self._count), key=lambda i: _rank(values[i])), dtype=np.intp)
         return place if order == Qt.SortOrder.AscendingOrder else place[::-1]
 
+    def as_rows(self) -> Iterator[list[str]]:
+        """Head and all rows as texts, in the order shown; floats read back to the same double."""
+        yield [c.title for c in self._columns]
+        for row in range(self._count):
+            yield [self._as_text(row, c, exact=True) for c in range(len(self._columns))]
+
     def as_lines(self, rows: Sequence[int] | None = None) -> Iterator[str]:
         """The table as tab-separated lines with its head; `rows` are places, None is all.
 
@@ -213,10 +219,10 @@ class RowsModel(QAbstractTableModel):
         for row in range(self._count) if rows is None else rows:
             yield "\t".join(self._as_text(row, c) for c in range(len(self._columns)))
 
-    def _as_text(self, row: int, column: int) -> str:
+    def _as_text(self, row: int, column: int, exact: bool = False) -> str:
         value = self.values(column)[self.source_row(row)]
         if isinstance(value, float | np.floating):
-            return f"{float(value):.10g}"
+            return repr(float(value)) if exact else f"{float(value):.10g}"
         show = self._columns[column].show
         return (show(value) if show else plain(value)).replace("−", "-")
 

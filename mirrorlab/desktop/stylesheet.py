@@ -43,6 +43,11 @@ def set_wrong(widget: QWidget, wrong: bool) -> None:
     _set(widget, "wrong", wrong)
 
 
+def set_live(widget: QWidget, live: bool) -> None:
+    """Mark a frame whose field has the keyboard."""
+    _set(widget, "live", live)
+
+
 def _set(widget: QWidget, name: str, value: object) -> None:
     if widget.property(name) != value:
         widget.setProperty(name, value)

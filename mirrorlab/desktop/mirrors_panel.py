@@ -1,0 +1,152 @@
+"""The mirrors at the left: their triangle, the reading of one pair, and the other ways in."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from PySide6.QtCore import QSignalBlocker
+from PySide6.QtWidgets import (
+    QComboBox,
+    QDoubleSpinBox,
+    QFormLayout,
+    QFrame,
+    QHBoxLayout,
+    QScrollArea,
+    QSpinBox,
+    QVBoxLayout,
+    QWidget,
+)
+
+from mirrorlab.angles import AngleSettings
+from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
+from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.reading import PairReading
+from mirrorlab.desktop.theming import theming
+from mirrorlab.desktop.triangle import Triangle
+from mirrorlab.desktop.ways_in import WaysIn
+
+NOTATIONS = (("degrees", "degrees"), ("pi", "fractions of π"), ("dms", "degrees, minutes, seconds"))
+MARGIN = 14
+
+
+class MirrorsPanel(QFrame):
+    """The left side of the window."""
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("mirrors")
+        self.setProperty("kind", "panel")
+        self.document = document
+        self.name = label("", "title")
+        self.triangle = Triangle(document)
+        self.reading = PairReading(document, self.triangle)
+        self.add = button("Add mirror", "tight", "One more mirror, at right angles to the others")
+        self.remove = button("Remove", "tight", "Take away the picked mirror, or the last one")
+        self.ways = WaysIn(document)
+        self.settings = ReadingSettings(document)
+        self.settings_button = button("", "quiet", "How angles are read and written")
+        self.settings_button.setCheckable(True)
+        self.settings_button.toggled.connect(self.settings.setVisible)
+        self.settings.hide()
+        self._lay_out()
+        self.add.clicked.connect(document.add_mirror)
+        self.remove.clicked.connect(lambda: document.remove_mirror(self._to_remove()))
+        for signal in (document.arrangement_changed, document.selection_changed, document.name_changed):
+            signal.connect(self.refresh)
+        document.settings_changed.connect(self.refresh)
+        self.refresh()
+
+    def _lay_out(self) -> None:
+        buttons = QHBoxLayout()
+        buttons.setSpacing(4)
+        buttons.addWidget(self.add, 1)
+        buttons.addWidget(self.remove, 1)
+        body = QWidget()
+        column = QVBoxLayout(body)
+        column.setContentsMargins(MARGIN, 10, MARGIN, 10)
+        column.setSpacing(10)
+        column.addWidget(self.name)
+        column.addWidget(self.triangle)
+        column.addLayout(buttons)
+        column.addWidget(self.reading)
+        column.addStretch(1)
+        column.addWidget(self.settings)
+        column.addWidget(self.settings_button)
+        column.addWidget(label("Other ways in", "small"))
+        column.addWidget(self.ways)
+        area = QScrollArea()
+        area.setWidgetResizable(True)
+        area.setFrameShape(QFrame.Shape.NoFrame)
+        area.setWidget(body)
+        outer = QVBoxLayout(self)
+        outer.setContentsMargins(0, 0, 0, 0)
+        outer.addWidget(area)
+
+    def refresh(self) -> None:
+        """Show the arrangement's name, and what can be added or removed."""
+        size = self.document.arrangement.size
+        given = self.document.arrangement.given_normals
+        self.name.setText(self.document.name or "Mirrors")
+        self.add.setEnabled(size < MOST_MIRRORS and not given)
+        self.remove.setEnabled(size > FEWEST_MIRRORS)
+        self.remove.setText(f"Remove {self.document.arrangement.letters[self._to_remove()]}")
+        self.settings_button.setText(settings_in_words(self.document))
+        width = max(theming().theme.spacing.triangle_width, self.triangle.wanted_width() + 2 * MARGIN)
+        self.setFixedWidth(width)
+
+    def _to_remove(self) -> int:
+        key = self.document.selection
+        size = self.document.arrangement.size
+        return key[1] if key is not None and key[0] == "mirror" and key[1] < size else size - 1
+
+
+def settings_in_words(document: Document) -> str:
+    """The reading settings in one line."""
+    reading = document.settings.reading
+    return f"Read within {reading.sigmas:g} σ, up to π/{reading.max_denominator}"
+
+
+class ReadingSettings(QWidget):
+    """How angles are read and written; every change is a step that can be undone."""
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.document = document
+        self.denominator = QSpinBox()
+        self.denominator.setRange(2, 5000)
+        self.denominator.setKeyboardTracking(False)
+        self.denominator.setToolTip("A closing fraction kπ/m is looked for with m up to this")
+        self.sigmas = QDoubleSpinBox()
+        self.sigmas.setRange(0.5, 10)
+        self.sigmas.setSingleStep(0.5)
+        self.sigmas.setDecimals(1)
+        self.sigmas.setKeyboardTracking(False)
+        self.sigmas.setToolTip("59.9(2) is searched for a closing fraction within so many times 0.2°")
+        self.notation = QComboBox()
+        for value, text in NOTATIONS:
+            self.notation.addItem(text, value)
+        form = QFormLayout(self)
+        form.setContentsMargins(0, 0, 0, 0)
+        form.setSpacing(6)
+        form.addRow("Largest m in kπ/m", self.denominator)
+        form.addRow("Band in σ", self.sigmas)
+        form.addRow("Write as", self.notation)
+        self.denominator.valueChanged.connect(self._change)
+        self.sigmas.valueChanged.connect(self._change)
+        self.notation.currentIndexChanged.connect(self._change)
+        document.settings_changed.connect(self.refresh)
+        self.refresh()
+
+    def refresh(self) -> None:
+        """Show the document's settings."""
+        settings = self.document.settings
+        with QSignalBlocker(self.denominator), QSignalBlocker(self.sigmas), QSignalBlocker(self.notation):
+            self.denominator.setValue(settings.reading.max_denominator)
+            self.sigmas.setValue(settings.reading.sigmas)
+            self.notation.setCurrentIndex(self.notation.findData(settings.notation))
+
+    def _change(self) -> None:
+        reading = AngleSettings(max_denominator=self.denominator.value(), sigmas=self.sigmas.value())
+        settings = replace(self.document.settings, reading=reading, notation=self.notation.currentData())
+        if settings != self.document.settings:
+            self.document.set_settings(settings)

@@ -1,0 +1,236 @@
+"""The stage's frame: one picture or two side by side, each chosen from those there are."""
+
+from __future__ import annotations
+
+import numpy as np
+from PySide6.QtCore import QSignalBlocker, Qt, Signal
+from PySide6.QtGui import QShowEvent
+from PySide6.QtWidgets import (
+    QComboBox,
+    QFrame,
+    QHBoxLayout,
+    QSplitter,
+    QStackedWidget,
+    QVBoxLayout,
+    QWidget,
+)
+
+from mirrorlab.desktop.bench import NoPicture
+from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.parts import Elided, button, label
+from mirrorlab.desktop.pictures import Shelf
+from mirrorlab.desktop.seeding import land, where
+from mirrorlab.desktop.stage import StageView, make_view
+from mirrorlab.desktop.stylesheet import set_kind
+from mirrorlab.desktop.theming import theming
+from mirrorlab.desktop.words import describe
+from mirrorlab.drawing.model import Drawing
+
+
+class Pane(QFrame):
+    """One picture with its chooser.
+
+    Signals
+    -------
+    says(str)
+        What is under the pointer, in words; "" when nothing is.
+    chosen(str)
+        Another picture was chosen by the user.
+    """
+
+    says = Signal(str)
+    chosen = Signal(str)
+
+    def __init__(self, document: Document, shelf: Shelf, name: str, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.document, self.shelf = document, shelf
+        self.wanted = name
+        self.shown = ""
+        self.drawing: Drawing | None = None
+        self.view: StageView | None = None
+        self._widgets: dict[str, QWidget] = {}
+        self._stale = True
+        self._gesture = ""
+        self.chooser = QComboBox()
+        set_kind(self.chooser, "quiet")
+        self.chooser.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
+        self.chooser.setAccessibleName("picture")
+        self.note = Elided("", "small")
+        self.empty = label("", "muted", wrap=True)
+        self.empty.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self.empty.setMargin(40)
+        self.stack = QStackedWidget()
+        self.stack.addWidget(self.empty)
+        self.head = QHBoxLayout()
+        self.head.setContentsMargins(6, 3, 6, 3)
+        self.head.setSpacing(6)
+        self.head.addWidget(self.chooser)
+        self.head.addWidget(self.note, 1)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addLayout(self.head)
+        column.addWidget(self.stack, 1)
+        self.chooser.activated.connect(lambda i: self.choose(self.chooser.itemText(i)))
+        for signal in (
+            document.arrangement_changed,
+            document.seed_changed,
+            document.settings_changed,
+            document.crystal_changed,
+            document.glass_changed,
+        ):
+            signal.connect(self.watch)
+        document.selection_changed.connect(self._show_selection)
+        theming().changed.connect(self.wear_theme)
+
+    def choose(self, name: str) -> None:
+        """Show another picture."""
+        self.wanted = name
+        self.refresh()
+        self.chosen.emit(name)
+
+    def watch(self) -> None:
+        """The document changed: make the picture anew when in sight, else when it comes into sight."""
+        self._stale = True
+        if self.isVisible():
+            self.refresh()
+
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        if self._stale:
+            self.refresh()
+
+    def refresh(self) -> None:
+        """Make the picture anew."""
+        self._stale = False
+        name = self.wanted if self.shelf.fits(self.wanted) else self.shelf.first()
+        self._fill_chooser(name)
+        self.shown = name
+        try:
+            picture = self._widgets.get(name) or self.shelf.take(name)
+        except NoPicture as reason:
+            self._show_empty(str(reason))
+            return
+        if isinstance(picture, QWidget):
+            self._show_widget(name, picture)
+        else:
+            self._show_drawing(picture)
+
+    def _fill_chooser(self, name: str) -> None:
+        names = self.shelf.names()
+        with QSignalBlocker(self.chooser):
+            if names != tuple(self.chooser.itemText(i) for i in range(self.chooser.count())):
+                self.chooser.clear()
+                self.chooser.addItems(names)
+            self.chooser.setCurrentText(name)
+
+    def _show_empty(self, reason: str) -> None:
+        self.drawing = None
+        self.note.setText("")
+        self.empty.setText(reason)
+        self.stack.setCurrentWidget(self.empty)
+
+    def _show_widget(self, name: str, widget: QWidget) -> None:
+        self.drawing = None
+        if name not in self._widgets:
+            self._widgets[name] = widget
+            self.stack.addWidget(widget)
+        self.note.setText("")
+        self.stack.setCurrentWidget(widget)
+
+    def _show_drawing(self, drawing: Drawing) -> None:
+        if not (drawing.faces or drawing.lines or drawing.points):
+            self._show_empty(". ".join((drawing.title, *drawing.notes)))
+            return
+        self.drawing = drawing
+        if self.view is None:
+            self.view = make_view(theming().theme)
+            self.view.hovered.connect(self._hover)
+            self.view.picked.connect(lambda key, _: self.document.select(key))
+            self.view.seed_grabbed.connect(self._grab)
+            self.view.seed_dragged.connect(self._drag)
+            self.stack.addWidget(self.view)
+        self.note.setText("; ".join(drawing.notes))
+        self.note.setToolTip(drawing.frame)
+        self.view.set_drawing(drawing)
+        self.view.set_selection(self.document.selection)
+        self.stack.setCurrentWidget(self.view)
+
+    def _show_selection(self) -> None:
+        if self.view is not None and self.drawing is not None:
+            self.view.set_selection(self.document.selection)
+
+    def _hover(self, key: object) -> None:
+        self.says.emit(describe(self.document, key))
+
+    def _grab(self) -> None:
+        self._gesture = self.document.new_gesture("drag")
+
+    def _drag(self, point: object) -> None:
+        rotations = self.document.seed.rotations
+        landing = land(self.document.arrangement, np.asarray(point, dtype=np.float64), rotations)
+        if landing is not None:
+            self.document.set_seed(landing.seed, "drag seed", self._gesture)
+            self.says.emit(f"The seed is {where(landing.walls, self.document.finding.rank)}")
+
+    def wear_theme(self) -> None:
+        """Take the theme's tints."""
+        if self.view is not None:
+            self.view.set_look(theming().theme)
+
+
+class StageFrame(QFrame):
+    """One pane or two side by side.
+
+    Signals
+    -------
+    says(str)
+    doubled(bool)
+        Two pictures are shown, or one.
+    """
+
+    says = Signal(str)
+    doubled = Signal(bool)
+
+    def __init__(self, document: Document, shelf: Shelf, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("stage")
+        self.setProperty("kind", "panel")
+        self.left = Pane(document, shelf, "Space")
+        self.right = Pane(document, shelf, "Chamber map")
+        self.right.hide()
+        self.double = button("Two pictures", "quiet", "Show two pictures side by side (Ctrl+2)")
+        self.double.setCheckable(True)
+        self.double.toggled.connect(self._double)
+        self.left.head.addWidget(self.double)
+        self.split = QSplitter(Qt.Orientation.Horizontal)
+        self.split.setChildrenCollapsible(False)
+        self.split.setHandleWidth(1)
+        for pane in (self.left, self.right):
+            pane.says.connect(self.says)
+            self.split.addWidget(pane)
+            self.split.setStretchFactor(self.split.count() - 1, 1)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.addWidget(self.split)
+
+    @property
+    def panes(self) -> tuple[Pane, ...]:
+        """The panes in sight."""
+        return tuple(pane for pane in (self.left, self.right) if not pane.isHidden())
+
+    def show_picture(self, name: str) -> None:
+        """Show a picture: in the right pane when there are two and the left does not have it already."""
+        if self.left.shown == name:
+            return
+        (self.right if not self.right.isHidden() else self.left).choose(name)
+
+    def _double(self, on: bool) -> None:
+        self.right.setVisible(on)
+        self.left.head.removeWidget(self.double)
+        self.right.head.removeWidget(self.double)
+        (self.right if on else self.left).head.addWidget(self.double)
+        if on:
+            half = max(1, self.split.width() // 2)
+            self.split.setSizes([half, half])
+        self.doubled.emit(on)

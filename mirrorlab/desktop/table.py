@@ -1,0 +1,244 @@
+"""The table along the bottom: the rows of the current bench, linked with the pictures both ways."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QItemSelectionModel, Qt, Signal
+from PySide6.QtGui import QGuiApplication, QKeyEvent, QKeySequence
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QFrame,
+    QHBoxLayout,
+    QHeaderView,
+    QTableView,
+    QVBoxLayout,
+    QWidget,
+)
+
+from mirrorlab.desktop.bench import Bench
+from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.parts import Elided, button, label
+from mirrorlab.desktop.rows import RowsModel
+
+ROW_HEIGHT = 22
+SAMPLED_ROWS = 60
+"""Rows looked at when columns are fitted; all rows of a long orbit would take seconds."""
+
+MOST_WIDE = 320
+MOST_COPIED = 200_000
+"""More rows than this fit no clipboard; they are for a file."""
+
+
+class Rows(QTableView):
+    """The view itself; Ctrl+C copies the chosen rows.
+
+    Signals
+    -------
+    copy_wanted()
+    """
+
+    copy_wanted = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setAlternatingRowColors(True)
+        self.setShowGrid(False)
+        self.setWordWrap(False)
+        self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
+        self.setSelectionMode(QAbstractItemView.SelectionMode.ExtendedSelection)
+        self.setVerticalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+        self.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
+        self.setTabKeyNavigation(False)
+        self.setCornerButtonEnabled(False)
+        self.verticalHeader().hide()
+        self.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
+        self.verticalHeader().setDefaultSectionSize(ROW_HEIGHT)
+        head = self.horizontalHeader()
+        head.setHighlightSections(False)
+        head.setResizeContentsPrecision(SAMPLED_ROWS)
+        head.setSortIndicatorClearable(True)
+        head.setSortIndicator(-1, Qt.SortOrder.AscendingOrder)
+        head.setMinimumSectionSize(40)
+        self.setSortingEnabled(True)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.matches(QKeySequence.StandardKey.Copy):
+            self.copy_wanted.emit()
+            return
+        super().keyPressEvent(event)
+
+
+class TablePanel(QFrame):
+    """Head and rows; it folds down to its head.
+
+    Signals
+    -------
+    folded(bool)
+    save_wanted()
+        The user wants the rows in a file.
+    says(str)
+        A sentence for the status line.
+    """
+
+    folded = Signal(bool)
+    save_wanted = Signal()
+    says = Signal(str)
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("table")
+        self.setProperty("kind", "panel")
+        self.document = document
+        self.bench: Bench | None = None
+        self.title = label("", "heading")
+        self.note = Elided("", "muted")
+        self.rows = Rows()
+        self.empty = label("", "muted", wrap=True)
+        self.empty.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self.empty.hide()
+        self.copy = button("Copy", "quiet", "Copy the chosen rows, or all, as text (Ctrl+C)")
+        self.save = button("Save as CSV", "quiet", "Save all rows as CSV")
+        self.fold = button("Fold", "quiet", "Fold the table away (Ctrl+T)")
+        self._titles: tuple[str, ...] = ()
+        self._linking = False
+        self._lay_out()
+        self.copy.clicked.connect(self.copy_rows)
+        self.rows.copy_wanted.connect(self.copy_rows)
+        self.save.clicked.connect(self.save_wanted)
+        self.fold.clicked.connect(lambda: self.set_folded(self.rows_shown))
+        document.selection_changed.connect(self._show_selection)
+
+    def _lay_out(self) -> None:
+        head = QHBoxLayout()
+        head.setContentsMargins(14, 3, 8, 3)
+        head.setSpacing(8)
+        head.addWidget(self.title)
+        head.addWidget(self.note, 1)
+        for part in (self.copy, self.save, self.fold):
+            head.addWidget(part)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addLayout(head)
+        self._body = QWidget()
+        inner = QVBoxLayout(self._body)
+        inner.setContentsMargins(0, 0, 0, 0)
+        inner.addWidget(self.rows, 1)
+        inner.addWidget(self.empty, 1)
+        column.addWidget(self._body, 1)
+
+    @property
+    def rows_shown(self) -> bool:
+        """Whether the table is unfolded."""
+        return not self._body.isHidden()
+
+    def set_folded(self, folded: bool) -> None:
+        """Fold down to the head, or unfold."""
+        if folded == self.rows_shown:
+            self._body.setHidden(folded)
+            self.fold.setText("Unfold" if folded else "Fold")
+            self.setMaximumHeight(self.head_height if folded else 16_777_215)
+            self.folded.emit(folded)
+
+    @property
+    def head_height(self) -> int:
+        """Height of the folded table."""
+        return self.fold.sizeHint().height() + 6
+
+    def show_bench(self, bench: Bench) -> None:
+        """Show the rows of a bench."""
+        if self.bench is not None:
+            self.bench.rows_changed.disconnect(self.refresh)
+        self.bench = bench
+        bench.rows_changed.connect(self.refresh)
+        self.refresh()
+
+    def refresh(self) -> None:
+        """Take the bench's model and title anew."""
+        if self.bench is None:
+            return
+        model = self.bench.table_model()
+        if model is not self.rows.model():
+            self._put_model(model)
+        self._fit_columns()
+        self._on_reset()
+
+    def _put_model(self, model: RowsModel | None) -> None:
+        old, picks = self.rows.model(), self.rows.selectionModel()
+        if isinstance(old, RowsModel):
+            old.modelReset.disconnect(self._on_reset)
+        self.rows.setModel(model)
+        if picks is not None:
+            picks.deleteLater()
+        if model is not None:
+            model.modelReset.connect(self._on_reset)
+            self.rows.selectionModel().selectionChanged.connect(self._picked)
+
+    def _on_reset(self) -> None:
+        model, bench = self.rows.model(), self.bench
+        if bench is None:
+            return
+        self.title.setText(bench.table_title())
+        self.note.setText(bench.table_note())
+        count = 0 if model is None else model.rowCount()
+        self.rows.setVisible(count > 0)
+        self.empty.setVisible(count == 0)
+        self.empty.setText(bench.table_note() or "No rows.")
+        self.note.setVisible(count > 0)
+        self.copy.setEnabled(count > 0)
+        self.save.setEnabled(count > 0)
+        self._fit_columns()
+        self._show_selection()
+
+    def _fit_columns(self) -> None:
+        model = self.rows.model()
+        if not isinstance(model, RowsModel) or not model.rowCount():
+            return
+        titles = tuple(column.title for column in model.columns)
+        if titles == self._titles:
+            return
+        self._titles = titles
+        self.rows.resizeColumnsToContents()
+        head = self.rows.horizontalHeader()
+        for i in range(len(titles)):
+            head.resizeSection(i, min(MOST_WIDE, head.sectionSize(i) + 18))
+        head.setStretchLastSection(True)
+
+    def _picked(self) -> None:
+        model = self.rows.model()
+        if self._linking or not isinstance(model, RowsModel):
+            return
+        current = self.rows.selectionModel().currentIndex()
+        key = model.key_of(current.row()) if current.isValid() else None
+        if key is not None:
+            self._linking = True
+            self.document.select(key)
+            self._linking = False
+
+    def _show_selection(self) -> None:
+        model = self.rows.model()
+        if self._linking or not isinstance(model, RowsModel):
+            return
+        row = model.row_of(self.document.selection)
+        self._linking = True
+        if row is None:
+            self.rows.clearSelection()
+        else:
+            flags = QItemSelectionModel.SelectionFlag
+            index = model.index(row, 0)
+            self.rows.selectionModel().setCurrentIndex(index, flags.ClearAndSelect | flags.Rows)
+            self.rows.scrollTo(index)
+        self._linking = False
+
+    def copy_rows(self) -> None:
+        """Put the chosen rows, or all when one or none is chosen, on the clipboard as text."""
+        model = self.rows.model()
+        if not isinstance(model, RowsModel):
+            return
+        chosen = sorted(index.row() for index in self.rows.selectionModel().selectedRows())
+        rows = chosen if len(chosen) > 1 else None
+        count = len(chosen) if rows else model.rowCount()
+        if count > MOST_COPIED:
+            self.says.emit(f"{count:,} rows are too many for the clipboard; save them as CSV.")
+            return
+        QGuiApplication.clipboard().setText("\n".join(model.as_lines(rows)) + "\n")
+        self.says.emit(f"Copied {count:,} row{'s' if count != 1 else ''}.")
