@@ -1,0 +1,93 @@
+"""Tables as CSV (RFC 4180) with a CSV-on-the-Web metadata file beside them.
+
+References
+----------
+.. [1] RFC 4180, Common Format and MIME Type for CSV Files.
+.. [2] W3C Recommendation, Metadata Vocabulary for Tabular Data (2015).
+"""
+
+from __future__ import annotations
+
+import csv
+import io
+import json
+import os
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+
+from mirrorlab.files.whole import write_whole
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """One column: its name, its datatype ("integer", "double", "string"), and what it holds."""
+
+    name: str
+    datatype: str = "string"
+    description: str = ""
+    unit: str = ""
+
+
+def write_table(
+    path: str | os.PathLike[str],
+    columns: Sequence[Column],
+    rows: Iterable[Sequence[object]],
+    about: Mapping[str, object],
+) -> tuple[Path, Path]:
+    """Write a table and its metadata; both whole.
+
+    Parameters
+    ----------
+    path : path-like
+        The CSV file; the metadata file is named after it, with ``-metadata.json`` added.
+    columns : sequence of Column
+    rows : iterable of sequences
+        Floats are written so that they read back to the same double.
+    about : mapping
+        What the table is of, in plain JSON: frame, seed, group and the like.
+
+    Returns
+    -------
+    table, metadata : Path
+    """
+    target = Path(path)
+    table = write_whole(target, table_text(columns, rows))
+    content = json.dumps(metadata(target.name, columns, about), indent=2, ensure_ascii=False) + "\n"
+    return table, write_whole(target.with_name(target.name + "-metadata.json"), content)
+
+
+def table_text(columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> str:
+    """The table as RFC 4180 text, with CRLF line ends."""
+    buffer = io.StringIO(newline="")
+    writer = csv.writer(buffer, lineterminator="\r\n")
+    writer.writerow([column.name for column in columns])
+    for row in rows:
+        writer.writerow([_cell(value) for value in row])
+    return buffer.getvalue()
+
+
+def _cell(value: object) -> str:
+    if isinstance(value, float):
+        return repr(float(value))
+    return "" if value is None else str(value)
+
+
+def metadata(name: str, columns: Sequence[Column], about: Mapping[str, object]) -> dict[str, object]:
+    """The CSV-on-the-Web description of a table."""
+    described = []
+    for column in columns:
+        entry: dict[str, object] = {"name": column.name, "titles": column.name, "datatype": column.datatype}
+        text = column.description + (f" ({column.unit})" if column.unit else "")
+        if text:
+            entry["dc:description"] = text
+        described.append(entry)
+    notes = [{"name": key, "value": value} for key, value in about.items()]
+    return {
+        "@context": "http://www.w3.org/ns/csvw",
+        "url": name,
+        "dialect": {"delimiter": ",", "header": True, "lineTerminators": ["\r\n"], "encoding": "utf-8"},
+        "dc:title": str(about.get("title", name)),
+        "notes": notes,
+        "tableSchema": {"columns": described},
+    }
