@@ -11,10 +11,11 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from mirrorlab.angles import Angle, AngleSettings, parse_angle
+from mirrorlab.angles import Angle, AngleError, AngleSettings, parse_angle
 from mirrorlab.mirrors.closure import HALF, Fractions
 from mirrorlab.mirrors.families import TOP_RANK, family_angles, parse_family
 from mirrorlab.mirrors.finding import Finding
+from mirrorlab.mirrors.normals import ArrangementError, normals_from_gram, settle, unit_rows
 from mirrorlab.mirrors.orbit import MOST_IMAGES, Orbit, OrbitError, make_orbit
 from mirrorlab.mirrors.walk import Progress
 
@@ -23,21 +24,15 @@ Array = NDArray[np.float64]
 LETTERS = "abcdefghijklmno"
 """Names of the typed mirrors; p onwards is kept for walls that were not typed."""
 
-MOST_NORMALS = len(LETTERS)
-
 NORMAL_TOLERANCE = 1e-9
 """Radians within which the angle between two given normals is taken to be a closing fraction. Double
-precision gives about 1e-15 from clean coordinates; seven or more typed decimals stay within it."""
+precision gives about 1e-15 from clean coordinates; ten typed decimals stay within it. It is so narrow because
+fractions up to m = 360 lie close: at 1e-6 one pair of planes in forty would find one by chance."""
 
-FLAT = 1e-10
-"""A pivot below this counts as zero when normals are made from a Gram matrix: the square root of it, 1e-5, is
-far above the rounding of the pivot and far below any mirror angle a person can type."""
+MOST_TOLERANCE = 1e-4
+"""Widest tolerance for given normals, in radians: beyond it the planes are measured, not given."""
 
 DEFAULT_SETTINGS = AngleSettings()
-
-
-class ArrangementError(ValueError):
-    """Angles or normals that do not make an arrangement."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -84,13 +79,16 @@ class Arrangement:
         ArrangementError
             A number of angles that fits no number of mirrors up to 8.
         """
+        if isinstance(angles, str):
+            msg = f'"{angles}": one text; give a list of angles, such as ["90", "60", "45"]'
+            raise ArrangementError(msg)
         given = list(angles)
         size = (1 + math.isqrt(1 + 8 * len(given))) // 2
         if size * (size - 1) // 2 != len(given) or size > TOP_RANK:
             fits = ", ".join(f"{n * (n - 1) // 2} for {n}" for n in range(2, TOP_RANK + 1))
             msg = f"{len(given)} angles fit no number of mirrors; n mirrors have n(n−1)/2 angles: {fits}"
             raise ArrangementError(msg)
-        read = tuple(a if isinstance(a, Angle) else parse_angle(a, settings) for a in given)
+        read = tuple(_read(angle, k, len(given), settings) for k, angle in enumerate(given, 1))
         return cls._from_read(read, size, settings)
 
     @classmethod
@@ -118,38 +116,45 @@ class Arrangement:
         return cls.from_angles(fractions, settings)
 
     @classmethod
-    def from_normals(cls, normals: ArrayLike, settings: AngleSettings = DEFAULT_SETTINGS) -> Arrangement:
+    def from_normals(
+        cls,
+        normals: ArrayLike,
+        settings: AngleSettings = DEFAULT_SETTINGS,
+        tolerance: float = NORMAL_TOLERANCE,
+    ) -> Arrangement:
         """Mirrors through one point, from their normals.
 
         Parameters
         ----------
         normals : array_like, shape (n, d)
             One row a mirror, of any length but zero; 1 ≤ d ≤ 8, 1 ≤ n ≤ 15. They may be dependent.
+        settings : AngleSettings
+        tolerance : float
+            Radians within which an angle is taken to be a closing fraction; 1e-6 suits six typed decimals. The
+            normals are turned, by about as much, to have the angles that were read.
 
         Raises
         ------
         ArrangementError
-            A wrong shape, a normal that is zero or not finite, or the same mirror twice.
+            A wrong shape, a normal that is zero or not finite, the same mirror twice, or a tolerance that is not
+            above 0 and at most `MOST_TOLERANCE`.
         """
-        given = np.array(normals, dtype=np.float64)
-        if given.ndim != 2 or not 1 <= given.shape[1] <= TOP_RANK or not 1 <= len(given) <= MOST_NORMALS:
-            msg = f"normals of shape {given.shape}: give 1 to {MOST_NORMALS} rows of 1 to {TOP_RANK} coordinates"
+        if not 0 < tolerance <= MOST_TOLERANCE:
+            msg = f"tolerance {tolerance}: radians above 0, up to {MOST_TOLERANCE}"
             raise ArrangementError(msg)
-        lengths = np.linalg.norm(given, axis=1)
-        for i, length in enumerate(lengths):
-            if not (math.isfinite(length) and length > 0):
-                msg = f"normal {i + 1} of {len(given)}, {given[i].tolist()}: must be finite and not zero"
-                raise ArrangementError(msg)
-        unit = given / lengths[:, None]
+        unit = unit_rows(normals)
         read = []
         for i in range(len(unit)):
             for j in range(i + 1, len(unit)):
                 apart = 2 * math.atan2(np.linalg.norm(unit[i] - unit[j]), np.linalg.norm(unit[i] + unit[j]))
-                if min(apart, math.pi - apart) < NORMAL_TOLERANCE:
-                    msg = f"normals {i + 1} and {j + 1}, {given[i].tolist()} and {given[j].tolist()}: the same mirror twice"
+                if min(apart, math.pi - apart) < tolerance:
+                    pair = f"{unit[i].tolist()} and {unit[j].tolist()}"
+                    msg = f"normals {i + 1} and {j + 1} of {len(unit)}, along {pair}: the same mirror twice"
                     raise ArrangementError(msg)
-                read.append(Angle.from_radians(math.pi - apart, NORMAL_TOLERANCE, settings))
-        return cls(tuple(read), len(unit), unit, given_normals=True, settings=settings)
+                read.append(Angle.from_radians(math.pi - apart, tolerance, settings))
+        given = cls(tuple(read), len(unit), unit, given_normals=True, settings=settings)
+        settled = settle(unit, given.gram, given.fractions)
+        return cls(tuple(read), len(unit), settled, given_normals=True, settings=settings)
 
     @property
     def letters(self) -> tuple[str, ...]:
@@ -194,7 +199,18 @@ class Arrangement:
         )
 
     def with_angle(self, pair: int, text: str | Fraction) -> Arrangement:
-        """The same mirrors with one angle typed anew; `pair` counts the pairs from 0."""
+        """The same mirrors with one angle typed anew; `pair` counts the pairs from 0.
+
+        Raises
+        ------
+        AngleError
+            An angle that cannot be read.
+        ArrangementError
+            Mirrors given by normals, or a pair that is not there.
+        """
+        if not 0 <= pair < len(self.angles):
+            msg = f"pair {pair}: {self.size} mirrors have pairs 0 to {len(self.angles) - 1}"
+            raise ArrangementError(msg)
         if self.given_normals:
             msg = "these mirrors were given by normals; type angles for a new arrangement"
             raise ArrangementError(msg)
@@ -203,7 +219,13 @@ class Arrangement:
         return self._from_read(tuple(angles), self.size, self.settings)
 
     def finding(self) -> Finding:
-        """What these mirrors do; made once and kept."""
+        """What these mirrors do; made once and kept.
+
+        Raises
+        ------
+        TooLarge
+            More than 100,000 mirrors through one line.
+        """
         return self._finding
 
     @cached_property
@@ -253,18 +275,3 @@ class Arrangement:
             msg = f"no finite orbit: {self.finding().sentence}"
             raise OrbitError(msg)
         return make_orbit(group, start, self.frame, rotations, limit, progress)
-
-
-def normals_from_gram(gram: Array, rank: int) -> Array:
-    """Rows with the given inner products, lower triangular as far as the rank allows, shape (n, rank)."""
-    n = len(gram)
-    rows = np.zeros((n, rank))
-    pivots: list[int] = []
-    for i in range(n):
-        for k, p in enumerate(pivots):
-            rows[i, k] = (gram[i, p] - rows[i, :k] @ rows[p, :k]) / rows[p, k]
-        rest = gram[i, i] - rows[i] @ rows[i]
-        if rest > FLAT and len(pivots) < rank:
-            rows[i, len(pivots)] = math.sqrt(rest)
-            pivots.append(i)
-    return rows

@@ -1,0 +1,95 @@
+"""The command line: ``mirrorlab [FILE]`` opens the window, ``mirrorlab VERB …`` answers without one."""
+
+from __future__ import annotations
+
+import argparse
+import importlib
+import os
+import re
+import sys
+from collections.abc import Sequence
+
+from mirrorlab import __version__
+from mirrorlab.commands import VERBS
+
+BAD_INPUT = 2
+INTERRUPTED = 130
+
+EXAMPLES = """examples:
+  mirrorlab                          open the window with a sample
+  mirrorlab lantern.json             open the window with an arrangement file, or a CIF file
+  mirrorlab check 90 60 45           what these mirrors do
+  mirrorlab orbit 90 60 45 --heights 1,2,3 --csv images.csv
+  mirrorlab VERB --help              what a verb takes, with examples
+"""
+
+
+class Parser(argparse.ArgumentParser):
+    """A parser whose errors are one line."""
+
+    def error(self, message: str) -> None:  # type: ignore[override]
+        """Say what is wrong and where help is, in one line, and leave with status 2."""
+        self.exit(BAD_INPUT, f"{self.prog}: {message} (see {self.prog} --help)\n")
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run the command line; returns the exit status."""
+    words = [_held(word) for word in (sys.argv[1:] if argv is None else argv)]
+    try:
+        return _run(words)
+    except BrokenPipeError:  # the reader of a pipe left: nothing more to say, and no traceback at exit
+        os.dup2(os.open(os.devnull, os.O_WRONLY), 1)
+        return 0
+    except KeyboardInterrupt:
+        print("mirrorlab: stopped", file=sys.stderr)
+        return INTERRUPTED
+    except (ValueError, OSError) as error:
+        print(f"mirrorlab: {' '.join(str(error).split())}", file=sys.stderr)
+        return BAD_INPUT
+
+
+def _held(word: str) -> str:
+    """Keep argparse from taking ``-43m`` or ``-1,1,0`` for an option: a leading space makes it a value."""
+    return f" {word}" if re.match(r"-[\d.]", word) else word
+
+
+def _run(words: list[str]) -> int:
+    names = [verb.name for verb in VERBS]
+    if not words or (words[0] not in names and not words[0].startswith("-")):
+        if len(words) > 1:
+            msg = f'"{words[0]}" is not a verb; verbs are {", ".join(names)}; a file opens alone'
+            raise ValueError(msg)
+        return open_window(words[0] if words else None)
+    parser = Parser(
+        prog="mirrorlab",
+        description="Angles between mirrors in; finite group, images, chambers, point groups and panels out.",
+        epilog=EXAMPLES,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+    )
+    parser.add_argument("--version", action="version", version=f"mirrorlab {__version__}")
+    subparsers = parser.add_subparsers(metavar="VERB", parser_class=Parser, required=True)
+    for verb in VERBS:
+        if words[0] == verb.name:
+            importlib.import_module(verb.module).ADD[verb.name](subparsers)
+        else:
+            subparsers.add_parser(verb.name, help=verb.summary)
+    args = parser.parse_args(words)
+    return int(args.run(args))
+
+
+def open_window(path: str | None) -> int:
+    """Open the window; without a screen, say why and print the first sample instead."""
+    from mirrorlab.commands.screen import why_no_window
+
+    reason = why_no_window()
+    if reason is None:
+        from mirrorlab.desktop.app import run
+
+        return run(path)
+    from mirrorlab.commands.fallback import print_instead
+
+    return print_instead(path, reason)
+
+
+if __name__ == "__main__":
+    sys.exit(main())
