@@ -275,3 +275,16 @@ class Arrangement:
             msg = f"no finite orbit: {self.finding().sentence}"
             raise OrbitError(msg)
         return make_orbit(group, start, self.frame, rotations, limit, progress)
+
+
+def _read(given: str | int | float | Fraction | Angle, k: int, count: int, settings: AngleSettings) -> Angle:
+    """Read the k-th of the angles; an error says which one it was."""
+    if isinstance(given, Angle):
+        return given
+    try:
+        return parse_angle(given, settings)
+    except AngleError as error:
+        if count == 1:
+            raise
+        msg = f"angle {k} of {count}, {error}"
+        raise AngleError(msg) from None
