@@ -20,14 +20,18 @@ from fractions import Fraction
 import numpy as np
 from numpy.typing import NDArray
 
-from mirrorlab.mirrors.exact import definiteness, generate_roots
+from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.families import LARGEST_PAIR_ORDER, MOST_MIRRORS
-from mirrorlab.mirrors.group import connected
+from mirrorlab.mirrors.generation import LETTERS, generate_roots
+from mirrorlab.mirrors.group import TooLarge, connected
 
 Array = NDArray[np.float64]
 Fractions = list[list[Fraction | None]]
 
 HALF = Fraction(1, 2)
+
+MOST_THROUGH_A_LINE = 100_000
+"""Most mirrors through one line that are written out: as many as the smallest angle that can be read makes."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -89,6 +93,11 @@ def decide_part(
         None when there are none (then only definiteness is decided).
     letters : str
         Letters of the typed mirrors, for words.
+
+    Raises
+    ------
+    TooLarge
+        More than `MOST_THROUGH_A_LINE` mirrors through one line.
     """
     inner_gram = gram[np.ix_(members, members)]
     inner = [[fractions[i][j] for j in members] for i in members]
@@ -108,6 +117,9 @@ def decide_part(
     known = [[f for f in row if f is not None] for row in inner]
     if rank == 2:
         m = math.lcm(*(f.denominator for row in known for f in row))
+        if m > MOST_THROUGH_A_LINE:
+            where = f"mirrors through one line, at multiples of 180°/{m:,}"
+            raise TooLarge(where, m, 2 * m * 8 * normals.shape[1], MOST_THROUGH_A_LINE, "")
         return Part(
             own, 2, True, True, _star(mine, m), bound=f"mirrors through one line at multiples of 180°/{m}"
         )
@@ -139,9 +151,9 @@ def _decide_high(
             return Part(own, rank, True, broken=text, bound=law, witness=_close_pair(known[i][j], a, b))
     orders = {known[i][j].denominator: (i, j) for i, j in pairs}
     if 4 in orders and 5 in orders:
-        (i, j), (k, l) = orders[4], orders[5]
+        (i, j), (u, v) = orders[4], orders[5]
         text = (
-            f"{names[i]}{names[j]} makes mirrors 45° apart and {names[k]}{names[l]} makes mirrors 36° apart"
+            f"{names[i]}{names[j]} makes mirrors 45° apart and {names[u]}{names[v]} makes mirrors 36° apart"
         )
         law = f"no finite group of rank {rank} that does not split has both"
         return Part(own, rank, True, broken=text, bound=law)
@@ -152,10 +164,7 @@ def _decide_high(
     if complete:
         return Part(own, rank, True, True, roots, bound=f"{law}; here {len(roots) // 2}")
     text = f"the reflections make more than {most} mirrors"
-    spelled = tuple(
-        "".join(names["abcdefghijklmnopqrstuvwxyz".index(c)] if c != ":" else c for c in w) for w in words
-    )
-    return Part(own, rank, True, broken=text, bound=law, witness=_closest(roots, spelled))
+    return Part(own, rank, True, broken=text, bound=law, witness=_closest(roots, words, names))
 
 
 def _close_pair(fraction: Fraction, a: str, b: str) -> tuple[str, str, float]:
@@ -167,14 +176,19 @@ def _close_pair(fraction: Fraction, a: str, b: str) -> tuple[str, str, float]:
     return a, f"{word[:-1]}({word[-1]})" if step > 1 else word, 180 / m
 
 
-def _closest(roots: Array, words: tuple[str, ...]) -> tuple[str, str, float]:
-    """The two distinct mirrors that stand closest."""
-    unit = roots / np.linalg.norm(roots, axis=1, keepdims=True)
+def _closest(roots: Array, words: tuple[str, ...], names: list[str]) -> tuple[str, str, float]:
+    """The two distinct mirrors that stand closest; `roots` holds one sign of each first, then the other."""
+    count = len(roots) // 2
+    unit = roots[:count] / np.linalg.norm(roots[:count], axis=1, keepdims=True)
     cosine = np.abs(unit @ unit.T)
-    cosine[cosine > 1 - 1e-9] = -1
+    np.fill_diagonal(cosine, -1)
     i, j = np.unravel_index(int(cosine.argmax()), cosine.shape)
-    spell = [
-        f"{w.partition(':')[0]}({w.partition(':')[2]})" if w[0] != ":" else w[1:]
-        for w in (words[i], words[j])
-    ]
-    return spell[0], spell[1], math.degrees(math.acos(min(1.0, float(cosine[i, j]))))
+    near = unit[j] * np.sign(unit[i] @ unit[j])
+    apart = 2 * math.atan2(float(np.linalg.norm(unit[i] - near)), float(np.linalg.norm(unit[i] + near)))
+    return _spell(words[i], names), _spell(words[j], names), math.degrees(apart)
+
+
+def _spell(word: str, names: list[str]) -> str:
+    """A root's word in the letters of the typed mirrors: "ab:c" among c, d and e becomes "cd(e)"."""
+    before, _, last = ("".join(c if c == ":" else names[LETTERS.index(c)] for c in word)).partition(":")
+    return f"{before}({last})" if before else last

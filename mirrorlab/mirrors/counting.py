@@ -1,4 +1,6 @@
-"""How many chambers of the group lie in the region between the typed mirrors."""
+"""How many chambers of the group lie in the region between the typed mirrors.
+
+All chambers are alike, so the count is the group's order times the share of all space that the region takes."""
 
 from __future__ import annotations
 
@@ -8,87 +10,76 @@ from fractions import Fraction
 import numpy as np
 from numpy.typing import NDArray
 
-from mirrorlab.mirrors.families import Family
-from mirrorlab.mirrors.group import generic_point, simple_of
+from mirrorlab.mirrors.chamber import generic_point, simple_of
 
 Array = NDArray[np.float64]
 SAME = 1e-7
 
 
-def chambers_in_region(
-    family: Family, fractions: list[list[Fraction]], normals: Array, roots: Array, inside: Array
-) -> int:
-    """Chambers of an irreducible finite group in the cone between independent typed mirrors.
+def share_of_space(fractions: list[list[Fraction]], normals: Array, roots: Array) -> Fraction:
+    """The part of all space that lies between independent typed mirrors of an irreducible finite group.
 
     Parameters
     ----------
-    family : Family
     fractions : n by n list of Fraction
         Dihedral angles of the typed mirrors over π.
     normals : ndarray, shape (n, d)
     roots : ndarray, shape (2N, d)
         All unit normals, both signs.
-    inside : ndarray, shape (d,)
-        A point off every mirror.
 
     Notes
     -----
-    Two mirrors: kπ/m holds k chambers. Three: the area of the spherical triangle against that of a chamber.
-    More: a chamber w(C) lies in the region exactly when w carries the typed normals to positive roots, so
-    the tuples of positive roots with the typed Gram matrix are counted, and divided by the automorphisms of
-    the Coxeter–Dynkin graph, which permute such tuples.
+    One mirror leaves half; two at kπ/m leave k/2m; three leave the area of a spherical triangle. For more, look
+    from each root along its direction: a chamber holds as many images of a point as any other, so the share is
+    the mean, over the orbits that the roots are, of the share that the mirrors through that root leave there;
+    none where the root lies outside. That takes one mirror away at least, until three are left.
+    """
+    heights = normals @ roots.T
+    outside, through = heights < -SAME, np.abs(heights) <= SAME
+    known: dict[tuple[int, ...], Fraction] = {}
+
+    def share(chosen: tuple[int, ...]) -> Fraction:
+        if chosen not in known:
+            known[chosen] = _few(chosen, fractions) if len(chosen) < 4 else mean(chosen)
+        return known[chosen]
+
+    def mean(chosen: tuple[int, ...]) -> Fraction:
+        rows = list(chosen)
+        seen = through[rows][:, ~outside[rows].any(axis=0)]
+        patterns, counts = np.unique(seen, axis=1, return_counts=True)
+        total, blind = Fraction(0), 0
+        for pattern, count in zip(patterns.T, counts.tolist(), strict=True):
+            if pattern.all():
+                blind = count  # square to all the chosen mirrors: looks on them as the origin does
+            else:
+                left = tuple(k for k, met in zip(chosen, pattern, strict=True) if met)
+                total += count * share(left)
+        return total / (len(roots) - blind)
+
+    return share(tuple(range(len(normals))))
+
+
+def chambers_in_region(order: int, fractions: list[list[Fraction]], normals: Array, roots: Array) -> int:
+    """Chambers of an irreducible finite group of that order in the cone between independent typed mirrors.
+
+    See `share_of_space` for the other parameters.
     """
     n = len(normals)
-    if n == 1:
-        return 1
-    if n == 2:
-        return fractions[0][1].numerator
     if all(fractions[i][j].numerator == 1 for i in range(n) for j in range(i + 1, n)):
         return 1  # no obtuse or skipped angle: the typed mirrors are themselves a chamber's walls
-    if n == 3:
-        excess = fractions[0][1] + fractions[0][2] + fractions[1][2] - 1
-        return int(excess * family.order / 4)
-    return count_positive_tuples(normals, roots, inside) // family.diagram_symmetries
+    count = order * share_of_space(fractions, normals, roots)
+    if count.denominator != 1:
+        msg = f"a region of {count} chambers"
+        raise AssertionError(msg)
+    return int(count)
 
 
-def count_positive_tuples(normals: Array, roots: Array, inside: Array) -> int:
-    """Tuples of positive roots with the same inner products as the typed normals."""
-    positive = roots[roots @ inside > 0]
-    products = positive @ positive.T
-    gram = normals @ normals.T
-    order = _connected_order(gram)
-    size = len(positive)
-    masks: dict[float, list[int]] = {}
-    for value in {round(float(gram[i, j]), 6) for i in range(len(gram)) for j in range(i)}:
-        hits = np.abs(products - value) < 1e-5
-        masks[value] = [sum(1 << int(k) for k in np.flatnonzero(row)) for row in hits]
-    wanted = [[round(float(gram[order[k], order[i]]), 6) for i in range(k)] for k in range(len(order))]
-    everything = (1 << size) - 1
-
-    def extend(chosen: list[int]) -> int:
-        k = len(chosen)
-        allowed = everything
-        for value, root in zip(wanted[k], chosen, strict=True):
-            allowed &= masks[value][root]
-        if k == len(order) - 1:
-            return allowed.bit_count()
-        total = 0
-        while allowed:
-            low = allowed & -allowed
-            allowed ^= low
-            total += extend([*chosen, low.bit_length() - 1])
-        return total
-
-    return extend([])
-
-
-def _connected_order(gram: Array) -> list[int]:
-    """The mirrors in an order in which each meets an earlier one at a slant, where possible."""
-    order = [0]
-    while len(order) < len(gram):
-        rest = [k for k in range(len(gram)) if k not in order]
-        order.append(max(rest, key=lambda k: float((np.abs(gram[k, order]) > SAME).sum())))
-    return order
+def _few(chosen: tuple[int, ...], fractions: list[list[Fraction]]) -> Fraction:
+    """The share of space between up to three mirrors."""
+    if len(chosen) < 2:
+        return Fraction(1, 1 + len(chosen))
+    angles = [fractions[i][j] for i in chosen for j in chosen if i < j]
+    return angles[0] / 2 if len(chosen) == 2 else (sum(angles, Fraction(0)) - 1) / 4
 
 
 def chambers_in_simplex(normals: Array, roots: Array, order: int) -> int | None:
@@ -119,7 +110,7 @@ def chambers_in_simplex(normals: Array, roots: Array, order: int) -> int | None:
         )
         orbit = _closed_set(normals[[apex]], roots, of=normals[others])
         lattice = abs(np.linalg.det(_basis(orbit))) * (2 * height) ** (n - 1)
-        return round(volume * order / lattice)
+        return round(float(volume * order / lattice))
     return None
 
 

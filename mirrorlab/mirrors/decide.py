@@ -10,12 +10,13 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from mirrorlab.mirrors.chamber import corner_points, generic_point, region_frame, typed_walls
 from mirrorlab.mirrors.closure import Array, Fractions, Part, decide_part, split
 from mirrorlab.mirrors.counting import chambers_in_region
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
-from mirrorlab.mirrors.group import SAME_MIRROR, ReflectionGroup, build_group, family_of, generic_point
+from mirrorlab.mirrors.group import ReflectionGroup, build_group, family_of
 from mirrorlab.mirrors.spelling import spell_walls
 from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
@@ -77,54 +78,24 @@ def decide(arrangement: Arrangement) -> Finding:
     dependent = any(part.singular for part in parts)
     if not all(part.finite for part in parts):
         if dependent and not arrangement.given_normals:
-            inside = np.zeros(normals.shape[1])
-            return finish(TUBE, tube=describe_tube(list(parts), fractions, normals, cycles, None, inside))
+            return finish(TUBE, tube=describe_tube(list(parts), fractions, normals, cycles, None))
         return finish(OPEN)
-    roots = np.concatenate([part.roots for part in parts if part.roots is not None])
-    inside = generic_point(roots, region_frame(normals, dependent))
+    pieces = [part.roots for part in parts if part.roots is not None]
+    frame = region_frame(normals, dependent)
+    group = build_group(pieces, generic_point(np.concatenate(pieces), frame), normals, arrangement.letters)
     if dependent and not arrangement.given_normals:
-        group = build_group(roots, inside, normals, arrangement.letters)
-        tube = describe_tube(list(parts), fractions, normals, cycles, group, inside)
+        tube = describe_tube(list(parts), fractions, normals, cycles, group)
         return finish(TUBE, crystallographic=tube.tiling in ("once", "subdivided"), tube=tube)
-    between = None if dependent else _between(parts, fractions, normals, inside)
-    kind = SUBDIVIDED if between is not None and between > 1 else CLOSED
-    if kind == SUBDIVIDED:
-        groups = [
-            build_group(roots, point, normals, arrangement.letters)
-            for point in corner_points(roots, region_frame(normals, dependent))
-        ]
-        group = max(groups, key=lambda g: sum(letter in arrangement.letters for letter in g.letters))
-    else:
-        group = build_group(roots, inside, normals, arrangement.letters)
-    return finish(kind, group, between, group.crystallographic)
+    between = None if dependent else _between(parts, fractions, normals)
+    if between is None or between == 1:
+        return finish(CLOSED, group, between, group.crystallographic)
+    roots = np.concatenate(pieces)
+    point = max(corner_points(roots, frame), key=lambda inside: typed_walls(roots, inside, normals))
+    group = build_group(pieces, point, normals, arrangement.letters)
+    return finish(SUBDIVIDED, group, between, group.crystallographic)
 
 
-def corner_points(roots: Array, corners: Array) -> list[Array]:
-    """Points of the region's chambers that stand in its corners, off every mirror: these share typed walls.
-
-    Each starts on a corner and moves towards the next ones by less than the distance to any mirror not met.
-    """
-    count = len(corners)
-    turns = [[(start + way * k) % count for k in range(count)] for start in range(count) for way in (1, -1)]
-    points = []
-    for turn in turns:
-        point = corners[turn[0]]
-        for k in turn[1:]:
-            rooms = np.abs(roots @ point)
-            point = point + 0.3 * float(rooms[rooms > SAME_MIRROR].min()) * corners[k]
-        points.append(point)
-    return points
-
-
-def region_frame(normals: Array, dependent: bool) -> Array:
-    """Rows along which a point of the typed region has positive coordinates: its corners, where it has them."""
-    if dependent:
-        return np.eye(normals.shape[1])
-    corners = np.linalg.pinv(normals).T
-    return np.asarray(corners / np.linalg.norm(corners, axis=1, keepdims=True))
-
-
-def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array, inside: Array) -> int:
+def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array) -> int:
     counts = []
     for part in parts:
         mine = list(part.members)
@@ -133,7 +104,7 @@ def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array, insi
         if roots is None:
             msg = "chambers are counted for finite groups"
             raise ValueError(msg)
-        counts.append(chambers_in_region(family_of(roots), known, normals[mine], roots, inside))
+        counts.append(chambers_in_region(family_of(roots).order, known, normals[mine], roots))
     return math.prod(counts)
 
 

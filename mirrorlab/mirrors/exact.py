@@ -1,10 +1,8 @@
-"""Exact decisions about Gram matrices whose angles are fractions of π.
+"""Exact decisions about Gram matrices whose angles are fractions of π: definite, singular or indefinite.
 
-Two kinds of question are decided here without tolerance: is a Gram matrix positive definite, singular
-or indefinite; and which mirrors do reflections generate. The first uses that the coefficients of the
-characteristic polynomial of 2G are algebraic integers: one that is smaller than the product of its
-conjugates allows is zero. The second works in the ring Z[√2] or Z[φ], which holds every 2cos(kπ/m) with
-m up to 5.
+Three mirrors are decided in whole numbers of quarter turns. For more, the sums of principal minors are computed
+to as many digits as their signs need; one that could be zero is tested at all its conjugates modulo a prime, where
+zero is exact.
 """
 
 from __future__ import annotations
@@ -16,19 +14,18 @@ from functools import lru_cache
 import numpy as np
 from numpy.typing import NDArray
 
-CONJUGATE_BITS = 20
-"""Each conjugate of a coefficient of det(λ + 2G), up to eight mirrors, is below 2^20 (Hadamard's bound:
-at most C(8, k) minors of size k, each at most (2√k)^k)."""
+from mirrorlab.mirrors.conjugates import MOST_DENOMINATOR, vanishing
 
 CERTAIN = 1e-9
 """Eigenvalues of a double-precision Gram matrix of up to 8 mirrors err by less than 1e-14; beyond this
 distance from zero their sign is certain without exact arithmetic."""
 
-MOST_BITS = 1 << 16
-"""Working precision above which a coefficient that is still zero is taken as zero (never reached by angles
-whose common denominator is below about 6,000)."""
+FIRST_BITS = 128
+"""Working precision at which minors are looked at first."""
 
-Row = tuple[Fraction | None, ...]
+MOST_BITS = 1 << 13
+"""Working precision above which a minor that still shows no digit is taken as zero. Only angles whose common
+denominator is above `MOST_DENOMINATOR` come here: for the others zero is proved."""
 
 
 @lru_cache(maxsize=64)
@@ -65,21 +62,6 @@ def cosine_scaled(fraction: Fraction, bits: int) -> int:
     return total >> (work - bits)
 
 
-def _degree(fractions: list[Fraction]) -> int:
-    """Degree over Q of the real field that holds all 2cos(k/m·π)."""
-    n = 2 * math.lcm(*(f.denominator for f in fractions)) if fractions else 1
-    phi, rest, p = n, n, 2
-    while p * p <= rest:
-        if rest % p == 0:
-            phi -= phi // p
-            while rest % p == 0:
-                rest //= p
-        p += 1
-    if rest > 1:
-        phi -= phi // rest
-    return max(1, phi // 2)
-
-
 def _coefficients(matrix: list[list[Fraction]], bits: int) -> list[int]:
     """e_1 … e_n of 2G scaled by 2^bits (Faddeev–LeVerrier)."""
     n = len(matrix)
@@ -105,7 +87,7 @@ def coefficient_signs(matrix: list[list[Fraction]]) -> tuple[int, ...]:
     Parameters
     ----------
     matrix : n by n list of Fraction
-        Dihedral angles as fractions of π; the diagonal is not read.
+        Dihedral angles as fractions of π, n up to 8; the diagonal is not read.
 
     Notes
     -----
@@ -113,17 +95,23 @@ def coefficient_signs(matrix: list[list[Fraction]]) -> tuple[int, ...]:
     a positive sign.
     """
     n = len(matrix)
-    degree = _degree([matrix[i][j] for i in range(n) for j in range(i)])
-    enough = CONJUGATE_BITS * degree + 64
-    bits = 128
+    common = math.lcm(1, *(matrix[i][j].denominator for i in range(n) for j in range(i)))
+    zero: tuple[bool, ...] = (False,) * n
+    bits, asked = FIRST_BITS, False
     while True:
-        bits = min(bits, enough, MOST_BITS)
-        slack = (
-            1 << 100
-        )  # rounding grows at most 16-fold a step (the row sums of 2G) over 8 steps: below 2^70 units
+        # Each step multiplies rounding by at most 144 (eight products of 2G, nine terms) and there are eight
+        # steps: below 2^90 units.
+        slack = 1 << 100
         values = _coefficients(matrix, bits + 128)
-        if bits in (enough, MOST_BITS) or all(abs(value) > slack for value in values):
-            return tuple(0 if abs(value) <= slack else (1 if value > 0 else -1) for value in values)
+        unclear = [not gone and abs(value) <= slack for value, gone in zip(values, zero, strict=True)]
+        if any(unclear) and not asked and common <= MOST_DENOMINATOR:
+            zero, asked = vanishing(matrix, common), True
+            unclear = [small and not gone for small, gone in zip(unclear, zero, strict=True)]
+        if not any(unclear) or (bits >= MOST_BITS and not asked):
+            return tuple(
+                0 if gone or abs(value) <= slack else (1 if value > 0 else -1)
+                for value, gone in zip(values, zero, strict=True)
+            )
         bits *= 4
 
 
@@ -133,101 +121,38 @@ def definiteness(gram: NDArray[np.float64], fractions: list[list[Fraction | None
     Where an angle has no closing fraction the decision is made on the double-precision eigenvalues with
     `CERTAIN` as the limit; otherwise it is exact.
     """
+    known = [[f for f in row if f is not None] for row in fractions]
+    readable = all(len(row) == len(gram) for row in known)
+    if readable and len(gram) == 3:
+        return triangle_rank(known[0][1], known[0][2], known[1][2])
     eigenvalues = np.linalg.eigvalsh(gram)
     if eigenvalues[0] > CERTAIN:
         return len(gram), True
     if eigenvalues[0] < -CERTAIN:
         return int((np.abs(eigenvalues) > CERTAIN).sum()), False
-    known = [[f for f in row if f is not None] for row in fractions]
-    if any(len(row) != len(gram) for row in known) or len(gram) > 8:
+    if not readable or len(gram) > 8:
         return int((eigenvalues > CERTAIN).sum()), True
     signs = coefficient_signs(known)
     rank = max((k for k, sign in enumerate(signs, 1) if sign), default=0)
     return rank, min(signs) >= 0
 
 
-class Ring:
-    """Z[τ] with τ² = p·τ + q, holding 2cos(kπ/m) for m up to 5: τ = √2, or τ = φ when a five is present."""
+def triangle_rank(a: Fraction, b: Fraction, c: Fraction) -> tuple[int, bool]:
+    """`definiteness` for three mirrors, from their angles as fractions of π.
 
-    def __init__(self, with_five: bool) -> None:
-        self.p, self.q = (1, 1) if with_five else (0, 2)
-        self.tau = (1 + math.sqrt(5)) / 2 if with_five else math.sqrt(2)
-        table = {Fraction(0): (2, 0), Fraction(1, 3): (1, 0), Fraction(1, 2): (0, 0)}
-        if with_five:
-            table |= {Fraction(1, 5): (0, 1), Fraction(2, 5): (-1, 1)}
-        else:
-            table |= {Fraction(1, 4): (0, 1)}
-        self._table = table | {1 - f: (-a, -b) for f, (a, b) in table.items()}
-
-    def two_cosine(self, fraction: Fraction) -> tuple[int, int]:
-        """2cos(fraction·π) as (a, b), meaning a + b·τ."""
-        return self._table[fraction]
-
-    def times(self, x: NDArray[np.int64], y: NDArray[np.int64]) -> NDArray[np.int64]:
-        """Product, over the last axis of length 2."""
-        a, b, c, d = x[..., 0], x[..., 1], y[..., 0], y[..., 1]
-        bd = b * d
-        return np.stack([a * c + self.q * bd, a * d + b * c + self.p * bd], axis=-1)
-
-    def real(self, x: NDArray[np.int64]) -> NDArray[np.float64]:
-        """The real numbers a + b·τ."""
-        return x[..., 0] + x[..., 1] * self.tau
-
-
-def generate_roots(
-    matrix: list[list[Fraction]], most: int
-) -> tuple[NDArray[np.float64], tuple[str, ...], bool]:
-    """Unit normals of all mirrors that reflections in the given ones generate, as heights.
-
-    A root is held by twice its inner products with the given normals, in exact integers of `Ring`, so two
-    roots are the same only when they are the same, and dependent normals need no care.
-
-    Parameters
-    ----------
-    matrix : n by n list of Fraction
-        Dihedral angles as fractions of π with denominators up to 5, not both 4 and 5; diagonal 1.
-    most : int
-        Stop once there are more mirrors than this: the set is then infinite by the bound for its rank.
-
-    Returns
-    -------
-    heights : ndarray, shape (2N, n)
-        Inner products with the given normals; both signs of every root.
-    words : tuple of str
-        For each root the word of mirrors that carries a given one onto it, e.g. ``"ab:c"`` for ab(c).
-    complete : bool
-        False when `most` was exceeded.
+    With s half the sum, det G = −4 cos s · cos(s − a) · cos(s − b) · cos(s − c) (the determinant of a spherical
+    triangle's angles), so whole numbers of quarter turns decide its sign.
     """
-    n = len(matrix)
-    ring = Ring(any(matrix[i][j].denominator == 5 for i in range(n) for j in range(i)))
-    gram2 = np.array(
-        [
-            [(2, 0) if i == j else tuple(-v for v in ring.two_cosine(matrix[i][j])) for j in range(n)]
-            for i in range(n)
-        ],
-        dtype=np.int64,
-    )
-    letters = "abcdefghijklmnopqrstuvwxyz" * 20
-    seen: dict[bytes, str] = {}
-    found: list[NDArray[np.int64]] = []
-    frontier: list[tuple[NDArray[np.int64], str]] = []
-    for i in range(n):
-        for root in (gram2[i], -gram2[i]):
-            if root.tobytes() not in seen:
-                seen[root.tobytes()] = f":{letters[i]}"
-                found.append(root)
-                frontier.append((root, f":{letters[i]}"))
-    while frontier and len(found) <= 2 * most:
-        stack = np.stack([root for root, _ in frontier])
-        fresh: list[tuple[NDArray[np.int64], str]] = []
-        for j in range(n):
-            images = stack - ring.times(stack[:, j, None, :], gram2[j][None])
-            for image, (_, word) in zip(images, frontier, strict=True):
-                key = image.tobytes()
-                if key not in seen:
-                    seen[key] = letters[j] + word
-                    found.append(image)
-                    fresh.append((image, letters[j] + word))
-        frontier = fresh
-    complete = not frontier and len(found) <= 2 * most
-    return ring.real(np.stack(found)) / 2, tuple(seen.values()), complete
+    s = (a + b + c) / 2
+    sign = -math.prod(_cosine_sign(x) for x in (s, s - a, s - b, s - c))
+    if sign:
+        return 3, sign > 0
+    return (2 if a or b or c else 1), True
+
+
+def _cosine_sign(fraction: Fraction) -> int:
+    """Sign of cos(fraction·π)."""
+    turn = abs(fraction) % 2
+    if turn.denominator == 2:
+        return 0
+    return 1 if turn < Fraction(1, 2) or turn > Fraction(3, 2) else -1

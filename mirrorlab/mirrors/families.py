@@ -24,6 +24,9 @@ B6 and E6, E7, E8. Reference [1], table in section 3.7: the sum of the exponents
 LARGEST_PAIR_ORDER = 5
 """In a finite irreducible group of rank 3 or more, two mirrors never stand closer than 180/5 degrees."""
 
+LARGEST_M = 100_000
+"""The largest m of an I2(m) that is read; angles are read no finer."""
+
 TOP_RANK = 8
 """The highest rank Mirrorlab decides."""
 
@@ -173,8 +176,8 @@ def _parse_part(part: str, text: str) -> tuple[Family, ...]:
         raise FamilyError(msg)
     if match["m"]:
         m = int(match["m"])
-        if m < 2:
-            msg = f'family "{text}": I2({m}) needs m of at least 2'
+        if not 2 <= m <= LARGEST_M:
+            msg = f'family "{text}": I2({m}) needs m from 2 to {LARGEST_M}'
             raise FamilyError(msg)
         return (Family("A", 1), Family("A", 1)) if m == 2 else (Family("I", 2, m),)
     letter, rank = match["letter"], int(match["rank"])

@@ -223,7 +223,7 @@ def gather_evidence(arrangement: Arrangement, parts: tuple[Part, ...]) -> Eviden
     return Evidence(
         gram,
         float(np.linalg.det(gram)),
-        np.linalg.eigvalsh(gram),
+        np.asarray(np.linalg.eigvalsh(gram), dtype=np.float64),
         tuple(rows),
         tuple(part.bound for part in parts if part.bound),
         broken,

@@ -15,6 +15,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 from fractions import Fraction
+from itertools import pairwise
 
 from mirrorlab.angles import Angle, write_angle
 
@@ -111,14 +112,15 @@ def cycle_flags(fractions: list[list[Fraction | None]], letters: str) -> tuple[F
                 return ()  # the pair has its own flag; a cycle through it tells nothing more
             if f != Fraction(1, 2):
                 weight[i, j] = _FOUR_COS[f.denominator]
-    flags, tree = [], {}
+    flags: list[Flag] = []
+    tree: dict[tuple[int, int], int] = {}
     for (i, j), value in sorted(weight.items(), key=lambda item: sum(item[0])):
         path = _path(tree, i, j)
         if path is None:
             tree[i, j] = value
             continue
         product = value
-        for u, v in zip(path, path[1:], strict=False):
+        for u, v in pairwise(path):
             product *= tree[min(u, v), max(u, v)]
         if math.isqrt(product) ** 2 != product:
             name = "".join(letters[k] for k in path)

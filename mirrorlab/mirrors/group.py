@@ -5,18 +5,14 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
-from fractions import Fraction
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.mirrors.chamber import SAME_MIRROR, generic_point, same_mirrors, simple_of
 from mirrorlab.mirrors.families import Family, recognise
 from mirrorlab.mirrors.walk import walk
-
-SAME_MIRROR = 1e-7
-"""Two unit normals nearer than this name one mirror. Mirrors of a finite group read with closing fractions up
-to m = 360 stand at least 0.0087 apart, and double precision errs by about 1e-14."""
 
 MOST_ELEMENTS = 200_000
 """Largest group whose elements are written out as matrices unless the caller asks for more."""
@@ -27,10 +23,12 @@ Array = NDArray[np.float64]
 class TooLarge(ValueError):
     """A result that would not fit the limit; `size` and `memory` (bytes) say how large it would be."""
 
-    def __init__(self, what: str, size: int, memory: int, limit: int) -> None:
+    def __init__(
+        self, what: str, size: int, memory: int, limit: int, advice: str = " (raise `limit`)"
+    ) -> None:
         self.size, self.memory, self.limit = size, memory, limit
         super().__init__(
-            f"{what}: {size:,} of them would take {memory / 2**20:,.0f} MiB; the limit is {limit:,} (raise `limit`)"
+            f"{what}: {size:,} of them would take {memory / 2**20:,.0f} MiB; the limit is {limit:,}{advice}"
         )
 
 
@@ -196,7 +194,7 @@ class ReflectionGroup:
         """
         folded = np.array(points, dtype=np.float64, ndmin=2)
         count = np.zeros(len(folded), dtype=np.int64)
-        scale = np.maximum(np.linalg.norm(folded, axis=1), 1e-300)
+        scale = np.abs(folded).max(axis=1, initial=0.0)
         while self.rank:
             heights = folded @ self.simple.T
             worst = heights.argmin(axis=1)
@@ -209,50 +207,6 @@ class ReflectionGroup:
         return folded, count
 
 
-def simple_of(positive: Array, inside: Array) -> NDArray[np.int64]:
-    """Which of the positive roots are simple: their reflection makes no other positive root negative.
-
-    Parameters
-    ----------
-    positive : ndarray, shape (N, d)
-        Unit normals of all mirrors, each with a positive product with `inside`.
-    inside : ndarray, shape (d,)
-
-    References
-    ----------
-    .. [1] Humphreys (1990), section 1.4: a simple reflection permutes the other positive roots.
-    """
-    heights = positive @ inside
-    after = heights[None, :] - 2 * (positive @ positive.T) * heights[:, None]
-    turned: NDArray[np.int64] = np.flatnonzero((after < 0).sum(axis=1) == 1)
-    return turned
-
-
-def generic_point(roots: Array, frame: Array) -> Array:
-    """A point with positive coordinates in a frame, off every mirror with as much room as a few trials give.
-
-    Parameters
-    ----------
-    roots : ndarray, shape (M, d)
-    frame : ndarray, shape (k, d)
-        Rows along which the point has positive coordinates, e.g. the corners of the typed region.
-    """
-    primes = np.sqrt([2.0, 3.0, 5.0, 7.0, 11.0, 13.0, 17.0, 19.0, 23.0])
-    best, room = frame.sum(axis=0), -1.0
-    for trial in range(24):
-        weights = 1 + np.modf(np.resize(primes, len(frame)) * (trial + 1) + 0.37 * trial)[0] * min(
-            1.0, trial / 4
-        )
-        point = weights @ frame
-        point = point / np.linalg.norm(point)
-        margin = float(np.abs(roots @ point).min(initial=1.0))
-        if margin > room:
-            best, room = point, margin
-        if room > 0.05:
-            break
-    return np.asarray(best, dtype=np.float64)
-
-
 def family_of(roots: Array) -> Family:
     """The family of the irreducible group with these roots, shape (2N, d), both signs."""
     inside = generic_point(roots, np.eye(roots.shape[1]))
@@ -260,55 +214,54 @@ def family_of(roots: Array) -> Family:
     return components_of(positive[simple_of(positive, inside)])[0].family
 
 
-def build_group(roots: Array, inside: Array, typed: Array, letters: Sequence[str]) -> ReflectionGroup:
+def build_group(
+    pieces: Sequence[Array], inside: Array, typed: Array, letters: Sequence[str]
+) -> ReflectionGroup:
     """The group whose mirrors are given, with the chamber that holds a point.
 
     Parameters
     ----------
-    roots : ndarray, shape (M, d)
-        Unit normals, at least one of each mirror, of a set closed under reflection.
+    pieces : sequence of ndarray, each of shape (2N, d)
+        Unit normals of all mirrors of each irreducible part, both signs.
     inside : ndarray, shape (d,)
         A point off every mirror.
     typed : ndarray, shape (n, d)
         Unit normals of the typed mirrors, whose letters are kept.
     letters : sequence of str
     """
-    if not len(roots):
+    if not pieces:
         return ReflectionGroup(np.zeros((0, len(inside))), np.zeros((0, len(inside))), (), ())
-    heights = roots @ inside
-    positive = _distinct(roots * np.sign(heights)[:, None])
-    simple = positive[simple_of(positive, inside)]
+    positives = [roots[roots @ inside > 0] for roots in pieces]
+    simple = np.concatenate([roots[simple_of(roots, inside)] for roots in positives])
     named: dict[int, str] = {}
-    for normal, letter in zip(typed, letters, strict=True):
-        fits = np.flatnonzero(np.abs(np.abs(simple @ normal) - 1) < SAME_MIRROR)
-        for wall in fits:
-            named.setdefault(int(wall), letter)
+    for wall, typed_one in zip(*np.nonzero(same_mirrors(simple, typed)), strict=True):
+        named.setdefault(int(wall), letters[int(typed_one)])
     order = sorted(named, key=lambda wall: list(letters).index(named[wall]))
     order += [wall for wall in range(len(simple)) if wall not in named]
     spare = iter([c for c in "pqrstuvwxyz" if c not in letters])
     final = tuple(named[wall] if wall in named else next(spare) for wall in order)
     simple = simple[order]
-    return ReflectionGroup(simple, positive, final, components_of(simple))
+    return ReflectionGroup(simple, np.concatenate(positives), final, components_of(simple))
 
 
 def components_of(simple: Array) -> tuple[Component, ...]:
-    """The irreducible parts of a chamber with these walls, largest product orders read from the angles."""
-    angles = np.arccos(np.clip(-(simple @ simple.T), -1, 1)) / math.pi
+    """The irreducible parts of a chamber with these walls; walls meet at π/m, so the angles give every m."""
     size = len(simple)
+    angles = np.arccos(np.clip(-(simple @ simple.T), -1, 1))
     orders = {
-        (i, j): Fraction(float(angles[i, j])).limit_denominator(720).denominator
+        (i, j): round(math.pi / float(angles[i, j]))
         for i in range(size)
         for j in range(i + 1, size)
-        if abs(angles[i, j] - 0.5) > SAME_MIRROR
+        if abs(angles[i, j] - math.pi / 2) > SAME_MIRROR
     }
     parts = connected(size, orders)
     result = []
     for part in parts:
-        place = {node: k for k, node in enumerate(part)}
-        inner = {(place[i], place[j]): m for (i, j), m in orders.items() if i in place and j in place}
         if len(part) == 1:
             result.append(Component(Family("A", 1), tuple(part)))
             continue
+        place = {node: k for k, node in enumerate(part)}
+        inner = {(place[i], place[j]): m for (i, j), m in orders.items() if i in place and j in place}
         family, nodes = recognise(inner, len(part))
         result.append(Component(family, tuple(part[node] for node in nodes)))
     return tuple(result)
@@ -321,15 +274,3 @@ def connected(size: int, edges: object) -> list[list[int]]:
         old, new = group[j], group[i]
         group = [new if g == old else g for g in group]
     return [[i for i in range(size) if group[i] == g] for g in dict.fromkeys(group)]
-
-
-def _distinct(roots: Array) -> Array:
-    """One of each root. Roots are at least `SAME_MIRROR` apart, so a coarse rounding in a skew frame tells them."""
-    skew = np.array([math.sqrt(p) for p in (2, 3, 5, 7, 11, 13, 17, 19)])[: roots.shape[1]]
-    order = np.argsort(roots @ skew, kind="stable")
-    result: list[int] = []
-    for k in order:
-        near = [i for i in result[-8:] if np.abs(roots[i] - roots[k]).max() < SAME_MIRROR]
-        if not near:
-            result.append(int(k))
-    return roots[np.sort(result)]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import TYPE_CHECKING
@@ -9,6 +10,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from mirrorlab.mirrors.group import ReflectionGroup, TooLarge, components_of
+from mirrorlab.mirrors.symbols import PointGroup, point_group, rotation_group
 from mirrorlab.mirrors.walk import Array, Ints, Progress, Walk, walk
 
 if TYPE_CHECKING:
@@ -20,6 +22,12 @@ are what a person types, and images on two sides of a wall would otherwise diffe
 
 MOST_IMAGES = 2_000_000
 """Largest orbit made unless the caller asks for more; three coordinates take about 100 MB then."""
+
+MOST_EXPONENT = 1000
+"""Seeds reach up to 2 to this power: sums of eight of their coordinates then stay finite."""
+
+MOST_LETTERS = 200_000_000
+"""Most letters that all words of an orbit may have; two million images have about 60 each at most."""
 
 
 class OrbitError(ValueError):
@@ -38,9 +46,9 @@ class Orbit:
         Depth modulo 2. An image on a mirror could be reached with either; see `stabiliser`.
     depth : ndarray of int, shape (N,)
         Fewest reflections in the chamber's walls that lead from the seed to the image.
-    stabiliser_order, stabiliser, stabiliser_symbol
-        The elements that leave the seed in place: how many, their families ("1" for none), and for rank up
-        to 3 the symbol of the site.
+    stabiliser_order, stabiliser
+        The elements that leave the seed in place: how many, and their families: "1" for none, "A1xA2" for
+        reflections, "A1xA2+" for the rotations among those. `stabiliser_symbol` has the site's symbol.
     seed : ndarray, shape (d,)
         The seed as used; `heights` are its distances from the chamber's walls.
     snapped : str or None
@@ -67,6 +75,7 @@ class Orbit:
     letters: tuple[str, ...]
     walls: tuple[int, ...] = ()
     group_order: int = 1
+    site: tuple[Family, ...] = ()
     _walk: Walk | None = field(default=None, repr=False)
     _kept: Ints | None = field(default=None, repr=False)
 
@@ -78,10 +87,19 @@ class Orbit:
         """Number of images: order of the group divided by that of the stabiliser."""
         return self.group_order // self.stabiliser_order
 
+    @property
+    def stabiliser_symbol(self) -> PointGroup | None:
+        """Symbols of the stabiliser in three dimensions; None where more than three independent mirrors make it."""
+        return rotation_group(self.site) if self.rotations else point_group(self.site)
+
     @cached_property
     def _words(self) -> list[str]:
         if self._walk is None:
             return [""] * len(self.points)
+        letters = int(self._walk.depth.sum())
+        if letters > MOST_LETTERS:
+            what = "letters of the words"
+            raise TooLarge(what, letters, letters, MOST_LETTERS, "")
         words = [""]
         for k in range(1, len(self._walk.points)):
             words.append(self.letters[self._walk.mirror[k]] + words[self._walk.parent[k]])
@@ -96,15 +114,21 @@ class Orbit:
 
         A word is a product of reflections: in ``abc`` the seed is reflected in c first. Read forwards it names
         the walls crossed on the way from the seed's chamber to the image's.
+
+        Raises
+        ------
+        TooLarge
+            Words of more than `MOST_LETTERS` letters in all; only thousands of images round one edge, in words of
+            as many letters, come to that.
         """
         return self._words
 
 
-def site_symbol(components: tuple[Family, ...], rotations: bool = False) -> str:
-    """Families of a stabiliser as one string, "1" when it is trivial."""
-    if rotations:
-        return "1" if not components else "x".join(f.name for f in components) + "+"
-    return "x".join(f.name for f in components) or "1"
+def site_families(site: tuple[Family, ...], rotations: bool = False) -> str:
+    """Families of a stabiliser as one string, "1" when it is trivial: one mirror holds no rotation."""
+    if rotations and math.prod(family.order for family in site) <= 2:
+        return "1"
+    return "x".join(family.name for family in site) + ("+" if rotations else "") if site else "1"
 
 
 def make_orbit(
@@ -125,25 +149,31 @@ def make_orbit(
     Raises
     ------
     OrbitError
-        The seed is not finite.
+        A seed of another dimension, one that is not finite, or one beyond 2^`MOST_EXPONENT`.
     TooLarge
         More than `limit` images; the message says how many and the memory.
     OrbitCancelled
         `progress` returned False.
     """
     seed = np.asarray(seed, dtype=np.float64)
-    if not np.isfinite(seed).all():
-        msg = f"seed {seed.tolist()}: every coordinate must be a finite number"
+    if seed.shape != (group.dimension,) or not np.isfinite(seed).all():
+        msg = f"seed {seed.tolist()}: give {group.dimension} finite coordinates"
         raise OrbitError(msg)
-    folded, count = group.fold(seed[None, :])
+    # Work near 1: squares of very large or small coordinates would overflow or vanish. A power of 2 loses no digit.
+    exponent = int(np.frexp(np.abs(seed).max(initial=0.0))[1])
+    if exponent > MOST_EXPONENT:
+        msg = f"seed {seed.tolist()}: coordinates up to {2.0**MOST_EXPONENT:.0e}, so that images stay finite numbers"
+        raise OrbitError(msg)
+    folded, count = group.fold(np.ldexp(seed, -exponent)[None, :])
     place, walls, moved = snap(group, folded[0])
-    fixed = components_of(group.simple[list(walls)]) if walls else ()
-    mirror_order = int(np.prod([c.family.order for c in fixed], dtype=np.int64)) if fixed else 1
+    site = tuple(c.family for c in components_of(group.simple[list(walls)])) if walls else ()
+    mirror_order = math.prod(family.order for family in site)
     size = group.order // mirror_order
     on_mirror = bool(walls) or not group.rank
     wanted = size if on_mirror or not rotations else size // 2
     if size > limit:
-        raise TooLarge("images", size, size * (group.dimension * 8 + 32), limit)
+        what = "images"
+        raise TooLarge(what, size, size * (group.dimension * 8 + 32), limit)
     steps = walk(group.simple, place, size, progress)
     kept = None
     if rotations and not on_mirror:
@@ -156,22 +186,23 @@ def make_orbit(
             depth + parity
         )  # on a wall the word ends in one more reflection, which leaves the seed in place
         parity = np.zeros_like(depth)
-    points = steps.points[chosen]
+    points = np.ldexp(steps.points[chosen], exponent)
     if len(points) != wanted:
         msg = f"orbit of {len(points)} images where {wanted} were due"
         raise AssertionError(msg)
     names = [group.letters[i] for i in walls]
     text = None
     if moved:
-        text = f"moved onto {'wall' if len(names) == 1 else 'walls'} {', '.join(names)} (nearer than {ON_WALL:g} of its distance)"
+        onto = f"wall{'' if len(names) == 1 else 's'} {', '.join(names)}"
+        text = f"moved onto {onto} (nearer than {ON_WALL:g} of its distance)"
     return Orbit(
         points=points,
         parity=parity,
         depth=depth,
         stabiliser_order=mirror_order // 2 if rotations and walls else mirror_order,
-        stabiliser=site_symbol(tuple(c.family for c in fixed), rotations),
-        seed=place,
-        heights=group.simple @ place,
+        stabiliser=site_families(site, rotations),
+        seed=np.ldexp(place, exponent),
+        heights=np.ldexp(group.simple @ place, exponent),
         snapped=text,
         folded=int(count[0]),
         frame=frame,
@@ -179,6 +210,7 @@ def make_orbit(
         letters=group.letters,
         walls=walls,
         group_order=group.rotation_order if rotations else group.order,
+        site=site,
         _walk=steps,
         _kept=kept,
     )

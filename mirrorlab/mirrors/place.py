@@ -39,7 +39,7 @@ def seed_point(
     if heights is not None:
         wanted = _values(heights, len(normals), "heights", "values, one above each typed mirror")
         found = np.linalg.pinv(normals) @ wanted
-        if np.abs(normals @ found - wanted).max() > MISFIT * max(1.0, float(np.abs(wanted).max())):
+        if np.abs(normals @ found - wanted).max() > MISFIT * float(np.abs(wanted).max()):
             msg = f"heights {wanted.tolist()}: no point has these; the mirrors are dependent, give a point instead"
             raise OrbitError(msg)
         return np.asarray(found)
@@ -66,12 +66,20 @@ def place_names(group: ReflectionGroup) -> tuple[str, ...]:
 def named_place(group: ReflectionGroup, name: str) -> Array:
     """The unit vector to a named place of the true chamber: "centre", "wall a", "edge ab", "corner abc".
 
-    The letters name the walls it lies on; above the others it stands at equal heights.
+    The letters name the walls it lies on; above the others it stands at equal heights. A corner lies on all walls
+    but one, so with three walls "edge ab" and "corner ab" are the same place.
+
+    Raises
+    ------
+    OrbitError
+        No such place.
     """
     words = name.lower().split()
+    kind = words[0] if len(words) == 2 else ""
     on = "" if words in (["centre"], ["center"]) else (words[-1] if words else "?")
-    known = [c in group.letters for c in on]
-    if not words or not all(known) or len(set(on)) != len(on) or len(on) >= max(group.rank, 1):
+    kinds = {"": True, "wall": len(on) == 1, "edge": len(on) > 1, "corner": len(on) == group.rank - 1}
+    known = set(on) <= set(group.letters) and len(set(on)) == len(on) < max(group.rank, 1)
+    if not known or len(words) > 2 or not kinds.get(kind, False):
         msg = f'place "{name}": accepted are {", ".join(place_names(group)[:12])}'
         raise OrbitError(msg)
     heights = np.array([0.0 if letter in on else 1.0 for letter in group.letters])
@@ -80,8 +88,12 @@ def named_place(group: ReflectionGroup, name: str) -> Array:
 
 
 def _values(given: Sequence[float], count: int, what: str, meaning: str) -> Array:
-    values = np.array(given, dtype=np.float64)
+    try:
+        values = np.array(given, dtype=np.float64)
+    except (TypeError, ValueError) as error:
+        msg = f"{what} {given!r}: {count} finite {meaning}"
+        raise OrbitError(msg) from error
     if values.shape != (count,) or not np.isfinite(values).all():
-        msg = f"{what} {list(given)}: {count} finite {meaning}"
+        msg = f"{what} {values.tolist()}: {count} finite {meaning}"
         raise OrbitError(msg)
     return values

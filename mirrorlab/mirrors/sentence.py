@@ -31,7 +31,9 @@ def _lattice(finding: Finding) -> str:
     if finding.crystallographic:
         return "a lattice can carry it"
     pairs = [flag.letters for flag in finding.flags if flag.code == "no-lattice"]
-    return "no lattice can carry it" + (f", because of {' and '.join(pairs)}" if pairs else "")
+    cycles = [f"the cycle {flag.letters}" for flag in finding.flags if flag.code == "cycle"]
+    at_fault = " and ".join(pairs or cycles)
+    return "no lattice can carry it" + (f", because of {at_fault}" if at_fault else "")
 
 
 def _closed(finding: Finding) -> str:
@@ -68,7 +70,9 @@ def _tube(finding: Finding) -> str:
         symbol = tube.moved_point_group
         name = families if symbol is None else f"{symbol.hermann_mauguin} ({families})"
         moved = f"; moved through one {'line' if finding.rank == 2 else 'point'} the same planes make {name}"
-    head = "Parallel mirrors" if finding.rank == 1 else "A tube" if finding.rank == 2 else "A closed cell"
+    bounded = all(part.singular for part in finding.parts)
+    heads = {1: "Parallel mirrors", 2: "A tube" if bounded else "A tube open on one side"}
+    head = heads.get(finding.rank, "A cell" if bounded else "A cell open on one side")
     return f"{head}: {how}{plane}{moved}."
 
 

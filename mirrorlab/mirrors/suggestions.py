@@ -91,6 +91,7 @@ def nearest_closing(
 ) -> tuple[Suggestion, ...]:
     """The nearest sets of angles that close, by largest change, then by total change, closed before subdivided."""
     typed = np.array([angle.degrees for angle in angles])
+    found: list[tuple[Fraction, ...]]
     if size == 2:
         found = [(nearby.fraction,) for nearby in angles[0].nearest(MOST_SUGGESTIONS)]
         found += [(Fraction(1, max(2, round(180 / max(typed[0], 0.5)))),)]

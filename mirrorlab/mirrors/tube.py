@@ -79,7 +79,6 @@ def describe_tube(
     normals: NDArray[np.float64],
     cycles: tuple[Flag, ...],
     moved: ReflectionGroup | None,
-    inside: NDArray[np.float64],
 ) -> Tube:
     """Decide the tiling of a tube from its parts.
 
@@ -101,7 +100,7 @@ def describe_tube(
         if loose:
             tiling = "undetermined"
         else:
-            chambers = _count(parts, fractions, normals, inside)
+            chambers = _count(parts, fractions, normals)
             plain = all(f is not None and (f == 0 or f.numerator == 1) for row in fractions for f in row)
             tiling = "once" if plain else "subdivided"
     plane_group = None
@@ -122,9 +121,7 @@ def describe_tube(
     )
 
 
-def _count(
-    parts: list[Part], fractions: Fractions, normals: NDArray[np.float64], inside: NDArray[np.float64]
-) -> int | None:
+def _count(parts: list[Part], fractions: Fractions, normals: NDArray[np.float64]) -> int | None:
     counts: list[int | None] = []
     for part in parts:
         if part.roots is None:
@@ -134,7 +131,7 @@ def _count(
         if part.singular:
             counts.append(_simplex(part, known, mine))
         else:
-            counts.append(chambers_in_region(family_of(part.roots), known, mine, part.roots, inside))
+            counts.append(chambers_in_region(family_of(part.roots).order, known, mine, part.roots))
     return None if any(count is None for count in counts) else math.prod(c for c in counts if c is not None)
 
 

@@ -47,7 +47,7 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
     simple : ndarray, shape (r, d)
         Unit inward normals of the chamber's walls.
     dominant : ndarray, shape (d,)
-        A point with no negative height; heights within 1e-9 of zero count as zero.
+        A point with no negative height; heights within 1e-9 of its largest count as zero.
     size : int
         Number of images, known from the group's order and the stabiliser.
     progress : callable, optional
@@ -56,7 +56,7 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
     rank, d = simple.shape
     two_gram = 2 * simple @ simple.T
     heights = simple @ dominant
-    small = 1e-9 * max(1.0, float(np.abs(heights).max(initial=0)))
+    small = 1e-9 * float(np.abs(heights).max(initial=0))
     heights[np.abs(heights) <= small] = 0
     points = np.empty((size, d))
     parent = np.zeros(size, dtype=np.int64)
