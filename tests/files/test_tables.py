@@ -1,0 +1,104 @@
+"""CSV and its metadata, NumPy files, and writing whole."""
+
+from __future__ import annotations
+
+import csv
+import json
+import os
+from pathlib import Path
+
+import numpy as np
+import pytest
+
+from mirrorlab import Arrangement
+from mirrorlab.files.orbit_table import write_orbit, write_points
+from mirrorlab.files.table import Column, write_table
+from mirrorlab.files.whole import FileError, make_whole, write_whole
+
+LANTERN = Arrangement.from_angles(["90", "60", "36"])
+
+
+def test_numbers_read_back_to_the_same_double(tmp_path: Path) -> None:
+    orbit = LANTERN.orbit(heights=[1, 2, 3])
+    table, _ = write_orbit(tmp_path / "images.csv", orbit, LANTERN.finding())
+    with table.open(newline="") as handle:
+        rows = list(csv.DictReader(handle))
+    assert list(rows[0]) == ["image", "x", "y", "z", "parity", "depth", "word"]
+    read = np.array([[float(row[c]) for c in "xyz"] for row in rows])
+    assert (read == orbit.points).all()
+    assert [row["word"] for row in rows] == orbit.words()
+    assert [int(row["depth"]) for row in rows] == orbit.depth.tolist()
+
+
+def test_lines_end_as_rfc_4180_has_them(tmp_path: Path) -> None:
+    table, _ = write_orbit(tmp_path / "images.csv", LANTERN.orbit(place="centre"), LANTERN.finding())
+    raw = table.read_bytes()
+    assert raw.count(b"\r\n") == raw.count(b"\n") == 121
+
+
+@pytest.mark.parametrize(("family", "names"), [("A2", ["x", "y"]), ("D4", ["x1", "x2", "x3", "x4"])])
+def test_coordinate_columns_follow_the_rank(tmp_path: Path, family: str, names: list[str]) -> None:
+    arrangement = Arrangement.from_family(family)
+    table, _ = write_orbit(tmp_path / "o.csv", arrangement.orbit(place="centre"), arrangement.finding())
+    header = table.read_text().splitlines()[0].split(",")
+    assert header == ["image", *names, "parity", "depth", "word"]
+
+
+def test_metadata_states_frame_seed_group_and_units(tmp_path: Path) -> None:
+    """W3C, Metadata Vocabulary for Tabular Data: context, url, tableSchema with one entry a column."""
+    orbit = LANTERN.orbit(heights=[1, 2, 3])
+    table, beside = write_orbit(tmp_path / "images.csv", orbit, LANTERN.finding())
+    about = json.loads(beside.read_text())
+    assert beside.name == "images.csv-metadata.json"
+    assert about["@context"] == "http://www.w3.org/ns/csvw"
+    assert about["url"] == table.name
+    header = table.read_text().splitlines()[0].split(",")
+    assert [column["name"] for column in about["tableSchema"]["columns"]] == header
+    assert {column["datatype"] for column in about["tableSchema"]["columns"]} == {
+        "integer",
+        "double",
+        "string",
+    }
+    notes = {note["name"]: note["value"] for note in about["notes"]}
+    assert notes["frame"] == orbit.frame
+    assert notes["seed"] == orbit.seed.tolist()
+    assert notes["group"] == "H3"
+    assert notes["units"]
+
+
+def test_cells_with_commas_and_quotes(tmp_path: Path) -> None:
+    table, _ = write_table(tmp_path / "t.csv", [Column("a"), Column("b")], [['x, "y"', None]], {})
+    with table.open(newline="") as handle:
+        assert list(csv.reader(handle)) == [["a", "b"], ['x, "y"', ""]]
+
+
+def test_numpy_file(tmp_path: Path) -> None:
+    orbit = LANTERN.orbit(heights=[1, 2, 3])
+    assert (np.load(write_points(tmp_path / "o.npy", orbit)) == orbit.points).all()
+
+
+def test_a_failure_leaves_the_old_file_and_nothing_else(tmp_path: Path) -> None:
+    target = write_whole(tmp_path / "a.txt", "old")
+
+    def fail(beside: Path) -> None:
+        beside.write_text("half")
+        msg = "no space left"
+        raise OSError(28, msg)
+
+    with pytest.raises(FileError, match="no space left"):
+        make_whole(target, fail)
+    assert target.read_text() == "old"
+    assert os.listdir(tmp_path) == ["a.txt"]
+
+
+def test_a_folder_that_is_not_there(tmp_path: Path) -> None:
+    with pytest.raises(FileError, match="cannot be written"):
+        write_whole(tmp_path / "no" / "a.txt", "x")
+
+
+def test_a_new_file_has_the_usual_permissions(tmp_path: Path) -> None:
+    mask = os.umask(0o022)
+    try:
+        assert write_whole(tmp_path / "a.txt", "x").stat().st_mode & 0o777 == 0o644
+    finally:
+        os.umask(mask)
