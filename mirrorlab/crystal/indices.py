@@ -107,3 +107,10 @@ def write_face(indices: Sequence[float], hexagonal: bool = False, brackets: str 
     if hexagonal:
         values = (values[0], values[1], -values[0] - values[1], values[2])
     return brackets[0] + write_indices(values) + brackets[1]
+
+
+def printed(label: str) -> str:
+    """Indices as they are printed, with bars over the digits: ``(1̅10)`` for ``(-110)``."""
+    if "," in label:
+        return re.sub(r"-(\d+)", lambda match: "".join(digit + "\u0305" for digit in match.group(1)), label)
+    return re.sub(r"-(\d)", "\\1\u0305", label)
