@@ -50,7 +50,7 @@ class Look:
     ball_alpha, disc_alpha : float
         How much of what is behind a chamber or a mirror is covered, 0 to 1.
     hidden_alpha : float
-        How strongly a line or point shows that the ball hides.
+        How strongly a line or point shows that a solid hides; none does behind the ball, it is silvered.
     typed_width, generated_width, region_width, guide_width : float
         Line widths in pixels at 96 dots an inch.
     mark_size, seed_size, label_size : float
@@ -67,6 +67,8 @@ class Look:
     region: str
     region_line: str
     seed: str
+    seed_ground: str
+    ball_edge: str
     image: str
     image_hollow: str
     flagged: str
@@ -82,11 +84,11 @@ class Look:
     mirrors: tuple[str, ...]
     sheen: str = "#ffffff"
     shade: str = "#10161c"
-    sheen_alpha: float = 0.5
+    sheen_alpha: float = 0.62
     shade_alpha: float = 0.3
     ball_alpha: float = 1.0
     disc_alpha: float = 0.22
-    hidden_alpha: float = 0.16
+    hidden_alpha: float = 0.22
     typed_width: float = 2.4
     generated_width: float = 1.1
     region_width: float = 2.6
@@ -122,11 +124,13 @@ LIGHT_LOOK = Look(
     ink="#22262B",
     muted="#6A6861",
     hairline="#D8D1C2",
-    silver_light="#F1F2F0",
-    silver_dark="#9FADB6",
+    silver_light="#E9ECEC",
+    silver_dark="#93A3AE",
     region="#E2C078",
     region_line="#6E4E12",
     seed="#C2410C",
+    seed_ground="#FFFDF8",
+    ball_edge="#7E8B93",
     image="#22262B",
     image_hollow="#FFFDF8",
     flagged="#9B2D20",
@@ -154,6 +158,8 @@ DARK_LOOK = Look(
     region="#C79F4E",
     region_line="#F5DFA8",
     seed="#931E18",
+    seed_ground="#F6F2E8",
+    ball_edge="#3A444B",
     image="#F6F2E8",
     image_hollow="#1B1E21",
     flagged="#F08A78",
@@ -170,7 +176,7 @@ DARK_LOOK = Look(
     sheen_alpha=0.32,
     shade_alpha=0.5,
     disc_alpha=0.26,
-    hidden_alpha=0.2,
+    hidden_alpha=0.26,
 )
 """The same by lamplight."""
 

@@ -60,13 +60,26 @@ class Faces:
 
 @dataclass(frozen=True, slots=True)
 class Line:
-    """A polyline. `index` picks the line pattern and tint of a typed mirror."""
+    """A polyline.
+
+    Attributes
+    ----------
+    points : ndarray, shape (n, 3)
+    index : int
+        Picks the line pattern and tint of a typed mirror.
+    weight : float
+        Multiplies its width.
+    apart : bool
+        True when the points are the ends of separate pieces, two by two.
+    """
 
     role: Role
     points: NDArray[np.float64]
     key: Key
     index: int = -1
     closed: bool = False
+    weight: float = 1.0
+    apart: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -103,6 +116,11 @@ class Drawing:
         Which axes the coordinates are in, for a person to read.
     unit : str
         "" for directions on the unit sphere, else "mm" or "cell".
+    toward : ndarray, shape (3,), or None
+        From which direction it is best looked at first; None leaves that to the view. Not for flat drawings.
+    seed_on : str
+        Where the seed can be dragged: "sphere" (about the origin, through the seed), "plane" (of constant z,
+        through the seed) or "" where it cannot.
     """
 
     title: str
@@ -114,3 +132,5 @@ class Drawing:
     frame: str = ""
     unit: str = ""
     notes: tuple[str, ...] = field(default=())
+    toward: NDArray[np.float64] | None = None
+    seed_on: str = ""

@@ -1,0 +1,81 @@
+"""The OpenGL view of pictures in space, on pyqtgraph's OpenGL widget."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+from pyqtgraph.opengl import GLViewWidget
+from PySide6.QtCore import Signal
+from PySide6.QtGui import QImage, QMatrix4x4, QPainter
+from PySide6.QtWidgets import QWidget
+
+from mirrorlab.desktop.stage.gl_item import DrawingItem
+from mirrorlab.desktop.stage.gl_setup import card, surface_format
+from mirrorlab.desktop.stage.handling import Handling
+from mirrorlab.drawing.look import LIGHT_LOOK
+from mirrorlab.files.picture_paint import paint_over
+
+
+class SpaceView(Handling, GLViewWidget):
+    """A drawing in space with OpenGL. Signals: see `Handling`."""
+
+    hovered = Signal(object)
+    picked = Signal(object, object)
+    seed_dragged = Signal(object)
+    seed_grabbed = Signal()
+    seed_released = Signal()
+    camera_changed = Signal(object)
+
+    def __init__(self, look: Any = LIGHT_LOOK, parent: QWidget | None = None) -> None:
+        GLViewWidget.__init__(self, parent)
+        self.setFormat(surface_format(card().samples))
+        self._item = DrawingItem()
+        self.start_handling(look)
+        self.addItem(self._item)
+        self.refresh_view()
+
+    def refresh_view(self) -> None:
+        """Fill the item's buffers with the drawing."""
+        self.setBackgroundColor(self._look.ground)
+        self._item.set_drawing(self._prepared, self._look, self.cut_strokes())
+        self._item.set_camera(self._camera)
+
+    def camera_moved(self) -> None:
+        self._item.set_camera(self._camera)
+
+    def initializeGL(self) -> None:
+        # The card forgets everything when the widget moves to another window.
+        self.context().aboutToBeDestroyed.connect(self._forget)
+        super().initializeGL()
+
+    def _forget(self) -> None:
+        self.makeCurrent()
+        self._item.forget_context()
+        self.doneCurrent()
+
+    def viewMatrix(self) -> QMatrix4x4:
+        return QMatrix4x4(*self._camera.matrices(*self._area())[0].ravel().tolist())
+
+    def projectionMatrix(self, region: Any, viewport: Any) -> QMatrix4x4:
+        return QMatrix4x4(*self._camera.matrices(*self._area())[1].ravel().tolist())
+
+    def paintGL(self) -> None:
+        super().paintGL()
+        painter = QPainter(self)
+        paint_over(painter, self._prepared, self.sight())
+        self.paint_extras(painter)
+        painter.end()
+
+    def has_picture(self) -> bool:
+        """Whether OpenGL works: a context, and a framebuffer that is not empty."""
+        if not self.isValid():
+            return False
+        image = self.grabFramebuffer()
+        return not image.isNull() and _is_painted(image)
+
+
+def _is_painted(image: QImage) -> bool:
+    """Whether anything at all was drawn: an unpainted framebuffer is black and fully transparent."""
+    small = image.scaled(8, 8).convertToFormat(QImage.Format.Format_RGBA8888)
+    return bool(np.frombuffer(small.constBits(), dtype=np.uint8).any())

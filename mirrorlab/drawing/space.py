@@ -1,0 +1,275 @@
+"""The arrangement in space: the sphere cut into chambers, its mirrors, the seed and its images."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from functools import lru_cache
+
+import numpy as np
+from numpy.typing import NDArray
+
+from mirrorlab.drawing.model import Drawing, Faces, Key, Label, Line, Points, Role
+from mirrorlab.drawing.sphere import arc, circles, cone_corners, cross, disc_sectors, spherical_triangles
+from mirrorlab.mirrors import Arrangement, Finding, Orbit, ReflectionGroup
+
+Array = NDArray[np.float64]
+
+RIM = 1.13
+"""Radius of a typed mirror's disc, in radii of the sphere."""
+
+RIM_WEIGHT = 0.55
+"""The rim is drawn lighter than the mirror's circle on the sphere."""
+
+TAG = 1.215
+"""Where a mirror's letter stands."""
+
+LINE_LIFT = 1.0006
+"""Lines on the sphere stand out by this, so that the surface does not swallow them."""
+
+WANTED_TRIANGLES = 5000
+"""About so many small triangles make up the sphere: smooth to the eye, and sent to the screen in a few ms."""
+
+MOST_DRAWN = 20_000
+"""Most images drawn as points; beyond it they only make the sphere grey."""
+
+MOST_CHAMBERS = 3000
+"""Most chambers drawn; a picture 1000 pixels wide has no room to tell more apart."""
+
+INSIDE = 1e-9
+"""A chamber's middle this far on the right side of a mirror counts as inside; rounding is about 1e-15."""
+
+
+@dataclass(frozen=True, slots=True)
+class SpaceOptions:
+    """What is drawn.
+
+    Attributes
+    ----------
+    chambers : bool
+        The sphere with its chambers; without it one looks through to the discs.
+    mirrors : bool
+        Great circles of the generated mirrors. Typed ones are always drawn.
+    discs, images, region : bool
+        The typed mirrors' discs, the images of the seed, the outline of the typed region.
+    first : int
+        How many images of endlessly many are drawn.
+    flat : bool
+        For arrangements of rank 2: the view straight on.
+    """
+
+    chambers: bool = True
+    mirrors: bool = True
+    discs: bool = True
+    images: bool = True
+    region: bool = True
+    first: int = 200
+    flat: bool = False
+
+
+DEFAULT = SpaceOptions()
+
+
+def space_drawing(
+    arrangement: Arrangement, finding: Finding, orbit: Orbit | None = None, options: SpaceOptions = DEFAULT
+) -> Drawing:
+    """The arrangement in space.
+
+    Rank 3 shows the sphere, rank 1 and 2 mirrors through their common edge, a tube its cross-section. Higher
+    ranks have no picture in space: see `mirrorlab.drawing.coxeterplane`.
+
+    Parameters
+    ----------
+    arrangement, finding
+    orbit : Orbit, optional
+        Its images are drawn in their directions.
+
+    Returns
+    -------
+    Drawing
+        Keys: ("mirror", i) typed, ("generated", k) by row of ``finding.group.mirrors``, ("chamber", k) by element
+        (the k-th image of a seed off all mirrors lies in chamber k), ("image", k) by row of the orbit.
+    """
+    if arrangement.normals is None or finding.kind == "unbuildable":
+        return Drawing(title="No planes in space have these angles", notes=(finding.sentence,))
+    if finding.kind == "tube":
+        from mirrorlab.drawing.prism import tube_drawing
+
+        return tube_drawing(arrangement, finding, options)
+    if finding.rank > 3:
+        msg = f"rank {finding.rank} has no picture in space; look at the Coxeter plane"
+        return Drawing(title=f"Rank {finding.rank}", notes=(msg,))
+    if finding.group is None:
+        from mirrorlab.drawing.openspace import open_drawing
+
+        return open_drawing(arrangement, finding, options)
+    if finding.rank < 3:
+        from mirrorlab.drawing.flat import flat_drawing, wedge_drawing
+
+        make = flat_drawing if options.flat else wedge_drawing
+        return make(arrangement, finding, orbit, options)
+    return _sphere_drawing(arrangement, finding.group, orbit, options)
+
+
+def _sphere_drawing(
+    arrangement: Arrangement, group: ReflectionGroup, orbit: Orbit | None, options: SpaceOptions
+) -> Drawing:
+    notes: list[str] = []
+    solid = options.chambers and group.order <= MOST_CHAMBERS
+    if options.chambers and not solid:
+        notes.append(f"{group.order:,} chambers are too many to draw; the mirrors alone are shown")
+    normals = arrangement.normals
+    assert normals is not None
+    corners = cone_corners(normals)
+    faces = chamber_faces(group, arrangement) if solid else ()
+    lines = mirror_lines(group, arrangement) if options.mirrors else ()
+    lines = (*lines, *_typed_lines(arrangement, options.discs))
+    if options.discs:
+        faces = (*faces, *_discs(arrangement, 1.0 if solid else 0.0))
+    if options.region and len(corners):
+        lines = (*lines, region_outline(corners))
+    points, note = image_points(orbit) if options.images and orbit is not None else ((), "")
+    if note:
+        notes.append(note)
+    toward = best_side(corners.sum(axis=0) if len(corners) else group.corners.sum(axis=0))
+    return Drawing(
+        title="Mirrors in space",
+        faces=faces,
+        lines=lines,
+        points=points,
+        labels=mirror_tags(arrangement, toward),
+        frame=arrangement.frame,
+        notes=tuple(notes),
+        toward=toward,
+        seed_on="sphere",
+    )
+
+
+@lru_cache(maxsize=4)
+def chamber_faces(group: ReflectionGroup, arrangement: Arrangement) -> tuple[Faces, ...]:
+    """The sphere's chambers by parity, those of the typed region apart (role REGION, index 0 even, 1 odd).
+
+    Kept for the last few groups: while a seed is dragged the same faces come back, and views send them once.
+    """
+    matrices, parity = group.elements()
+    corners = np.einsum("kij,rj->kri", matrices, group.corners)
+    steps = int(np.clip(math.isqrt(WANTED_TRIANGLES // len(matrices)), 4, 16))
+    within = np.zeros(len(matrices), dtype=bool)
+    if arrangement.normals is not None:
+        within = (corners.sum(axis=1) @ arrangement.normals.T > INSIDE).all(axis=1)
+    blocks = []
+    for role, index, chosen in (
+        (Role.CHAMBER_EVEN, -1, ~within & (parity == 0)),
+        (Role.CHAMBER_ODD, -1, ~within & (parity == 1)),
+        (Role.REGION, 0, within & (parity == 0)),
+        (Role.REGION, 1, within & (parity == 1)),
+    ):
+        which = np.flatnonzero(chosen)
+        if not len(which):
+            continue
+        vertices, triangles = spherical_triangles(corners[which], steps)
+        keys: list[Key] = []
+        for k in which.tolist():
+            keys += [("chamber", k)] * steps**2
+        blocks.append(Faces(role, vertices, triangles, tuple(keys), index))
+    return tuple(blocks)
+
+
+@lru_cache(maxsize=4)
+def mirror_lines(group: ReflectionGroup, arrangement: Arrangement) -> tuple[Line, ...]:
+    """Great circles of the mirrors that were not typed."""
+    typed = arrangement.normals if arrangement.normals is not None else np.zeros((0, 3))
+    fresh = np.ones(len(group.mirrors), dtype=bool)
+    if len(typed):
+        fresh = np.abs(group.mirrors @ typed.T).max(axis=1) < 1 - 1e-9
+    which = np.flatnonzero(fresh)
+    return tuple(
+        Line(Role.GENERATED_MIRROR, points, ("generated", k), closed=True)
+        for k, points in zip(which.tolist(), circles(group.mirrors[which], LINE_LIFT), strict=True)
+    )
+
+
+def _typed_lines(arrangement: Arrangement, rims: bool) -> tuple[Line, ...]:
+    assert arrangement.normals is not None
+    rings = ((LINE_LIFT, 1.0), (RIM, RIM_WEIGHT)) if rims else ((LINE_LIFT, 1.0),)
+    return tuple(
+        Line(Role.TYPED_MIRROR, points, ("mirror", i), i, closed=True, weight=weight)
+        for radius, weight in rings
+        for i, points in enumerate(circles(arrangement.normals, radius, 180))
+    )
+
+
+def _discs(arrangement: Arrangement, inner: float) -> tuple[Faces, ...]:
+    normals = arrangement.normals
+    assert normals is not None
+    return tuple(
+        Faces(Role.TYPED_MIRROR, vertices, triangles, (("mirror", i),), i)
+        for i, normal in enumerate(normals)
+        for vertices, triangles in disc_sectors(normal, np.delete(normals, i, axis=0), inner, RIM)
+    )
+
+
+def region_outline(corners: Array) -> Line:
+    """Outline of the typed region on the sphere."""
+    sides = [
+        arc(corners[k], corners[(k + 1) % len(corners)], LINE_LIFT + 0.0004)[:-1] for k in range(len(corners))
+    ]
+    return Line(Role.REGION, np.concatenate(sides), ("region", 0), closed=True)
+
+
+def image_points(orbit: Orbit, scale: float | None = None) -> tuple[tuple[Points, ...], str]:
+    """The seed and its images, in their directions on the unit sphere unless a scale is given, with a note."""
+    positions = np.zeros((len(orbit.points), 3))
+    positions[:, : orbit.points.shape[1]] = orbit.points
+    size = float(np.linalg.norm(positions[0])) if scale is None else 1.0 / scale
+    if size > 0:
+        positions /= size
+    shown = min(len(positions), MOST_DRAWN)
+    note = "" if shown == len(positions) else f"the first {shown:,} of {len(positions):,} images are drawn"
+    blocks = [Points(Role.SEED, positions[:1], (("image", 0),))]
+    for role, parity in ((Role.IMAGE_EVEN, 0), (Role.IMAGE_ODD, 1)):
+        which = np.flatnonzero(orbit.parity[:shown] == parity)
+        which = which[which > 0]
+        if len(which):
+            keys = tuple(("image", k) for k in which.tolist())
+            blocks.append(Points(role, positions[which], keys))
+    return tuple(blocks), note
+
+
+def best_side(middle: Array) -> Array:
+    """Look from beside the region, a little lower than straight on, so that it sits above the middle."""
+    azimuth = math.atan2(middle[1], middle[0]) - math.radians(14)
+    elevation = math.atan2(middle[2], math.hypot(middle[0], middle[1]))
+    elevation = min(math.radians(34), elevation - math.radians(14))
+    elevation = max(math.radians(-34), elevation)
+    return np.array(
+        [
+            math.cos(elevation) * math.cos(azimuth),
+            math.cos(elevation) * math.sin(azimuth),
+            math.sin(elevation),
+        ]
+    )
+
+
+def mirror_tags(arrangement: Arrangement, toward: Array) -> tuple[Label, ...]:
+    """A letter on each typed mirror's rim, where it stands at the outline as first looked at, well apart."""
+    assert arrangement.normals is not None
+    placed: list[Array] = []
+    labels = []
+    both = len(arrangement.normals) <= 4
+    for i, (normal, letter) in enumerate(zip(arrangement.normals, arrangement.letters, strict=True)):
+        side = cross(normal, toward)
+        size = np.linalg.norm(side)
+        side = cross(normal, np.array([0.0, 0.0, 1.0])) if size < 1e-6 else side / size
+        up = cross(side, normal)
+        options = [math.cos(t) * side + math.sin(t) * up for t in np.radians([0, 12, -12, 24, -24, 36, -36])]
+        options += [-o for o in options]
+
+        def room(place: Array) -> float:
+            return min((float(np.linalg.norm(place - q)) for q in placed), default=2.0)
+
+        best = max(options, key=lambda o: (min(room(o), 0.45), o @ toward * 0.2 + o[2] * 0.1))
+        for place in (best, -best) if both else (best,):
+            placed.append(place)
+            labels.append(Label(letter, TAG * place, Role.TYPED_MIRROR, ("mirror", i), i))
+    return tuple(labels)
