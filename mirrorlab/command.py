@@ -59,7 +59,7 @@ def _run(words: list[str]) -> int:
         if len(words) > 1:
             msg = f'"{words[0]}" is not a verb; verbs are {", ".join(names)}; a file opens alone'
             raise ValueError(msg)
-        return open_window(words[0] if words else None)
+        return open_window((words[0].strip() or None) if words else None)
     parser = Parser(
         prog="mirrorlab",
         description="Angles between mirrors in; finite group, images, chambers, point groups and panels out.",
