@@ -35,7 +35,8 @@ class Actions:
         self._edit_menu()
         self._view_menu()
         self._help_menu()
-        window.menuBar().setCornerWidget(self._corner(), Qt.Corner.TopRightCorner)
+        self.corner = self._corner()
+        window.menuBar().setCornerWidget(self.corner, Qt.Corner.TopRightCorner)
 
     def _add(
         self, menu: QMenu, text: str, doing: Callable[[], object], keys: Keys | None = None, hint: str = ""
@@ -105,15 +106,23 @@ class Actions:
         row = QHBoxLayout(corner)
         row.setContentsMargins(0, 1, 8, 1)
         row.setSpacing(2)
-        for action in (self.undo, self.redo):
-            made = QToolButton()
-            made.setDefaultAction(action)
+        stack = self._window.document.undo_stack
+        for text, doing, can, told in (
+            ("Undo", stack.undo, stack.canUndoChanged, stack.undoTextChanged),
+            ("Redo", stack.redo, stack.canRedoChanged, stack.redoTextChanged),
+        ):
+            made = QToolButton()  # not the action's own button: that one would widen with the step's name
+            made.setText(text)
+            made.setEnabled(False)
+            set_kind(made, "corner")
+            made.clicked.connect(doing)
+            can.connect(made.setEnabled)
+            told.connect(made.setToolTip)
             row.addWidget(made)
-            set_kind(made, "quiet")
         self.lamp = QToolButton()
         self.lamp.setToolTip("Light or dark (Ctrl+L)")
         self.lamp.clicked.connect(self._switch_theme)
-        set_kind(self.lamp, "quiet")
+        set_kind(self.lamp, "corner")
         row.addWidget(self.lamp)
         self._name_lamp()
         theming().changed.connect(self._name_lamp)

@@ -109,6 +109,7 @@ class AngleCell(QFrame):
         self.edit = AngleEdit()
         set_kind(self.edit, "compact" if compact else "cell")
         self.edit.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self.edit.setMinimumWidth(30)
         self.edit.setAccessibleName(f"angle between mirrors {name[0]} and {name[1]}")
         self.mark = ReadingMark(8 if compact else 9)
         self.reading = label("", "small")

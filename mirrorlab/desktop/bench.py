@@ -28,7 +28,9 @@ A bench is a widget about 300 px wide that only watches the document. It lives i
   keeps in step, or a `QWidget` that watches the document itself (a traced view). It raises `NoPicture`
   with one sentence where there is nothing to show; the stage shows that sentence in its place.
 - Undoable state of a trade is one frozen value: ``document.set_crystal(value, "change form")`` and
-  ``document.set_glass(value, "set opening", gesture="opening")``; read it back as ``document.crystal``.
+  ``document.set_glass(value, "set opening", gesture="opening")``; read it back as ``document.crystal``. It
+  is saved through its ``to_dict()`` (plain JSON); after a file was opened ``document.crystal`` is the plain
+  mapping that was saved, so read it through one function that takes None, a mapping or your value.
 - Long work goes through ``document.work``, which shows progress and a cancel button in the status line.
 """
 

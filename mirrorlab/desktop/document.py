@@ -228,7 +228,12 @@ class Document(QObject):
 
     def set_angle(self, pair: int, text: str, gesture: str = "") -> None:
         """Type the angle of a pair; raises `AngleError` and changes nothing when it cannot be read."""
-        arrangement = self.arrangement.with_angle(pair, text)
+        if self.arrangement.given_normals:
+            texts = [angle.text for angle in self.arrangement.angles]
+            texts[pair] = text
+            arrangement = Arrangement.from_angles(texts, self.settings.reading)
+        else:
+            arrangement = self.arrangement.with_angle(pair, text)
         letters = self.arrangement.letters
         i, j = self.arrangement.pairs[pair]
         self.set_arrangement(arrangement, f"angle {letters[i]}{letters[j]}", gesture)

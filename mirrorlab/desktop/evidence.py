@@ -16,7 +16,8 @@ from mirrorlab.desktop.theming import theming
 from mirrorlab.mirrors import Arrangement, Finding, Suggestion
 
 SUGGESTIONS_JOB = "suggestions"
-SHEET_HEIGHT = 236
+SHEET_HEIGHT = 172
+"""Pixels: the numbers of three mirrors stand in it whole; more of them scroll."""
 
 
 class EvidenceSheet(QFrame):
@@ -28,13 +29,14 @@ class EvidenceSheet(QFrame):
         self.setFixedHeight(SHEET_HEIGHT)
         self.document = document
         self._stale = True
-        self.numbers = _Column("Numbers to check by hand")
+        self.numbers = _Column("Pairs of mirrors")
+        self.gram = _Column("Gram matrix, −cos of the angles")
         self.grounds = _Column("Why it is so")
         self.flags = _Column("Flags and suggestions")
         row = QHBoxLayout(self)
-        row.setContentsMargins(16, 8, 8, 8)
+        row.setContentsMargins(16, 8, 8, 6)
         row.setSpacing(20)
-        for column, stretch in ((self.numbers, 5), (self.grounds, 5), (self.flags, 6)):
+        for column, stretch in ((self.numbers, 4), (self.gram, 4), (self.grounds, 6), (self.flags, 7)):
             row.addWidget(column, stretch)
         document.arrangement_changed.connect(self.watch)
         document.settings_changed.connect(self.watch)
@@ -55,7 +57,8 @@ class EvidenceSheet(QFrame):
         self._stale = False
         finding, arrangement = self.document.finding, self.document.arrangement
         notation = self.document.settings.notation
-        self.numbers.show_html(numbers_html(arrangement, finding, notation))
+        self.numbers.show_html(pairs_html(arrangement, finding, notation))
+        self.gram.show_html(gram_html(arrangement, finding))
         self.grounds.show_html(grounds_html(finding))
         self.flags.clear()
         for flag in finding.flags:
@@ -89,10 +92,10 @@ class EvidenceSheet(QFrame):
         box = QWidget()
         grid = QGridLayout(box)
         grid.setContentsMargins(0, 0, 0, 0)
-        grid.setHorizontalSpacing(12)
+        grid.setHorizontalSpacing(10)
         grid.setVerticalSpacing(3)
         for k, suggestion in enumerate(suggestions):
-            apply = button("Apply", hint=f"Type these angles: {', '.join(suggestion.texts())}")
+            apply = button("Apply", "tight", f"Type these angles: {', '.join(suggestion.texts())}")
             apply.clicked.connect(lambda _=False, s=suggestion: self._apply(s))
             grid.addWidget(apply, k, 0)
             for c, html in enumerate(suggestion_html(suggestion, self.document.settings.notation), 1):
@@ -121,6 +124,7 @@ class _Column(QWidget):
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
+        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         area.setWidget(self._body)
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
@@ -156,45 +160,39 @@ class _Column(QWidget):
 
 def _row(cells: list[str], head: bool = False) -> str:
     muted = theming().theme.muted
-    style = f' style="color:{muted}"' if head else ""
-    return "<tr>" + "".join(f'<td{style} align="right">{cell}</td>' for cell in cells) + "</tr>"
+    tint = f"; color:{muted}" if head else ""
+    style = f'style="padding:0 9px 2px 0{tint}"'
+    return "<tr>" + "".join(f'<td {style} align="right">{cell}</td>' for cell in cells) + "</tr>"
 
 
 def _table(rows: list[str]) -> str:
-    return f'<table cellspacing="0" cellpadding="2">{"".join(rows)}</table>'
+    return f'<table cellspacing="0" cellpadding="0" style="margin:0">{"".join(rows)}</table>'
 
 
-def _number(value: float) -> str:
-    text = f"{0.0 if abs(value) < 5e-11 else value:.6g}"
+def _number(value: float, digits: int = 6) -> str:
+    text = f"{0.0 if abs(value) < 5e-11 else value:.{digits}g}"
     return text.replace("-", "−")
 
 
-def numbers_html(arrangement: Arrangement, finding: Finding, notation: str) -> str:
-    """Table of the pairs, the Gram matrix and its determinant."""
-    rows = [_row(["pair", "angle", "4cos²", "order of the product"], head=True)]
+def pairs_html(arrangement: Arrangement, finding: Finding, notation: str) -> str:
+    """Table of the pairs: angle, 4cos² and the order of the product of the two reflections."""
+    rows = [_row(["pair", "angle", "4cos²", "order"], head=True)]
     for (pair, value, order), angle in zip(finding.evidence.four_cos, arrangement.angles, strict=True):
         written = angle.text if angle.fraction is None else pretty(angle.fraction, notation)
-        rows.append(
-            _row(
-                [
-                    f"<i>{pair}</i>",
-                    escape(written),
-                    _number(float(value)),
-                    "∞" if order is None else str(order),
-                ]
-            )
-        )
-    parts = [_table(rows)]
+        times = "∞" if order is None else str(order)
+        rows.append(_row([f"<i>{pair}</i>", escape(written), _number(float(value)), times]))
+    return _table(rows)
+
+
+def gram_html(arrangement: Arrangement, finding: Finding) -> str:
+    """The Gram matrix and its determinant."""
     gram = finding.evidence.gram
-    if len(gram) <= 4:
-        head = _row(["", *(f"<i>{letter}</i>" for letter in arrangement.letters)], head=True)
-        body = [
-            _row([f"<i>{letter}</i>", *(_number(v) for v in row)])
-            for letter, row in zip(arrangement.letters, gram, strict=True)
-        ]
-        parts.append("Gram matrix, −cos of the angles" + _table([head, *body]))
-    parts.append(f"Its determinant is {_number(finding.evidence.determinant)}.")
-    return "<br>".join(parts)
+    head = _row(["", *(f"<i>{letter}</i>" for letter in arrangement.letters)], head=True)
+    body = [
+        _row([f"<i>{letter}</i>", *(_number(v, 4) for v in row)])
+        for letter, row in zip(arrangement.letters, gram, strict=True)
+    ]
+    return _table([head, *body]) + f"Its determinant is {_number(finding.evidence.determinant)}."
 
 
 def grounds_html(finding: Finding) -> str:
@@ -230,11 +228,11 @@ def suggestion_html(suggestion: Suggestion, notation: str) -> tuple[str, str, st
         f"<b>{pretty(f, notation)}</b>" if pair in changed else pretty(f, notation)
         for f, pair in zip(suggestion.angles, suggestion.pair_names, strict=True)
     ]
-    spatial = suggestion.name not in suggestion.families and "x" not in suggestion.name
-    runs = symbols.hermann_mauguin(suggestion.name) if spatial else symbols.families(suggestion.families)
-    name = symbols.as_html(runs)
-    kind = "" if suggestion.kind == "closed" else " subdivided"
     if len(angles) > 6:
         pairs = suggestion.changed_pairs
-        angles = [f"{p} {suggestion.degrees_of(p)}" for p in pairs[:5]] + (["…"] if len(pairs) > 5 else [])
-    return " · ".join(angles), name + kind, f"largest change {suggestion.largest_change:.3g}°"
+        angles = [f"{p} {suggestion.degrees_of(p)}" for p in pairs[:3]] + (["…"] if len(pairs) > 3 else [])
+    symbol, _, _ = suggestion.name.partition(" (")
+    spatial = "(" in suggestion.name
+    runs = symbols.hermann_mauguin(symbol) if spatial else symbols.families(suggestion.families)
+    cut = "" if suggestion.kind == "closed" else ", subdivided"
+    return " ".join(angles), symbols.as_html(runs) + cut, f"by {suggestion.largest_change:.3g}°"

@@ -55,7 +55,7 @@ class Filing(QObject):
 
     def open_path(self, path: Path) -> bool:
         """Open a file as a step that can be undone. A wrong file changes nothing and says why."""
-        from mirrorlab.desktop.sheet_file import read_sheet
+        from mirrorlab.desktop.sheets import read_sheet
 
         try:
             read_sheet(path, self._document)
@@ -82,7 +82,7 @@ class Filing(QObject):
 
     def save_path(self, path: Path) -> bool:
         """Write the sheet to a file, whole or not at all."""
-        from mirrorlab.desktop.sheet_file import write_sheet
+        from mirrorlab.desktop.sheets import write_sheet
 
         try:
             write_sheet(path, self._document)
@@ -180,7 +180,7 @@ class Filing(QObject):
         """Write unsaved changes aside, so that the next start can offer them."""
         if self._document.undo_stack.isClean():
             return
-        from mirrorlab.desktop.sheet_file import write_sheet
+        from mirrorlab.desktop.sheets import write_sheet
 
         try:
             self.kept_path.parent.mkdir(parents=True, exist_ok=True)
@@ -196,7 +196,7 @@ class Filing(QObject):
 
     def bring_back(self) -> None:
         """Open what was kept, as a sheet without a file, and forget the kept copy."""
-        from mirrorlab.desktop.sheet_file import read_sheet
+        from mirrorlab.desktop.sheets import read_sheet
 
         try:
             read_sheet(self.kept_path, self._document, keep_path=False)

@@ -11,6 +11,7 @@ from mirrorlab.desktop.evidence import EvidenceSheet
 from mirrorlab.desktop.marks import FindingMark
 from mirrorlab.desktop.parts import button, label, rule
 from mirrorlab.desktop.symbols import Run, SymbolText
+from mirrorlab.desktop.theming import arrow, theming
 from mirrorlab.mirrors import Finding
 
 HEADLINES = {
@@ -20,6 +21,14 @@ HEADLINES = {
     "tube": "Tube",
     "unbuildable": "Unbuildable",
 }
+
+
+SYMBOL_SIZE = 25
+"""Points of the group's symbols: to be read across a table."""
+
+
+HEAD_HEIGHT = 84
+"""Pixels; the same with and without symbols, so that nothing below jumps while one types."""
 
 
 class _Named(QWidget):
@@ -35,7 +44,6 @@ class _Named(QWidget):
         column.addStretch(1)
         column.addWidget(self.symbol, 0, Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignBottom)
         column.addWidget(self.caption, 0, Qt.AlignmentFlag.AlignHCenter)
-        column.addStretch(1)
 
     def show_runs(self, runs: tuple[Run, ...], caption: str = "") -> None:
         """Show a symbol; none hides it with its caption."""
@@ -67,14 +75,17 @@ class FindingBand(QFrame):
         self.sentence.setTextFormat(Qt.TextFormat.RichText)
         self.sentence.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self.sentence.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self.group = _Named("Hermann–Mauguin", 27)
-        self.schoenflies = _Named("Schoenflies", 21)
-        self.family = _Named("family", 21)
+        self.group = _Named("Hermann–Mauguin", SYMBOL_SIZE)
+        self.schoenflies = _Named("Schoenflies", SYMBOL_SIZE)
+        self.family = _Named("family", SYMBOL_SIZE)
         self.toggle = button("Evidence", "quiet", "Numbers to check by hand, flags and suggestions")
         self.toggle.setCheckable(True)
+        self.toggle.setLayoutDirection(Qt.LayoutDirection.RightToLeft)
         self.toggle.toggled.connect(self._unfold)
+        theming().changed.connect(self._point_arrow)
         self.sheet = EvidenceSheet(document)
         self.sheet.setVisible(False)
+        self._point_arrow()
         self._lay_out()
         document.arrangement_changed.connect(self.refresh)
         document.settings_changed.connect(self.refresh)
@@ -93,13 +104,16 @@ class FindingBand(QFrame):
         row.addWidget(self.mark)
         row.addLayout(words, 1)
         for named in (self.group, self.schoenflies, self.family):
-            row.addWidget(named)
-            row.addSpacing(6)
+            row.addWidget(named, 0, Qt.AlignmentFlag.AlignBottom)
+            row.addSpacing(8)
         row.addWidget(self.toggle)
+        head = QWidget()
+        head.setLayout(row)
+        head.setMinimumHeight(HEAD_HEIGHT)
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)
-        column.addLayout(row)
+        column.addWidget(head)
         column.addWidget(rule())
         column.addWidget(self.sheet)
 
@@ -129,7 +143,11 @@ class FindingBand(QFrame):
 
     def _unfold(self, shown: bool) -> None:
         self.sheet.setVisible(shown)
+        self._point_arrow()
         self.unfolded.emit(shown)
+
+    def _point_arrow(self) -> None:
+        self.toggle.setIcon(arrow("up" if self.toggle.isChecked() else "down"))
 
 
 def sentence_html(finding: Finding) -> str:

@@ -84,7 +84,7 @@ def paint_finding(painter: QPainter, box: QRectF, kind: str, tint: QColor) -> No
         for k in range(3):
             painter.drawLine(at(60 * k, 0.94), at(60 * k + 180, 0.94))
         if kind == "closed-subdivided":
-            painter.setPen(QPen(theming().theme.panel, weight * 0.8))
+            painter.setPen(QPen(QColor(theming().theme.panel), weight * 0.8))
             painter.drawLine(at(90, 0.16), at(90, 0.92))
     elif kind == "open":
         painter.drawArc(ring, 68 * 16, 300 * 16)

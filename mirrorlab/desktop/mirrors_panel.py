@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from PySide6.QtCore import QSignalBlocker
+from PySide6.QtCore import QSignalBlocker, Qt
 from PySide6.QtWidgets import (
     QComboBox,
     QDoubleSpinBox,
@@ -27,6 +27,8 @@ from mirrorlab.desktop.ways_in import WaysIn
 
 NOTATIONS = (("degrees", "degrees"), ("pi", "fractions of π"), ("dms", "degrees, minutes, seconds"))
 MARGIN = 14
+SCROLL_BAR = 10
+"""Kept free at the right, so that nothing moves or is cut off when the panel must scroll."""
 
 
 class MirrorsPanel(QFrame):
@@ -77,6 +79,7 @@ class MirrorsPanel(QFrame):
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
+        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         area.setWidget(body)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
@@ -91,7 +94,8 @@ class MirrorsPanel(QFrame):
         self.remove.setEnabled(size > FEWEST_MIRRORS)
         self.remove.setText(f"Remove {self.document.arrangement.letters[self._to_remove()]}")
         self.settings_button.setText(settings_in_words(self.document))
-        width = max(theming().theme.spacing.triangle_width, self.triangle.wanted_width() + 2 * MARGIN)
+        inside = max(self.triangle.wanted_width(), self.ways.minimumSizeHint().width())
+        width = max(theming().theme.spacing.triangle_width, inside + 2 * MARGIN + SCROLL_BAR)
         self.setFixedWidth(width)
 
     def _to_remove(self) -> int:

@@ -114,7 +114,7 @@ def image_columns(orbit: Orbit) -> list[Column]:
     """The table of an orbit."""
     count, dimension = orbit.points.shape
     names = AXES[:dimension] if dimension <= len(AXES) else [f"x{k + 1}" for k in range(dimension)]
-    columns = [Column("image", np.arange(count), hint="0 is the seed")]
+    columns = [Column("image", np.arange(1, count + 1), hint="1 is the seed")]
     columns += [Column(name, orbit.points[:, k], _coordinate) for k, name in enumerate(names)]
     columns += [
         Column(

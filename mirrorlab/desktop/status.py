@@ -20,6 +20,7 @@ class StatusLine(QStatusBar):
     def __init__(self, work: Work, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setSizeGripEnabled(False)
+        self.setContentsMargins(12, 0, 8, 0)
         self._work = work
         self._said = ""
         self.words = Elided(REST)

@@ -70,9 +70,15 @@ def families(names: Iterable[str]) -> tuple[Run, ...]:
 
 def as_html(runs: Iterable[Run]) -> str:
     """Runs as rich text for a label."""
-    parts = []
+    parts: list[str] = []
+    barred = False
     for run in runs:
         text = escape(run.text)
+        if run.barred and barred:
+            parts.append(
+                '<span style="font-size:3pt"> </span>'
+            )  # two bars side by side must not run into one
+        barred = run.barred
         if run.slanted:
             text = f"<i>{text}</i>"
         if run.barred:

@@ -23,7 +23,7 @@ ROW_HEIGHT = 22
 SAMPLED_ROWS = 60
 """Rows looked at when columns are fitted; all rows of a long orbit would take seconds."""
 
-MOST_WIDE = 320
+MOST_NARROW, MOST_WIDE = 64, 320
 MOST_COPIED = 200_000
 """More rows than this fit no clipboard; they are for a file."""
 
@@ -178,12 +178,11 @@ class TablePanel(QFrame):
         if bench is None:
             return
         self.title.setText(bench.table_title())
-        self.note.setText(bench.table_note())
         count = 0 if model is None else model.rowCount()
         self.rows.setVisible(count > 0)
         self.empty.setVisible(count == 0)
         self.empty.setText(bench.table_note() or "No rows.")
-        self.note.setVisible(count > 0)
+        self.note.setText(bench.table_note() if count else "")
         self.copy.setEnabled(count > 0)
         self.save.setEnabled(count > 0)
         self._fit_columns()
@@ -199,8 +198,9 @@ class TablePanel(QFrame):
         self._titles = titles
         self.rows.resizeColumnsToContents()
         head = self.rows.horizontalHeader()
+        head.setStretchLastSection(False)
         for i in range(len(titles)):
-            head.resizeSection(i, min(MOST_WIDE, head.sectionSize(i) + 18))
+            head.resizeSection(i, min(MOST_WIDE, max(MOST_NARROW, head.sectionSize(i))))
         head.setStretchLastSection(True)
 
     def _picked(self) -> None:

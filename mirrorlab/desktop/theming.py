@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QObject, Qt, Signal
-from PySide6.QtGui import QColor, QFont, QPalette
+from PySide6.QtGui import QColor, QFont, QIcon, QPalette
 from PySide6.QtWidgets import QApplication
 
-from mirrorlab.desktop.stylesheet import stylesheet
+from mirrorlab.desktop.stylesheet import ICONS, stylesheet
 from mirrorlab.desktop.theme import LIGHT, THEMES, Theme
 
 
@@ -48,6 +48,11 @@ def theming() -> Theming:
     assert isinstance(app, QApplication)
     found = app.findChild(Theming, options=Qt.FindChildOption.FindDirectChildrenOnly)
     return found if isinstance(found, Theming) else Theming(app)
+
+
+def arrow(way: str) -> QIcon:
+    """A small arrow "up", "down" or "right" in the theme's tint."""
+    return QIcon(str(ICONS / f"{way}-{theming().theme.name}.svg"))
 
 
 def system_theme() -> str:

@@ -32,6 +32,7 @@ class WaysIn(QWidget):
         menu = QMenu(self.samples)
         fill_samples(menu, document)
         self.samples.setMenu(menu)
+        self.samples.setProperty("menu", True)
         self.family_button = button("Family", hint="A named finite group: E7, H3, A1xI2(5)")
         self.normals_button = button("Normals", hint="Mirrors through one point, from their normals")
         self.file_button = button("File", hint="Open an arrangement file (Ctrl+O)")

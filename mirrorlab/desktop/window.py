@@ -98,7 +98,7 @@ class Window(QMainWindow):
         self.filing.says.connect(self.status.say)
         self.filing.failed.connect(self.notice.warn)
         self.document.name_changed.connect(self._show_title)
-        self.document.undo_stack.cleanChanged.connect(lambda _: self._show_title())
+        self.document.undo_stack.cleanChanged.connect(self._show_title)
 
     def _welcome(self, bench: Bench) -> None:
         bench.says.connect(self.status.say)
@@ -112,7 +112,7 @@ class Window(QMainWindow):
         else:
             self.split.setSizes(self._table_sizes)
 
-    def _show_title(self) -> None:
+    def _show_title(self, _clean: bool = True) -> None:
         name = self.document.path.name if self.document.path else self.document.name
         self.setWindowTitle(f"{name or 'New arrangement'}[*] – Mirrorlab")
         self.setWindowModified(not self.document.undo_stack.isClean())

@@ -34,7 +34,7 @@ def _image(document: Document, index: int) -> str:
     if orbit is None:
         return ""
     word = orbit.words()[index]
-    name = "Seed" if not index else f"Image {index}, word {word}, {PARITIES[int(orbit.parity[index])]}"
+    name = "Seed" if not index else f"Image {index + 1}, word {word}, {PARITIES[int(orbit.parity[index])]}"
     return f"{name}, depth {int(orbit.depth[index])}: {coordinates(orbit.points[index])}"
 
 
