@@ -22,8 +22,9 @@ from numpy.typing import NDArray
 
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.families import LARGEST_PAIR_ORDER, MOST_MIRRORS
-from mirrorlab.mirrors.generation import LETTERS, generate_roots
+from mirrorlab.mirrors.generation import generate_roots
 from mirrorlab.mirrors.group import TooLarge, connected
+from mirrorlab.mirrors.witness import Witness, close_pair, closest, too_close
 
 Array = NDArray[np.float64]
 Fractions = list[list[Fraction | None]]
@@ -63,7 +64,7 @@ class Part:
     roots: Array | None = None
     broken: str = ""
     bound: str = ""
-    witness: tuple[str, str, float] | None = None
+    witness: Witness | None = None
 
     @property
     def singular(self) -> bool:
@@ -148,7 +149,7 @@ def _decide_high(
             law = (
                 f"in a finite group of rank {rank} that does not split, no two mirrors stand closer than 36°"
             )
-            return Part(own, rank, True, broken=text, bound=law, witness=_close_pair(known[i][j], a, b))
+            return Part(own, rank, True, broken=text, bound=law, witness=close_pair(known[i][j], a, b))
     orders = {known[i][j].denominator: (i, j) for i, j in pairs}
     if 4 in orders and 5 in orders:
         (i, j), (u, v) = orders[4], orders[5]
@@ -156,7 +157,7 @@ def _decide_high(
             f"{names[i]}{names[j]} makes mirrors 45° apart and {names[u]}{names[v]} makes mirrors 36° apart"
         )
         law = f"no finite group of rank {rank} that does not split has both"
-        return Part(own, rank, True, broken=text, bound=law)
+        return Part(own, rank, True, broken=text, bound=law, witness=too_close(normals, names))
     most = MOST_MIRRORS[rank]
     heights, words, complete = generate_roots(known, most)
     roots = heights @ np.linalg.pinv(normals).T
@@ -164,31 +165,4 @@ def _decide_high(
     if complete:
         return Part(own, rank, True, True, roots, bound=f"{law}; here {len(roots) // 2}")
     text = f"the reflections make more than {most} mirrors"
-    return Part(own, rank, True, broken=text, bound=law, witness=_closest(roots, words, names))
-
-
-def _close_pair(fraction: Fraction, a: str, b: str) -> tuple[str, str, float]:
-    """Two mirrors made by a and b alone that stand 180°/m apart."""
-    k, m = fraction.numerator, fraction.denominator
-    inverse = pow(k, -1, m)
-    step = min(inverse, m - inverse)
-    word = ((b + a) * step)[:step]  # lines at 0 (a), θ (b), 2θ (b(a)), 3θ (ba(b)) …; the step-th is π/m off a
-    return a, f"{word[:-1]}({word[-1]})" if step > 1 else word, 180 / m
-
-
-def _closest(roots: Array, words: tuple[str, ...], names: list[str]) -> tuple[str, str, float]:
-    """The two distinct mirrors that stand closest; `roots` holds one sign of each first, then the other."""
-    count = len(roots) // 2
-    unit = roots[:count] / np.linalg.norm(roots[:count], axis=1, keepdims=True)
-    cosine = np.abs(unit @ unit.T)
-    np.fill_diagonal(cosine, -1)
-    i, j = np.unravel_index(int(cosine.argmax()), cosine.shape)
-    near = unit[j] * np.sign(unit[i] @ unit[j])
-    apart = 2 * math.atan2(float(np.linalg.norm(unit[i] - near)), float(np.linalg.norm(unit[i] + near)))
-    return _spell(words[i], names), _spell(words[j], names), math.degrees(apart)
-
-
-def _spell(word: str, names: list[str]) -> str:
-    """A root's word in the letters of the typed mirrors: "ab:c" among c, d and e becomes "cd(e)"."""
-    before, _, last = ("".join(c if c == ":" else names[LETTERS.index(c)] for c in word)).partition(":")
-    return f"{before}({last})" if before else last
+    return Part(own, rank, True, broken=text, bound=law, witness=closest(roots, words, names))
