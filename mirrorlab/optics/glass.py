@@ -19,6 +19,9 @@ from mirrorlab.optics.panels import FlatPanel
 
 Array = NDArray[np.float64]
 
+GLASS_DENSITY = 2500.0
+"""kg/m³ of soda-lime glass: EN 572-1, from memory; 2.5 kg for each m² and mm."""
+
 
 class Order(StrEnum):
     """Which pane runs past which in butted joints."""
@@ -105,6 +108,11 @@ class GlassPanel:
     def has_bevels(self) -> bool:
         """Whether any side needs grinding to an angle."""
         return any(side.longer_face for side in self.sides)
+
+    @property
+    def weight(self) -> float:
+        """kg of the blank."""
+        return polygon.area(self.blank) * self.thickness * GLASS_DENSITY / 1e9
 
     def upper_is_longer(self, side: int) -> bool:
         """Whether, as drawn with the mirror side up, the upper face is the longer one at this side."""

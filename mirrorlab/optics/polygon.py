@@ -116,6 +116,15 @@ def largest_circle(outline: Array) -> tuple[Array, float]:
     return best, radius
 
 
+def middle(outline: Array) -> tuple[Array, float]:
+    """Centre and radius of a large circle inside: in the middle where several are (nearly) as large."""
+    centre, radius = largest_circle(outline)
+    mean = outline.mean(axis=0)
+    normals = inward_normals(outline)
+    room = float((normals @ mean - np.sum(normals * outline, axis=1)).min())
+    return (mean, room) if room > 0.9 * radius else (centre, radius)
+
+
 def minkowski_sum(first: Array, second: Array) -> Array:
     """All sums of a point of one convex polygon and a point of the other, as a convex polygon.
 
