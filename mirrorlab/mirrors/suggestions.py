@@ -1,9 +1,7 @@
 """The nearest sets of angles that close.
 
 For two mirrors every fraction of π closes. For three, every closed and closed-subdivided triangle with angles
-kπ/m is listed once and compared. For more, Coxeter–Dynkin graphs are grown mirror by mirror: a graph is that of
-a finite group only if every part of it is, so branches are cut early, and branches whose change is already
-larger than the best kept ones are cut too.
+kπ/m is listed once and compared. For more, see `mirrorlab.mirrors.graphs`.
 """
 
 from __future__ import annotations
@@ -19,11 +17,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.angles import Angle, write_angle
+from mirrorlab.mirrors.exact import triangle_rank
+from mirrorlab.mirrors.families import MOST_MIRRORS
+from mirrorlab.mirrors.generation import generate_roots
+from mirrorlab.mirrors.graphs import nearest_graphs
 
 MOST_SUGGESTIONS = 6
-MOST_NODES = 20_000
-"""Graphs looked at for four mirrors or more, before the best so far are taken (about half a second)."""
-
 HALF = Fraction(1, 2)
 Decide = Callable[[Sequence[Fraction]], "tuple[str, tuple[str, ...], int | None, int | None, str]"]
 Verdict = tuple[str, tuple[str, ...], int | None, int | None, str]
@@ -94,14 +93,21 @@ def nearest_closing(
     found: list[tuple[Fraction, ...]]
     if size == 2:
         found = [(nearby.fraction,) for nearby in angles[0].nearest(MOST_SUGGESTIONS)]
-        found += [(Fraction(1, max(2, round(180 / max(typed[0], 0.5)))),)]
+        found += [(f,) for f in _neighbours(float(typed[0]))]
     elif size == 3:
-        found = _triangles(angles, typed, decide)
+        found = _triangles(angles, typed)
     else:
-        found = _graphs(typed, size)
+        found = nearest_graphs(typed, size)
     result = [_suggest(candidate, typed, names, decide) for candidate in dict.fromkeys(found)]
+    result = [s for s in result if s.kind.startswith("closed") and s.largest_change > 1e-12]
     result.sort(key=lambda s: (round(s.largest_change, 9), s.kind != "closed", sum(map(abs, s.changes))))
-    return tuple(s for s in result if s.largest_change > 1e-12)[:MOST_SUGGESTIONS]
+    return tuple(result[:MOST_SUGGESTIONS])
+
+
+def _neighbours(degrees: float) -> tuple[Fraction, Fraction]:
+    """The angles 180°/m on either side of an angle."""
+    m = 180 / max(degrees, 0.5)
+    return Fraction(1, max(2, math.floor(m))), Fraction(1, max(2, math.ceil(m)))
 
 
 def supplements(angles: tuple[Angle, ...], names: tuple[str, ...], decide: Decide) -> tuple[Suggestion, ...]:
@@ -132,27 +138,31 @@ def _suggest(
 
 
 @lru_cache(maxsize=1)
-def _closing_triangles(decide: Decide) -> tuple[tuple[Fraction, ...], ...]:
+def _closing_triangles() -> tuple[tuple[Fraction, ...], ...]:
     """Every unordered triple of kπ/m with m up to 5 that closes."""
     options = sorted({Fraction(k, m) for m in range(2, 6) for k in range(1, m)})
-    return tuple(
-        triple
-        for triple in combinations_with_replacement(options, 3)
-        if decide(triple)[0].startswith("closed")
-    )
+    return tuple(t for t in combinations_with_replacement(options, 3) if _triangle_closes(t))
 
 
-def _triangles(
-    angles: tuple[Angle, ...], typed: NDArray[np.float64], decide: Decide
-) -> list[tuple[Fraction, ...]]:
+def _triangle_closes(triple: tuple[Fraction, Fraction, Fraction]) -> bool:
+    a, b, c = triple
+    if triangle_rank(a, b, c) != (3, True) or {4, 5} <= {f.denominator for f in triple}:
+        return False
+    if triple.count(HALF) > 1:
+        return True
+    one = Fraction(1)
+    return generate_roots([[one, a, b], [a, one, c], [b, c, one]], MOST_MIRRORS[3])[2]
+
+
+def _triangles(angles: tuple[Angle, ...], typed: NDArray[np.float64]) -> list[tuple[Fraction, ...]]:
     candidates = {
         (t[i], t[j], t[k])
-        for t in _closing_triangles(decide)
+        for t in _closing_triangles()
         for i, j, k in ((0, 1, 2), (0, 2, 1), (1, 0, 2), (1, 2, 0), (2, 0, 1), (2, 1, 0))
     }
     for k, angle in enumerate(angles):  # two right angles leave the third free
-        free = angle.fraction or angle.nearest(1)[0].fraction
-        for f in (free, Fraction(1, max(2, round(180 / max(angle.degrees, 0.5))))):
+        near = [angle.fraction] if angle.fraction else [nearby.fraction for nearby in angle.nearest(3)]
+        for f in (*near, *_neighbours(angle.degrees)):
             if 0 < f < 1:
                 candidates.add(tuple(f if j == k else HALF for j in range(3)))  # type: ignore[arg-type]
     table = list(candidates)
@@ -160,53 +170,3 @@ def _triangles(
     changes = np.abs(values - typed)
     rank = np.lexsort((changes.sum(axis=1), changes.max(axis=1).round(9)))
     return [table[k] for k in rank[: 3 * MOST_SUGGESTIONS]]
-
-
-def _graphs(typed: NDArray[np.float64], size: int) -> list[tuple[Fraction, ...]]:
-    """Coxeter–Dynkin graphs of finite groups whose angles are nearest to the typed ones."""
-    place = {pair: k for k, pair in enumerate((i, j) for i in range(size) for j in range(i + 1, size))}
-    options = []
-    for value in typed:
-        near = {Fraction(1, m) for m in (2, 3, 4, 5)} | {Fraction(1, max(2, round(180 / max(value, 0.5))))}
-        options.append(sorted(near, key=lambda f: abs(float(180 * f) - value)))
-    best: list[tuple[float, tuple[Fraction, ...]]] = []
-    nodes = 0
-
-    def grow(
-        chosen: dict[tuple[int, int], Fraction], gram: NDArray[np.float64], new: int, worst: float
-    ) -> None:
-        nonlocal nodes
-        if new == size:
-            best.append((worst, tuple(chosen[pair] for pair in place)))
-            best.sort(key=lambda item: item[0])
-            del best[MOST_SUGGESTIONS:]
-            return
-        for worst_here, row in sorted(_rows(options, typed, place, new), key=lambda item: item[0]):
-            reach = max(worst, worst_here)
-            if nodes > MOST_NODES or (len(best) == MOST_SUGGESTIONS and reach >= best[-1][0]):
-                return
-            nodes += 1
-            grown = gram.copy()
-            for i, f in enumerate(row):
-                grown[i, new] = grown[new, i] = -math.cos(math.pi * f)
-            if np.linalg.eigvalsh(grown[: new + 1, : new + 1])[0] > 1e-9:
-                grow({**chosen, **{(i, new): f for i, f in enumerate(row)}}, grown, new + 1, reach)
-
-    grow({}, np.eye(size), 1, 0.0)
-    return [angles for _, angles in best]
-
-
-def _rows(
-    options: list[list[Fraction]], typed: NDArray[np.float64], place: dict[tuple[int, int], int], new: int
-) -> list[tuple[float, tuple[Fraction, ...]]]:
-    """Angles of a new mirror with each earlier one: at most three of them slanted (no finite graph has more)."""
-    rows: list[tuple[float, tuple[Fraction, ...], int]] = [(0.0, (), 0)]
-    for i in range(new):
-        k = place[i, new]
-        rows = [
-            (max(worst, abs(float(180 * f) - float(typed[k]))), (*row, f), slanted + (f != HALF))
-            for worst, row, slanted in rows
-            for f in options[k]
-            if slanted + (f != HALF) <= 3
-        ]
-    return [(worst, row) for worst, row, _ in rows]

@@ -1,0 +1,109 @@
+"""The chambers of finite groups whose angles are nearest to typed ones, for four mirrors or more.
+
+Coxeter–Dynkin graphs are grown mirror by mirror: a graph is that of a finite group only if every part of it is,
+so branches are cut early, and so are branches whose change is already larger than that of the best ones kept.
+Where typed angles are obtuse, the search is made once more with the sides of some mirrors turned over, so that
+120° can stay 120° and need not become 90°.
+"""
+
+from __future__ import annotations
+
+import math
+from fractions import Fraction
+from itertools import combinations, product
+
+import numpy as np
+from numpy.typing import NDArray
+
+MOST_GRAPHS = 6
+MOST_NODES = 10_000
+"""Graphs looked at in one search before the best so far are taken (about a quarter of a second)."""
+
+MOST_SLANTED = 3
+"""A mirror of a finite group's chamber is never at a slant to more than three others."""
+
+POSITIVE = 1e-9
+"""The least eigenvalue of a chamber's Gram matrix is far above this (0.005 for E8), that of a flat one is rounding."""
+
+HALF = Fraction(1, 2)
+Array = NDArray[np.float64]
+Key = tuple[float, float]
+Row = tuple[Key, tuple[Fraction, ...]]
+
+
+def nearest_graphs(typed: Array, size: int) -> list[tuple[Fraction, ...]]:
+    """Sets of angles of finite groups, nearest first for each choice of sides.
+
+    Parameters
+    ----------
+    typed : ndarray, shape (n(n−1)/2,)
+        Degrees, pair by pair.
+    size : int
+        Number n of mirrors.
+    """
+    found: list[tuple[Fraction, ...]] = []
+    for turned in _choices_of_sides(typed, size):
+        values = np.where(turned, 180 - typed, typed)
+        found += [
+            tuple(1 - f if over else f for f, over in zip(angles, turned, strict=True))
+            for angles in _search(values, size)
+        ]
+    return found
+
+
+def _choices_of_sides(typed: Array, size: int) -> list[NDArray[np.bool_]]:
+    """Which pairs see one side turned over: none, and the choice that leaves least above 90°, if that is less."""
+    pairs = np.array(list(combinations(range(size), 2)))
+    choices: list[tuple[float, int, NDArray[np.bool_]]] = []
+    for sides in product([False, True], repeat=size - 1):
+        over = np.array([False, *sides])
+        turned = over[pairs[:, 0]] != over[pairs[:, 1]]
+        obtuse = float(np.maximum(np.where(turned, 180 - typed, typed) - 90, 0).sum())
+        choices.append((obtuse, len(choices), turned))
+    best = min(choices, key=lambda choice: choice[:2])
+    return [choices[0][2]] if best[0] >= choices[0][0] else [choices[0][2], best[2]]
+
+
+def _search(typed: Array, size: int) -> list[tuple[Fraction, ...]]:
+    place = {pair: k for k, pair in enumerate(combinations(range(size), 2))}
+    rows = [_rows([float(typed[place[i, new]]) for i in range(new)]) for new in range(size)]
+    best: list[tuple[Key, tuple[Fraction, ...]]] = []
+    nodes = 0
+
+    def grow(chosen: dict[tuple[int, int], Fraction], gram: Array, new: int, so_far: Key) -> None:
+        nonlocal nodes
+        if new == size:
+            best.append((so_far, tuple(chosen[pair] for pair in place)))
+            best.sort(key=lambda item: item[0])
+            del best[MOST_GRAPHS:]
+            return
+        for (largest, total), row in rows[new]:
+            key = (max(so_far[0], largest), so_far[1] + total)
+            if nodes > MOST_NODES or (len(best) == MOST_GRAPHS and key[0] > best[-1][0][0]):
+                return
+            if len(best) == MOST_GRAPHS and key >= best[-1][0]:
+                continue
+            nodes += 1
+            grown = gram.copy()
+            grown[:new, new] = grown[new, :new] = [-math.cos(math.pi * f) for f in row]
+            if np.linalg.eigvalsh(grown[: new + 1, : new + 1])[0] > POSITIVE:
+                grow({**chosen, **{(i, new): f for i, f in enumerate(row)}}, grown, new + 1, key)
+
+    grow({}, np.eye(size), 1, (0.0, 0.0))
+    return [angles for _, angles in best]
+
+
+def _rows(typed: list[float]) -> list[Row]:
+    """Angles of a new mirror with each earlier one, with their largest and total change, smallest first."""
+    rows: list[tuple[Key, tuple[Fraction, ...], int]] = [((0.0, 0.0), (), 0)]
+    for value in typed:
+        m = 180 / max(value, 0.5)
+        near = {Fraction(1, max(2, k)) for k in (2, 3, 4, 5, math.floor(m), math.ceil(m))}
+        changes = [(abs(float(180 * f) - value), f) for f in near]
+        rows = [
+            ((max(largest, change), total + change), (*row, f), slanted + (f != HALF))
+            for (largest, total), row, slanted in rows
+            for change, f in changes
+            if slanted + (f != HALF) <= MOST_SLANTED
+        ]
+    return sorted((key, row) for key, row, _ in rows)
