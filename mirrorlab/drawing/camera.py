@@ -18,6 +18,9 @@ FIELD = 26.0
 MARGIN = 1.06
 """Room around the drawing, as a factor."""
 
+OFF_CENTRE = 0.08
+"""A drawing whose middle lies this near to the origin, as a part of its size, is turned about the origin."""
+
 LEAST_ZOOM, MOST_ZOOM = 0.2, 40.0
 
 STEEPEST = 89.999
@@ -197,7 +200,9 @@ def home_camera(drawing: Drawing) -> Camera:
             (float(half[0]), float(half[1])),
             field=0.0,
         )
-    target = np.zeros(3) if drawing.unit == "" else 0.5 * (low + high)
+    target = 0.5 * (low + high)
+    if np.linalg.norm(target) < OFF_CENTRE * np.linalg.norm(high - low):
+        target = np.zeros(3)  # what stands about the origin turns about it
     places = places - target
     radius = math.sqrt(float(np.einsum("ij,ij->i", places, places).max())) or 1.0
     azimuth, elevation = Camera().azimuth, Camera().elevation

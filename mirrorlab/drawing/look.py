@@ -65,9 +65,11 @@ class Look:
     silver_light: str
     silver_dark: str
     region: str
+    region_dark: str
     region_line: str
     seed: str
     seed_ground: str
+    ball: str
     ball_edge: str
     image: str
     image_hollow: str
@@ -127,9 +129,11 @@ LIGHT_LOOK = Look(
     silver_light="#E9ECEC",
     silver_dark="#93A3AE",
     region="#E2C078",
+    region_dark="#C9A152",
     region_line="#6E4E12",
     seed="#C2410C",
     seed_ground="#FFFDF8",
+    ball="#C9D1D4",
     ball_edge="#7E8B93",
     image="#22262B",
     image_hollow="#FFFDF8",
@@ -156,9 +160,11 @@ DARK_LOOK = Look(
     silver_light="#A9B4BB",
     silver_dark="#46525B",
     region="#C79F4E",
+    region_dark="#A88137",
     region_line="#F5DFA8",
     seed="#931E18",
     seed_ground="#F6F2E8",
+    ball="#6F7C84",
     ball_edge="#3A444B",
     image="#F6F2E8",
     image_hollow="#1B1E21",
@@ -218,10 +224,10 @@ def face_tint(look: Look, role: Role, index: int = -1) -> tuple[str, float]:
     plain = {
         Role.CHAMBER_EVEN: (look.silver_light, look.ball_alpha),
         Role.CHAMBER_ODD: (look.silver_dark, look.ball_alpha),
-        Role.REGION: (look.region, look.ball_alpha),
+        Role.REGION: (look.region_dark if index == 1 else look.region, look.ball_alpha),
         Role.FLAGGED: (look.flagged, 0.35),
         Role.PANEL: (look.mirror(index) if index >= 0 else look.panel, 0.35),
-        Role.NET: (look.net, 1.0),
+        Role.NET: (look.ball, 1.0),
     }
     return plain.get(role, (look.face, 1.0))
 
@@ -248,5 +254,7 @@ def label_tint(look: Look, role: Role, index: int = -1) -> str:
     """Return the tint of a label's text."""
     if role is Role.TYPED_MIRROR:
         return look.mirror(index)
-    plain = {Role.FLAGGED: look.flagged, Role.GUIDE: look.muted, Role.NET: look.muted}
+    plain = {Role.FLAGGED: look.flagged}
+    if role in (Role.GUIDE, Role.NET, Role.GENERATED_MIRROR):
+        return look.muted
     return plain.get(role, look.ink)

@@ -97,7 +97,7 @@ def _choose(pieces: list[Piece], thick: float) -> Piece:
 
 
 def cut_loop(loop: Array, height: Array) -> Array:
-    """The part of a loop where `height` is at least 0, shape (n, 3).
+    """The part of a loop, in two or three coordinates, where `height` is at least 0.
 
     References
     ----------
@@ -110,5 +110,5 @@ def cut_loop(loop: Array, height: Array) -> Array:
     ahead, height_ahead = np.roll(loop, -1, axis=0), np.roll(height, -1)
     crosses = (height < 0) != (height_ahead < 0)
     t = np.where(crosses, height / np.where(crosses, height - height_ahead, 1.0), 0.0)
-    both = np.stack([loop, loop + t[:, None] * (ahead - loop)], axis=1).reshape(-1, 3)
+    both = np.stack([loop, loop + t[:, None] * (ahead - loop)], axis=1).reshape(-1, loop.shape[1])
     return both[np.stack([height >= 0, crosses], axis=1).ravel()]

@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.drawing.model import Drawing, Faces, Key, Label, Line, Points, Role
+from mirrorlab.drawing.placing import placed
 from mirrorlab.drawing.sphere import arc, circles, cone_corners, cross, disc_sectors, spherical_triangles
 from mirrorlab.mirrors import Arrangement, Finding, Orbit, ReflectionGroup
 
@@ -108,7 +109,9 @@ def space_drawing(
 
         make = flat_drawing if options.flat else wedge_drawing
         return make(arrangement, finding, orbit, options)
-    return _sphere_drawing(arrangement, finding.group, orbit, options)
+    arrangement, group, orbit = placed(arrangement, finding.group, orbit, finding.rank)
+    assert group is not None
+    return _sphere_drawing(arrangement, group, orbit, options)
 
 
 def _sphere_drawing(
@@ -123,9 +126,9 @@ def _sphere_drawing(
     corners = cone_corners(normals)
     faces = chamber_faces(group, arrangement) if solid else ()
     lines = mirror_lines(group, arrangement) if options.mirrors else ()
-    lines = (*lines, *_typed_lines(arrangement, options.discs))
+    lines = (*lines, *typed_lines(arrangement, options.discs))
     if options.discs:
-        faces = (*faces, *_discs(arrangement, 1.0 if solid else 0.0))
+        faces = (*faces, *typed_discs(arrangement, 1.0 if solid else 0.0))
     if options.region and len(corners):
         lines = (*lines, region_outline(corners))
     points, note = image_points(orbit) if options.images and orbit is not None else ((), "")
@@ -189,7 +192,8 @@ def mirror_lines(group: ReflectionGroup, arrangement: Arrangement) -> tuple[Line
     )
 
 
-def _typed_lines(arrangement: Arrangement, rims: bool) -> tuple[Line, ...]:
+def typed_lines(arrangement: Arrangement, rims: bool) -> tuple[Line, ...]:
+    """Great circles of the typed mirrors, and the rims of their discs."""
     assert arrangement.normals is not None
     rings = ((LINE_LIFT, 1.0), (RIM, RIM_WEIGHT)) if rims else ((LINE_LIFT, 1.0),)
     return tuple(
@@ -199,7 +203,8 @@ def _typed_lines(arrangement: Arrangement, rims: bool) -> tuple[Line, ...]:
     )
 
 
-def _discs(arrangement: Arrangement, inner: float) -> tuple[Faces, ...]:
+def typed_discs(arrangement: Arrangement, inner: float) -> tuple[Faces, ...]:
+    """Discs of the typed mirrors, or rings when the ball fills their middle."""
     normals = arrangement.normals
     assert normals is not None
     return tuple(

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import os
-import tempfile
 from pathlib import Path
 from typing import Any
 
@@ -16,6 +15,7 @@ from mirrorlab.drawing.model import Drawing
 from mirrorlab.drawing.prepared import Prepared
 from mirrorlab.files.picture_marks import tint
 from mirrorlab.files.picture_paint import Sight, paint_drawing
+from mirrorlab.files.whole import FileError, write_whole
 
 FORMATS = (".png", ".svg", ".pdf")
 
@@ -25,11 +25,14 @@ SMALLEST, LARGEST = 16, 20_000
 NOMINAL_SIDE = 640.0
 """A picture with this short side has lines and letters as wide as in a window; others in proportion."""
 
+SMALLEST_SCALE = 0.8
+"""Letters of a small picture shrink no further, so that they can be read."""
+
 POINTS_PER_PIXEL = 0.75
 """A PDF takes a pixel as 1/96 inch."""
 
 
-class PictureError(ValueError):
+class PictureError(FileError):
     """A picture that cannot be written."""
 
 
@@ -65,7 +68,9 @@ def save_picture(
     Raises
     ------
     PictureError
-        An ending or size that is not accepted, or a file that cannot be written.
+        An ending or size that is not accepted.
+    FileError
+        The file cannot be written.
     """
     target = Path(path)
     ending = target.suffix.lower()
@@ -79,11 +84,10 @@ def save_picture(
     look = named_look(theme)
     ensure_application()
     prepared = Prepared(drawing)
-    scale = min(width, height) / NOMINAL_SIDE
+    scale = max(SMALLEST_SCALE, min(width, height) / NOMINAL_SIDE)
     sight = Sight(camera or home_camera(drawing), width, height, look, scale)
     make = {".png": _png, ".svg": _svg, ".pdf": _pdf}[ending]
-    write_whole(target, make(prepared, sight, ground))
-    return target
+    return write_whole(target, make(prepared, sight, ground))
 
 
 def ensure_application() -> None:
@@ -174,32 +178,3 @@ def _buffer() -> tuple[QBuffer, QByteArray]:
     buffer = QBuffer(data)
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
     return buffer, data
-
-
-def write_whole(target: Path, data: bytes) -> None:
-    """Write a file whole or not at all: beside its place first, then moved there.
-
-    Raises
-    ------
-    PictureError
-        When its folder cannot be written.
-    """
-    try:
-        handle, name = tempfile.mkstemp(prefix=f".{target.name}.", dir=target.parent)
-        try:
-            with os.fdopen(handle, "wb") as file:
-                file.write(data)
-            os.chmod(name, 0o666 & ~_umask())
-            os.replace(name, target)
-        except BaseException:
-            Path(name).unlink(missing_ok=True)
-            raise
-    except OSError as error:
-        msg = f'"{target}": cannot be written ({error.strerror or error})'
-        raise PictureError(msg) from error
-
-
-def _umask() -> int:
-    mask = os.umask(0)
-    os.umask(mask)
-    return mask

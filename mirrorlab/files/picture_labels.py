@@ -24,7 +24,7 @@ def draw_label(
     painter: QPainter, x: float, y: float, label: Label, look: Look, scale: float = 1.0, alpha: float = 1.0
 ) -> None:
     """Draw a label with its middle at a pixel. Text is drawn as outlines: a file needs no font to show it."""
-    tag = label.role is Role.TYPED_MIRROR and len(label.text) <= 2
+    tag = label.role in (Role.TYPED_MIRROR, Role.GENERATED_MIRROR) and len(label.text) <= 2
     size = look.label_size * scale * (1.12 if tag else 0.92)
     font = label_font(look, size, italic=tag)
     metrics = QFontMetricsF(font)

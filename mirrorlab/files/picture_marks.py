@@ -12,6 +12,12 @@ from PySide6.QtGui import QBrush, QColor, QPainter, QPainterPath, QPen, QPolygon
 from mirrorlab.drawing.look import Look
 from mirrorlab.drawing.model import Role
 
+CROWD = 90
+"""Marks of one role that stand well apart at full size; more become smaller, so that they stay apart."""
+
+LEAST_MARK = 0.42
+"""Smallest size of a mark, as a part of its full size: still filled or hollow to the eye."""
+
 
 def tint(name: str, alpha: float = 1.0) -> QColor:
     """A Qt colour from ``#rrggbb`` and an opacity."""
@@ -35,6 +41,8 @@ def draw_marks(
         Pixels for one of the look's pixels.
     """
     ink = _mark_tint(look, role)
+    if len(places) > CROWD:
+        scale *= max(LEAST_MARK, (CROWD / len(places)) ** 0.5)
     if role is not Role.SEED and symbol in ("+", "o", ""):
         hollow = symbol == "o" or (not symbol and role is Role.IMAGE_ODD)
         _dots(painter, places, hollow, ink, look, scale * _relative_size(role))

@@ -12,7 +12,16 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
-from PySide6.QtGui import QBrush, QColor, QPainter, QPainterPath, QPen, QPolygonF, QRadialGradient
+from PySide6.QtGui import (
+    QBrush,
+    QColor,
+    QPaintEngine,
+    QPainter,
+    QPainterPath,
+    QPen,
+    QPolygonF,
+    QRadialGradient,
+)
 
 from mirrorlab.drawing.camera import Camera
 from mirrorlab.drawing.hiding import LINE_LIFT, hidden
@@ -218,19 +227,48 @@ def ball_outline(sight: Sight) -> QRectF:
 
 def _light_ball(painter: QPainter, sight: Sight, outline: QRectF) -> None:
     look, radius = sight.look, 0.5 * outline.width()
+    at = np.linspace(0, 1, LIGHT_STEPS)
+    shade = ball_shade(look, np.sqrt(np.maximum(0.0, 1 - at**2)))
+    _glow(painter, outline.center(), radius, look.shade, at, shade)
+    middle = outline.center() + QPointF(HALFWAY[0] * radius, -HALFWAY[1] * radius)
+    sheen = ball_sheen(look, np.arcsin(at * SHEEN_REACH))
+    _glow(painter, middle, SHEEN_REACH * radius, look.sheen, at, sheen)
+
+
+LIGHT_STEPS = 40
+"""Stops of the ball's shade and sheen."""
+
+SHEEN_REACH = 0.62
+"""How far the sheen reaches, in radii of the ball; beyond it there is less than a hundredth of it left."""
+
+
+def _glow(painter: QPainter, middle: QPointF, radius: float, name: str, at: Array, amount: Array) -> None:
+    """Lay a tint over a disc, as much of it as `amount` says at the parts `at` of its radius."""
+    engine = painter.paintEngine()
     painter.setPen(Qt.PenStyle.NoPen)
-    shade = QRadialGradient(outline.center(), radius)
-    for at in np.linspace(0, 1, 24):
-        shade.setColorAt(at, tint(look.shade, float(ball_shade(look, np.sqrt(max(0.0, 1 - at**2))))))
-    painter.setBrush(QBrush(shade))
-    painter.drawEllipse(outline)
-    at_x, at_y = HALFWAY[0] * radius, -HALFWAY[1] * radius
-    reach = 0.62
-    sheen = QRadialGradient(outline.center() + QPointF(at_x, at_y), reach * radius)
-    for at in np.linspace(0, 1, 20):
-        sheen.setColorAt(at, tint(look.sheen, float(ball_sheen(look, np.arcsin(at * reach)))))
-    painter.setBrush(QBrush(sheen))
-    painter.drawEllipse(outline)
+    if engine is None or engine.type() != QPaintEngine.Type.Pdf:
+        gradient = QRadialGradient(middle, radius)
+        for place, alpha in zip(at.tolist(), amount.tolist(), strict=True):
+            gradient.setColorAt(place, tint(name, alpha))
+        painter.setBrush(QBrush(gradient))
+        painter.drawEllipse(middle, radius, radius)
+        return
+    # Common PDF readers show a gradient between opacities as solid white: lay thin films over one another instead.
+    outward = bool(amount[-1] > amount[0])
+    steps = list(zip(at.tolist(), amount.tolist(), strict=True))
+    covered = 0.0
+    for place, alpha in steps if outward else reversed(steps):
+        film = 1 - (1 - alpha) / (1 - covered)
+        covered = max(covered, alpha)
+        if film < 1e-3:
+            continue
+        path = QPainterPath()
+        path.setFillRule(Qt.FillRule.OddEvenFill)
+        if outward:
+            path.addEllipse(middle, radius, radius)
+        path.addEllipse(middle, place * radius, place * radius)
+        painter.setBrush(tint(name, film))
+        painter.drawPath(path)
 
 
 def _pen(look: Look, line: Line, scale: float, alpha: float = 1.0) -> QPen:
