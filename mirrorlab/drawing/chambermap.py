@@ -172,7 +172,7 @@ def chamber_drawing(arrangement: Arrangement, finding: Finding, orbit: Orbit | N
     outline = chart.outline
     fan = np.arange(1, len(outline) - 1)
     triangles = np.stack([np.zeros_like(fan), fan, fan + 1], axis=1)
-    if np.cross(outline[1, :2] - outline[0, :2], outline[2, :2] - outline[0, :2]) < 0:
+    if np.cross(outline[1] - outline[0], outline[2] - outline[0])[2] < 0:
         triangles = triangles[:, ::-1]
     faces = (Faces(Role.REGION, outline, triangles, (("chamber", 0),)),)
     lines, labels = _walls(arrangement, group, chart)
