@@ -16,6 +16,7 @@ from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
 from functools import lru_cache
+from numbers import Real
 
 PI = Fraction(31415926535897932384626433832795028841971693993751, 10**49)
 """π to 50 digits, for angles typed in radians."""
@@ -24,6 +25,7 @@ ACCEPTED = (
     "write degrees (60, 59.9(2), 59.9±0.2), DMS (54°44'8\"), a fraction of pi (2pi/5) or radians (1.0472rad)"
 )
 RANGE = "an angle between mirrors is at least 0 and less than 180 degrees"
+LONGEST = 64  # characters in a typed angle: more than any instrument gives, few enough to be read at once
 
 
 class AngleError(ValueError):
@@ -98,13 +100,7 @@ class Angle:
         return math.radians(self.degrees) if self.fraction is None else math.pi * float(self.fraction)
 
     def nearest(self, count: int = 3) -> tuple[Nearby, ...]:
-        """Fractions of π near the value, simplest first, each the nearest among those as simple.
-
-        Parameters
-        ----------
-        count : int
-            At most so many.
-        """
+        """At most `count` fractions of π near the value, simplest first, each the nearest among those as simple."""
         value = (
             (self.low + self.high) / 2 / 180 if self.source != "computed" else Fraction(self.degrees) / 180
         )
@@ -136,22 +132,15 @@ _PI = re.compile(rf"(?:{_NUMBER}\*?)?pi(?:/(\d+))?\Z")
 _PI_AFTER = re.compile(r"(\d+)/(\d+)\*?pi\Z")
 _PLAIN = re.compile(rf"{_NUMBER}(?:\((\d+)\)|(?:±|\+-|\+/-){_NUMBER})?(deg|degrees?|°|rad|radians?)?\Z")
 _SUFFIXED = re.compile(rf"{_NUMBER}(deg|degrees?|°|rad)(?:±|\+-|\+/-){_NUMBER}(deg|degrees?|°|rad)?\Z")
-_DMS = re.compile(rf"(\d+)(?:°|d)(?:{_NUMBER}['m])?(?:{_NUMBER}[\"s])?\Z")
-_TIDY = str.maketrans(
-    {
-        "−": "-",
-        "–": "-",
-        "′": "'",
-        "’": "'",
-        "″": '"',
-        "”": '"',
-        "º": "°",
-        "˚": "°",
-        "π": "pi",
-        "·": "*",
-        "×": "*",
-    }
+_BRACKETED = re.compile(r"\(([^()]+(?:±|\+-|\+/-)[^()]+)\)(.*)\Z")
+_DMS = re.compile(rf"(\d+)(?:°|d|deg)(?:{_NUMBER}(?:'|m|min))?(?:{_NUMBER}(?:\"|s|sec))?\Z")
+_INSIDE = re.compile(
+    r"\s*(±|\+-|\+/-|[/*·×]|\((?=\d+\)))\s*"
+    r"|(?<=[\d.)])\s+(?=°|º|deg|rad|['′’\"″”])"
+    r"|(?<=[°ºdg'′’mn])\s+(?=\d+(?:[.,]\d+)?\s*['′’m\"″”s])",
+    re.IGNORECASE,
 )
+_TIDY = {**str.maketrans("−–′’″”º˚·×", "--''\"\"°°**"), ord("π"): "pi"}
 
 
 def parse_angle(given: str | int | float | Fraction, settings: AngleSettings = AngleSettings()) -> Angle:
@@ -178,10 +167,16 @@ def parse_angle(given: str | int | float | Fraction, settings: AngleSettings = A
     """
     if isinstance(given, Fraction):
         return _make(f"{write_angle(given, 'pi')}", given * 180, Fraction(0), "exact", settings)
-    if isinstance(given, bool) or not isinstance(given, str | int | float):
+    if isinstance(given, bool) or not isinstance(given, str | Real):
         msg = f"{given!r}: not an angle; {ACCEPTED}"
         raise AngleError(msg)
-    return _parse_text(str(given), settings)
+    text = str(given)
+    if len(text) > LONGEST:
+        msg = f'"{text[:20]}…": {len(text)} characters; an angle has at most {LONGEST}'
+        raise AngleError(msg)
+    if not isinstance(given, str) and "e" in text:
+        text = f"{Decimal(text):f}"  # small numbers print with an exponent, which is no angle's notation
+    return _parse_text(text, settings)
 
 
 @lru_cache(maxsize=4096)
@@ -214,6 +209,9 @@ def _read(typed: str) -> tuple[Fraction, Fraction, str]:
             msg = f'"{typed}": one decimal sign at most, a point or a comma; {ACCEPTED}'
             raise AngleError(msg)
         text = text.replace(",", ".")
+    bracketed = _BRACKETED.match(text)
+    if bracketed is not None:
+        text = bracketed[1] + bracketed[2]
     if re.match(r"-[\d.p]", text):
         msg = f'"{typed}": negative; {RANGE}'
         raise AngleError(msg)
@@ -282,8 +280,6 @@ def _read_dms(text: str, typed: str) -> tuple[Fraction, Fraction, str] | None:
         last = _last_digit(minutes) / 60
     else:
         return value, Fraction(0), "exact"
-    if value.denominator == 1:
-        return value, Fraction(0), "exact"
     return value, last / 2, "rounded"
 
 
@@ -333,21 +329,35 @@ def write_angle(angle: Angle | Fraction | float, style: str = "degrees") -> str:
         A Fraction is in units of π, a float in degrees. An Angle is written by its closing fraction, or by its
         value where it has none.
     style : str
-        "degrees" (``"60°"``), "pi" (``"2pi/5"``; degrees where there is no fraction) or "dms".
+        "degrees" (``"60°"``), "pi" (``"2pi/5"``; degrees where there is no fraction) or "dms". A fraction with m
+        up to 360 reads back as the same closing fraction in each.
     """
     if isinstance(angle, Angle):
         angle = angle.fraction if angle.fraction is not None else angle.degrees
     if style == "pi" and isinstance(angle, Fraction):
         return _write_pi(angle)
-    degrees = angle * 180 if isinstance(angle, Fraction) else Fraction(angle)
+    degrees = angle * 180 if isinstance(angle, Fraction) else Fraction(Decimal(repr(float(angle))))
     if style == "dms":
         return _write_dms(degrees)
     if style not in ("degrees", "pi"):
         msg = f'style "{style}": accepted are degrees, pi and dms'
         raise AngleError(msg)
-    if degrees.denominator == 1:
-        return f"{degrees.numerator}°"
-    return f"{Decimal(f'{float(degrees):.6f}').normalize():f}°"
+    return _write_decimal(degrees, angle if isinstance(angle, Fraction) else None)
+
+
+def _write_decimal(degrees: Fraction, fraction: Fraction | None) -> str:
+    """Six decimals at most. Zeros at the end stay where the shorter text would read as another fraction or as exact."""
+    millionths = min(round(degrees * 10**6), 180 * 10**6 - 1)
+    text = f"{millionths // 10**6}.{millionths % 10**6:06d}"
+    if millionths != degrees * 10**6:
+        return f"{text}°"
+    whole, _, decimals = text.partition(".")
+    for digits in range(len(decimals.rstrip("0")), len(decimals)):
+        text = f"{whole}.{decimals[:digits]}".rstrip(".")
+        half = Fraction(1, 2 * 10**digits) if digits else Fraction(0)
+        if fraction is None or closing_fraction(degrees - half, degrees + half, 10**6) == fraction:
+            break
+    return f"{text}°"
 
 
 def _write_pi(fraction: Fraction) -> str:
@@ -358,16 +368,27 @@ def _write_pi(fraction: Fraction) -> str:
 
 
 def _write_dms(degrees: Fraction) -> str:
-    tenths = round(degrees * 36000)
+    tenths = min(round(degrees * 36000), 180 * 36000 - 1)
     whole, rest = divmod(tenths, 36000)
     minutes, seconds = divmod(rest, 600)
-    if not rest:
+    exact = tenths == degrees * 36000
+    if not rest and exact:
         return f"{whole}°"
-    if seconds % 10 == 0:
+    if seconds % 10 == 0 and exact:
         return f"{whole}°{minutes:02d}'{seconds // 10:02d}\""
     return f"{whole}°{minutes:02d}'{seconds // 10:02d}.{seconds % 10}\""
 
 
 def split_angles(text: str) -> list[str]:
-    """Split a list of angles at white space and semicolons; an angle with spaces inside is not kept together."""
-    return [part for part in re.split(r"[\s;]+", text.strip()) if part]
+    """Split a list of angles at white space, semicolons and commas that white space follows.
+
+    White space inside an angle is understood where it cannot be a separator: beside ``±``, ``/`` and ``*``,
+    before a unit, and between degrees, minutes and seconds.
+
+    Examples
+    --------
+    >>> split_angles("90 59.9 ± 0.2; 54° 44' 8\"")
+    ['90', '59.9±0.2', '54°44\'8"']
+    """
+    joined = _INSIDE.sub(r"\1", text.strip())
+    return [part for part in re.split(r"(?:[\s;]|,(?=[\s;]|$))+", joined) if part]
