@@ -38,25 +38,20 @@ def reflection(normal):
 
 def mirrors(given, most):
     """All mirrors that reflections make of the given ones, one normal each; None beyond `most` of them."""
-    found = []
-
-    def fresh(normal):
-        return all(min(np.abs(normal - n).max(), np.abs(normal + n).max()) > 1e-7 for n in found)
-
-    for row in given:
-        if fresh(row):
-            found.append(row)
-    at = 0
-    while at < len(found):
-        for other in list(found[: at + 1]):
-            for a, b in ((found[at], other), (other, found[at])):
-                image = a - 2 * (a @ b) * b
-                if fresh(image):
-                    found.append(image)
-                    if len(found) > most:
-                        return None
-        at += 1
-    return np.array(found)
+    found = np.empty((0, given.shape[1]))
+    fresh = given
+    while len(fresh):
+        for row in fresh:
+            same = np.minimum(np.abs(found - row).max(axis=1), np.abs(found + row).max(axis=1)) < 1e-7
+            if not same.any():
+                found = np.vstack([found, row])
+        if len(found) > most:
+            return None
+        images = np.concatenate([found - 2 * np.outer(found @ m, m) for m in given])
+        apart = np.abs(images[:, None, :] - found[None]).max(axis=2)
+        turned = np.abs(images[:, None, :] + found[None]).max(axis=2)
+        fresh = images[(np.minimum(apart, turned) > 1e-7).all(axis=1)]
+    return found
 
 
 def elements(generators, most):
