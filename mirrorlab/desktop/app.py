@@ -22,7 +22,7 @@ if TYPE_CHECKING:
     from mirrorlab.desktop.window import Window
 
 ORGANISATION = "Mirrorlab"
-FIRST_SEED = Seed(heights=(1.0, 2.0, 3.0), place=None)
+FIRST_SEED = Seed(heights=(1.0, 1.0, 1.0), place=None)
 
 
 def prepare() -> None:

@@ -46,7 +46,7 @@ class MirrorsPanel(QFrame):
         self.remove = button("Remove", "tight", "Take away the picked mirror, or the last one")
         self.ways = WaysIn(document)
         self.settings = ReadingSettings(document)
-        self.settings_button = button("", "quiet", "How angles are read and written")
+        self.settings_button = button("", "line", "How angles are read and written")
         self.settings_button.setCheckable(True)
         self.settings_button.toggled.connect(self.settings.setVisible)
         self.settings.hide()

@@ -8,6 +8,7 @@ from PySide6.QtWidgets import QGridLayout, QHBoxLayout, QVBoxLayout, QWidget
 
 from mirrorlab.desktop import symbols
 from mirrorlab.desktop.bench import Bench
+from mirrorlab.desktop.chamber_map import ChamberMap
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column, RowsModel
@@ -40,6 +41,8 @@ class PointsBench(Bench):
             hints=("Images under all reflections", "Images that no mirror inverts"),
         )
         self.facts = Facts()
+        self.map = ChamberMap(document)
+        self.map.says.connect(self.says)
         self.exports = {
             kind: button(text, hint=hint)
             for kind, text, hint in (
@@ -65,6 +68,7 @@ class PointsBench(Bench):
         column.setSpacing(8)
         column.addWidget(label("Seed", "heading"))
         column.addWidget(self.seed)
+        column.addWidget(self.map)
         column.addSpacing(8)
         column.addWidget(label("Images", "heading"))
         column.addWidget(self.group)
@@ -95,6 +99,7 @@ class PointsBench(Bench):
         orbit = self.document.orbit
         self._model.set_columns(() if orbit is None else image_columns(orbit), "image")
         self.seed.refresh()
+        self.map.refresh()
         self.group.choose(1 if self.document.seed.rotations else 0)
         self.facts.show_orbit(self.document)
         for part in self.exports.values():
@@ -134,7 +139,7 @@ def _coordinate(value: float) -> str:
 class Facts(QWidget):
     """How many images there are and what leaves the seed in place, as a small table."""
 
-    ROWS = ("Images", "Order of the group", "Stabiliser", "Deepest image")
+    ROWS = ("Images", "Order of the group", "Stabiliser", "Most reflections")
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -163,6 +168,6 @@ class Facts(QWidget):
             kind = ", rotations" if orbit.stabiliser.endswith("+") else ""
             trivial = orbit.stabiliser_order == 1
             texts["Stabiliser"] = "1" if trivial else f"{families}{kind}, order {orbit.stabiliser_order:,}"
-            texts["Deepest image"] = f"{int(orbit.depth.max())} reflections"
+            texts["Most reflections"] = str(int(orbit.depth.max()))
         for name, text in texts.items():
             self.values[name].setText(text)

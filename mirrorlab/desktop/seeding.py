@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from mirrorlab.desktop.document import Seed
+from mirrorlab.desktop.document import Document, Seed
 from mirrorlab.mirrors import Arrangement
 
 DRAG_REACH = 0.035
@@ -54,6 +54,15 @@ def land(arrangement: Arrangement, point: NDArray[np.float64], rotations: bool =
         kept = [round(float(h), DIGITS) + 0.0 for h in normals @ inside]
         return Landing(Seed(heights=tuple(kept), place=None, rotations=rotations), walls)
     return Landing(Seed(point=tuple(map(float, inside)), place=None, rotations=rotations), walls)
+
+
+def drag(document: Document, point: NDArray[np.float64], gesture: str) -> str:
+    """Move the document's seed under the pointer, as part of a gesture; says where it stands."""
+    landing = land(document.arrangement, point, document.seed.rotations)
+    if landing is None:
+        return ""
+    document.set_seed(landing.seed, "drag seed", gesture)
+    return f"The seed is {where(landing.walls, document.finding.rank)}"
 
 
 def _same_mirror(normals: NDArray[np.float64], wall: NDArray[np.float64]) -> int | None:

@@ -19,7 +19,7 @@ from mirrorlab.desktop.bench import NoPicture
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Elided, button, label
 from mirrorlab.desktop.pictures import Shelf
-from mirrorlab.desktop.seeding import land, where
+from mirrorlab.desktop.seeding import drag
 from mirrorlab.desktop.stage import StageView, make_view
 from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.theming import theming
@@ -167,11 +167,10 @@ class Pane(QFrame):
         self._gesture = self.document.new_gesture("drag")
 
     def _drag(self, point: object) -> None:
-        rotations = self.document.seed.rotations
-        landing = land(self.document.arrangement, np.asarray(point, dtype=np.float64), rotations)
-        if landing is not None:
-            self.document.set_seed(landing.seed, "drag seed", self._gesture)
-            self.says.emit(f"The seed is {where(landing.walls, self.document.finding.rank)}")
+        place = self.shelf.seed_of(self.shown, np.asarray(point, dtype=np.float64))
+        said = drag(self.document, place, self._gesture)
+        if said:
+            self.says.emit(said)
 
     def wear_theme(self) -> None:
         """Take the theme's tints."""
@@ -197,7 +196,7 @@ class StageFrame(QFrame):
         self.setObjectName("stage")
         self.setProperty("kind", "panel")
         self.left = Pane(document, shelf, "Space")
-        self.right = Pane(document, shelf, "Chamber map")
+        self.right = Pane(document, shelf, "Stereogram")
         self.right.hide()
         self.double = button("Two pictures", "quiet", "Show two pictures side by side (Ctrl+2)")
         self.double.setCheckable(True)

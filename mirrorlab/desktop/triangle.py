@@ -160,6 +160,7 @@ class Triangle(QWidget):
     def focus_pair(self, pair: int) -> None:
         """Give a cell the keyboard, its text selected."""
         self.cells[pair].edit.setFocus(Qt.FocusReason.TabFocusReason)
+        self.cells[pair].edit.selectAll()
 
     def _show_selection(self) -> None:
         key = self.document.selection
