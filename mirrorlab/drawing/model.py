@@ -71,6 +71,8 @@ class Line:
         Multiplies its width.
     apart : bool
         True when the points are the ends of separate pieces, two by two.
+    plain : bool
+        True for a typed mirror's line that is drawn without its pattern.
     """
 
     role: Role
@@ -80,6 +82,7 @@ class Line:
     closed: bool = False
     weight: float = 1.0
     apart: bool = False
+    plain: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -11,7 +11,15 @@ from numpy.typing import NDArray
 
 from mirrorlab.drawing.model import Drawing, Faces, Key, Label, Line, Points, Role
 from mirrorlab.drawing.placing import placed
-from mirrorlab.drawing.sphere import arc, circles, cone_corners, cross, disc_sectors, spherical_triangles
+from mirrorlab.drawing.sphere import (
+    arc,
+    circles,
+    cone_corners,
+    cross,
+    disc_quarters,
+    plane_axes,
+    spherical_triangles,
+)
 from mirrorlab.mirrors import Arrangement, Finding, Orbit, ReflectionGroup
 
 Array = NDArray[np.float64]
@@ -19,14 +27,24 @@ Array = NDArray[np.float64]
 RIM = 1.13
 """Radius of a typed mirror's disc, in radii of the sphere."""
 
-RIM_WEIGHT = 0.55
-"""The rim is drawn lighter than the mirror's circle on the sphere."""
+RIM_WEIGHT = 0.5
+"""The rim is drawn lighter than the mirror's circle on the sphere, and without a pattern: gaps would fray it."""
 
 TAG = 1.215
 """Where a mirror's letter stands."""
 
 LINE_LIFT = 1.0006
 """Lines on the sphere stand out by this, so that the surface does not swallow them."""
+
+_TURNS = np.radians([0, 12, -12, 24, -24, 36, -36])
+TAG_TURNS = (
+    np.concatenate([np.cos(_TURNS), -np.cos(_TURNS)])[:, None],
+    np.concatenate([np.sin(_TURNS), -np.sin(_TURNS)])[:, None],
+)
+"""Where along its rim a letter may stand, from the outline as first looked at: cosines and sines."""
+
+TAG_ROOM = 0.45
+"""Letters so far apart are far enough, in radii of the sphere."""
 
 WANTED_TRIANGLES = 5000
 """About so many small triangles make up the sphere: smooth to the eye, and sent to the screen in a few ms."""
@@ -195,22 +213,27 @@ def mirror_lines(group: ReflectionGroup, arrangement: Arrangement) -> tuple[Line
 def typed_lines(arrangement: Arrangement, rims: bool) -> tuple[Line, ...]:
     """Great circles of the typed mirrors, and the rims of their discs."""
     assert arrangement.normals is not None
-    rings = ((LINE_LIFT, 1.0), (RIM, RIM_WEIGHT)) if rims else ((LINE_LIFT, 1.0),)
-    return tuple(
-        Line(Role.TYPED_MIRROR, points, ("mirror", i), i, closed=True, weight=weight)
-        for radius, weight in rings
-        for i, points in enumerate(circles(arrangement.normals, radius, 180))
-    )
+    normals = arrangement.normals
+    lines = [
+        Line(Role.TYPED_MIRROR, points, ("mirror", i), i, closed=True)
+        for i, points in enumerate(circles(normals, LINE_LIFT, 180))
+    ]
+    for i, points in enumerate(circles(normals, RIM) if rims else ()):
+        lines.append(
+            Line(Role.TYPED_MIRROR, points, ("mirror", i), i, closed=True, weight=RIM_WEIGHT, plain=True)
+        )
+    return tuple(lines)
 
 
 def typed_discs(arrangement: Arrangement, inner: float) -> tuple[Faces, ...]:
     """Discs of the typed mirrors, or rings when the ball fills their middle."""
     normals = arrangement.normals
     assert normals is not None
+    vertices, triangles = disc_quarters(normals, inner, RIM)
     return tuple(
-        Faces(Role.TYPED_MIRROR, vertices, triangles, (("mirror", i),), i)
-        for i, normal in enumerate(normals)
-        for vertices, triangles in disc_sectors(normal, np.delete(normals, i, axis=0), inner, RIM)
+        Faces(Role.TYPED_MIRROR, quarter, triangles, (("mirror", i),), i)
+        for i, disc in enumerate(vertices)
+        for quarter in disc
     )
 
 
@@ -258,23 +281,22 @@ def best_side(middle: Array) -> Array:
 
 def mirror_tags(arrangement: Arrangement, toward: Array) -> tuple[Label, ...]:
     """A letter on each typed mirror's rim, where it stands at the outline as first looked at, well apart."""
-    assert arrangement.normals is not None
-    placed: list[Array] = []
+    normals = arrangement.normals
+    assert normals is not None
+    side = cross(normals, np.broadcast_to(toward, normals.shape))
+    flat = np.linalg.norm(side, axis=1) < 1e-6  # seen straight on: any place of the rim is at the outline
+    side[flat] = plane_axes(normals[flat])[0]
+    side /= np.linalg.norm(side, axis=1, keepdims=True)
+    up = cross(side, normals)
+    options = TAG_TURNS[0] * side[:, None] + TAG_TURNS[1] * up[:, None]
+    liking = 0.2 * options @ toward + 0.1 * options[..., 2]
+    placed = np.full((1, 3), 9.0)
     labels = []
-    both = len(arrangement.normals) <= 4
-    for i, (normal, letter) in enumerate(zip(arrangement.normals, arrangement.letters, strict=True)):
-        side = cross(normal, toward)
-        size = np.linalg.norm(side)
-        side = cross(normal, np.array([0.0, 0.0, 1.0])) if size < 1e-6 else side / size
-        up = cross(side, normal)
-        options = [math.cos(t) * side + math.sin(t) * up for t in np.radians([0, 12, -12, 24, -24, 36, -36])]
-        options += [-o for o in options]
-
-        def room(place: Array) -> float:
-            return min((float(np.linalg.norm(place - q)) for q in placed), default=2.0)
-
-        best = max(options, key=lambda o: (min(room(o), 0.45), o @ toward * 0.2 + o[2] * 0.1))
-        for place in (best, -best) if both else (best,):
-            placed.append(place)
-            labels.append(Label(letter, TAG * place, Role.TYPED_MIRROR, ("mirror", i), i))
+    both = len(normals) <= 4
+    for i, letter in enumerate(arrangement.letters):
+        room = np.linalg.norm(options[i][:, None] - placed, axis=2).min(axis=1)
+        best = options[i, int((np.minimum(room, TAG_ROOM) + liking[i]).argmax())]
+        places = np.stack([best, -best])[: 2 if both else 1]
+        placed = np.concatenate([placed, places])
+        labels += [Label(letter, TAG * p, Role.TYPED_MIRROR, ("mirror", i), i) for p in places]
     return tuple(labels)

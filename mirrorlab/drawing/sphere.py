@@ -109,50 +109,37 @@ def arc(start: Array, end: Array, radius: float = 1.0, step: float = 0.06) -> Ar
     return radius * (np.sin((1 - t) * angle) * start + np.sin(t * angle) * end) / np.sin(angle)
 
 
-def disc_sectors(
-    normal: Array, others: Array, inner: float, outer: float, step: float = 0.09
-) -> list[tuple[Array, Ints]]:
-    """The disc or ring about the origin with this normal, cut where other planes through the origin cross it.
+QUARTER_STEPS = 24
+"""Straight pieces of a quarter of a disc's rim: 3.75 degrees each."""
+
+
+def disc_quarters(normals: Array, inner: float, outer: float) -> tuple[Array, Ints]:
+    """Discs or rings about the origin, each in four quarters.
 
     Parameters
     ----------
-    normal : ndarray, shape (3,)
-    others : ndarray, shape (M, 3)
-        Unit normals of the planes that cut it.
+    normals : ndarray, shape (N, 3)
+        Unit normals of the discs.
     inner, outer : float
-        Radii; 0 for a whole disc.
+        Radii; 0 for whole discs.
 
     Returns
     -------
-    list of (vertices, triangles)
-        One a sector, so that sectors of crossing discs can be put in order from back to front.
+    vertices : ndarray, shape (N, 4, V, 3)
+    triangles : ndarray of int, shape (T, 3)
+        The same for each quarter.
     """
-    u, v = plane_axes(normal)
-    cuts = []
-    for other in others:
-        along = cross(normal, other)
-        if along @ along > 1e-18:
-            angle = float(np.arctan2(along @ v, along @ u)) % np.pi
-            cuts += [angle, angle + np.pi]
-    cuts = sorted(cuts) or [0.0]
-    cuts = [c for k, c in enumerate(cuts) if k == 0 or c - cuts[k - 1] > 1e-7]
-    sectors = []
-    for k, begin in enumerate(cuts):
-        end = cuts[k + 1] if k + 1 < len(cuts) else cuts[0] + 2 * np.pi
-        t = np.linspace(begin, end, max(2, int(np.ceil((end - begin) / step)) + 1))
-        rim = np.cos(t)[:, None] * u + np.sin(t)[:, None] * v
-        n = len(rim)
-        i = np.arange(n - 1)
-        if inner > 0:
-            vertices = np.concatenate([inner * rim, outer * rim])
-            triangles = np.concatenate(
-                [np.stack([i, n + i, n + i + 1], axis=1), np.stack([i, n + i + 1, i + 1], axis=1)]
-            )
-        else:
-            vertices = np.concatenate([np.zeros((1, 3)), outer * rim])
-            triangles = np.stack([np.zeros_like(i), i + 1, i + 2], axis=1)
-        sectors.append((vertices, triangles))
-    return sectors
+    whole = circles(normals, 1.0, 4 * QUARTER_STEPS)
+    which = np.arange(4)[:, None] * QUARTER_STEPS + np.arange(QUARTER_STEPS + 1)
+    rim = whole[:, which % (4 * QUARTER_STEPS)]
+    i = np.arange(QUARTER_STEPS)
+    if inner > 0:
+        vertices = np.concatenate([inner * rim, outer * rim], axis=2)
+        n = QUARTER_STEPS + 1
+        sides = [np.stack([i, n + i, n + i + 1], axis=1), np.stack([i, n + i + 1, i + 1], axis=1)]
+        return vertices, np.concatenate(sides)
+    vertices = np.concatenate([np.zeros_like(rim[:, :, :1]), outer * rim], axis=2)
+    return vertices, np.stack([np.zeros_like(i), i + 1, i + 2], axis=1)
 
 
 def cone_corners(normals: Array, tolerance: float = 1e-9) -> Array:

@@ -59,7 +59,7 @@ def strokes(drawing: Drawing, look: Look, radius: float) -> Strokes:
             continue
         _, width, pattern = line_style(look, line.role, line.index)
         width *= line.weight
-        lengths = np.array(pattern) * width * radius / NOMINAL_RADIUS
+        lengths = np.array(() if line.plain else pattern) * width * radius / NOMINAL_RADIUS
         pieces = dashes(points, lengths, line.closed) if len(lengths) else points[None]
         starts.append(pieces[:, :-1].reshape(-1, 3))
         ends.append(pieces[:, 1:].reshape(-1, 3))

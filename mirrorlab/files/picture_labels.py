@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import math
+
 from PySide6.QtCore import QPointF, Qt
-from PySide6.QtGui import QFont, QFontMetricsF, QPainter, QPainterPath, QPen
+from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPainterPath, QPen
 
 from mirrorlab.drawing.look import Look, label_tint
 from mirrorlab.drawing.model import Label, Role
@@ -34,8 +36,11 @@ def draw_label(
     ink = tint(label_tint(look, label.role, label.index), alpha)
     if tag:
         radius = 0.74 * size
-        painter.setPen(QPen(ink, 1.5 * scale))
+        painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(tint(look.ground, alpha))
+        painter.drawEllipse(QPointF(x, y), radius, radius)
+        painter.setBrush(Qt.BrushStyle.NoBrush)
+        painter.setPen(_ring_pen(look, label, ink, radius, scale))
         painter.drawEllipse(QPointF(x, y), radius, radius)
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(tint(look.ink, alpha))
@@ -49,3 +54,16 @@ def draw_label(
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(ink)
     painter.drawPath(path)
+
+
+def _ring_pen(look: Look, label: Label, ink: QColor, radius: float, scale: float) -> QPen:
+    """A pen in the mirror's pattern, so stretched that it closes upon itself around the tag."""
+    width = 1.7 * scale
+    pen = QPen(ink, width)
+    pattern = look.pattern(label.index) if label.role is Role.TYPED_MIRROR else ()
+    if pattern:
+        around = 2 * math.pi * radius / width
+        fit = around / (max(1, round(around / sum(pattern))) * sum(pattern))
+        pen.setDashPattern([part * fit for part in pattern])
+        pen.setCapStyle(Qt.PenCapStyle.FlatCap)
+    return pen

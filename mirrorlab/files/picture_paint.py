@@ -89,7 +89,7 @@ def paint_over(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
     if prepared.has_ball:
         # Its edge is smooth by this line, whatever the surface it is drawn on.
         painter.setBrush(Qt.BrushStyle.NoBrush)
-        painter.setPen(QPen(tint(sight.look.ball_edge), 1.1 * sight.scale))
+        painter.setPen(QPen(tint(sight.look.ball_edge), 1.4 * sight.scale))
         painter.drawEllipse(ball_outline(sight))
     for key in sight.selection:
         _paint_chosen(painter, prepared, sight, key, strong=True)
@@ -284,7 +284,7 @@ def _paint_flat_lines(painter: QPainter, prepared: Prepared, sight: Sight) -> No
     for line in _back_to_front(prepared):
         pen = _pen(sight.look, line, sight.scale)
         pattern = line_style(sight.look, line.role, line.index)[2]
-        if pattern:
+        if pattern and not line.plain:
             pen.setDashPattern(list(pattern))
         painter.setPen(pen)
         seen = sight.project(np.asarray(line.points, dtype=float))

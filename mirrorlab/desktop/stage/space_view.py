@@ -6,8 +6,9 @@ from typing import Any
 
 import numpy as np
 from pyqtgraph.opengl import GLViewWidget
-from PySide6.QtCore import Signal
+from PySide6.QtCore import QSize, Signal
 from PySide6.QtGui import QImage, QMatrix4x4, QPainter
+from PySide6.QtOpenGL import QOpenGLPaintDevice
 from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.stage.gl_item import DrawingItem
@@ -31,6 +32,7 @@ class SpaceView(Handling, GLViewWidget):
         GLViewWidget.__init__(self, parent)
         self.setFormat(surface_format(card().samples))
         self._item = DrawingItem()
+        self._over_image: QImage | None = None
         self.start_handling(look)
         self.addItem(self._item)
         self.refresh_view()
@@ -62,10 +64,28 @@ class SpaceView(Handling, GLViewWidget):
 
     def paintGL(self) -> None:
         super().paintGL()
-        painter = QPainter(self)
+        # Not on the widget itself: while a window is grabbed as a picture, such a painter would be led past the
+        # framebuffer, and what it paints lost.
+        dots = self.devicePixelRatioF()
+        device = QOpenGLPaintDevice(QSize(self.deviceWidth(), self.deviceHeight()))
+        device.setDevicePixelRatio(dots)
+        painter = QPainter(device)
+        painter.drawImage(0, 0, self._over(dots))
+        painter.end()
+
+    def _over(self, dots: float) -> QImage:
+        """What lies over the faces, painted by the processor: OpenGL's own painter has no smooth edges."""
+        size = QSize(self.deviceWidth(), self.deviceHeight())
+        if self._over_image is None or self._over_image.size() != size:
+            self._over_image = QImage(size, QImage.Format.Format_ARGB32_Premultiplied)
+        image = self._over_image
+        image.setDevicePixelRatio(dots)
+        image.fill(0)
+        painter = QPainter(image)
         paint_over(painter, self._prepared, self.sight())
         self.paint_extras(painter)
         painter.end()
+        return image
 
     def has_picture(self) -> bool:
         """Whether OpenGL works: a context, and a framebuffer that is not empty."""
