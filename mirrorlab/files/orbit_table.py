@@ -30,7 +30,7 @@ def orbit_columns(orbit: Orbit) -> tuple[Column, ...]:
         ),
         Column("parity", "integer", "0 for an even number of reflections, 1 for an odd one"),
         Column("depth", "integer", "fewest reflections that lead from the seed to the image"),
-        Column("word", "string", "product of reflections, the last letter first"),
+        Column("word", "string", "product of reflections, the last letter first; empty for the seed"),
     )
 
 
@@ -45,13 +45,15 @@ def orbit_rows(orbit: Orbit) -> Iterator[list[object]]:
 def orbit_about(orbit: Orbit, finding: Finding) -> dict[str, object]:
     """What the table is of: frame, seed, group and units."""
     symbols = finding.point_group
+    group = " x ".join(finding.families)
+    of = "the rotations of " if orbit.rotations else ""
     return {
-        "title": f"Images of a seed under {'the rotations of ' if orbit.rotations else ''}{' x '.join(finding.families)}",
+        "title": f"Images of a seed under {of}{group}",
         "frame": orbit.frame,
         "units": "the unit of the seed's coordinates",
         "seed": [float(value) for value in orbit.seed],
         "seed heights above the walls": dict(zip(orbit.letters, map(float, orbit.heights), strict=True)),
-        "group": " x ".join(finding.families),
+        "group": group,
         "point group": None if symbols is None else symbols.to_dict(),
         "rotations only": orbit.rotations,
         "order": orbit.group_order,

@@ -7,7 +7,6 @@ names the key, what stands there and what is accepted.
 from __future__ import annotations
 
 import json
-import math
 import os
 from collections.abc import Mapping
 from dataclasses import dataclass, field
@@ -22,6 +21,9 @@ FORMAT = "mirrorlab arrangement"
 VERSION = 1
 MOST_BYTES = 4_000_000
 """A larger file is refused unread: the largest sheet with all its sections stays below a megabyte."""
+
+LARGEST = 1e100
+"""Larger coordinates are refused: their squares would overflow."""
 
 SEED_KEYS = ("heights", "point", "place", "rotations")
 
@@ -90,7 +92,7 @@ def load_sheet(path: str | os.PathLike[str]) -> Sheet:
         if source.stat().st_size > MOST_BYTES:
             msg = f"{source}: larger than {MOST_BYTES // 1_000_000} MB; not an arrangement file"
             raise FileError(msg)
-        text = source.read_text(encoding="utf-8")
+        text = source.read_text(encoding="utf-8-sig")  # some editors put a byte order mark before UTF-8
     except OSError as error:
         msg = f"{source}: cannot be read ({error.strerror})"
         raise FileError(msg) from error
@@ -179,7 +181,7 @@ def _mirrors(section: dict[str, Any], settings: AngleSettings, where: str) -> Ar
         if (
             keys[0] == "normals"
             and _list_of(value, list)
-            and all(_list_of(row, (int, float)) for row in value)
+            and all(_list_of(row, (int, float)) and all(abs(v) <= LARGEST for v in row) for row in value)
         ):
             return Arrangement.from_normals(value, settings)
     except ValueError as error:
@@ -193,7 +195,7 @@ def _seed(section: dict[str, Any], where: str) -> dict[str, Any]:
     unknown = [key for key in section if key not in SEED_KEYS]
     places = [key for key in ("heights", "point", "place") if section.get(key) is not None]
     numbers = all(
-        _list_of(section[key], (int, float)) and all(math.isfinite(v) for v in section[key])
+        _list_of(section[key], (int, float)) and all(abs(v) <= LARGEST for v in section[key])
         for key in places
         if key != "place"
     )

@@ -11,12 +11,16 @@ from __future__ import annotations
 import csv
 import io
 import json
+import math
 import os
+import re
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
-from mirrorlab.files.whole import write_whole
+import numpy as np
+
+from mirrorlab.files.whole import make_together
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,9 +56,18 @@ def write_table(
     table, metadata : Path
     """
     target = Path(path)
-    table = write_whole(target, table_text(columns, rows))
-    content = json.dumps(metadata(target.name, columns, about), indent=2, ensure_ascii=False) + "\n"
-    return table, write_whole(target.with_name(target.name + "-metadata.json"), content)
+    table = table_text(columns, rows).encode()
+    content = json.dumps(metadata(target.name, columns, about), indent=2, ensure_ascii=False, allow_nan=False)
+    table_path, metadata_path = make_together(
+        [
+            (target, lambda draft: draft.write_bytes(table)),
+            (
+                target.with_name(target.name + "-metadata.json"),
+                lambda draft: draft.write_bytes(f"{content}\n".encode()),
+            ),
+        ]
+    )
+    return table_path, metadata_path
 
 
 def table_text(columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> str:
@@ -68,8 +81,15 @@ def table_text(columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> s
 
 
 def _cell(value: object) -> str:
-    if isinstance(value, float):
-        return repr(float(value))
+    if isinstance(value, float | np.floating):
+        number = float(value)
+        if math.isfinite(number):
+            return repr(number)
+        return (
+            "NaN" if math.isnan(number) else ("INF" if number > 0 else "-INF")
+        )  # as XML Schema writes doubles
+    if isinstance(value, bool | np.bool_):
+        return "true" if value else "false"
     return "" if value is None else str(value)
 
 
@@ -77,7 +97,8 @@ def metadata(name: str, columns: Sequence[Column], about: Mapping[str, object]) 
     """The CSV-on-the-Web description of a table."""
     described = []
     for column in columns:
-        entry: dict[str, object] = {"name": column.name, "titles": column.name, "datatype": column.datatype}
+        name_in_uri = re.sub(r"[^A-Za-z0-9_]", "_", column.name)  # a name is part of a URI template there
+        entry: dict[str, object] = {"name": name_in_uri, "titles": column.name, "datatype": column.datatype}
         text = column.description + (f" ({column.unit})" if column.unit else "")
         if text:
             entry["dc:description"] = text

@@ -5,7 +5,7 @@ from __future__ import annotations
 import contextlib
 import os
 import tempfile
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from pathlib import Path
 
 
@@ -36,26 +36,49 @@ def make_whole(path: str | os.PathLike[str], make: Callable[[Path], object]) -> 
 
     The file beside has the same suffix, so that writers which choose a format by suffix do the same.
     """
-    target = Path(path)
+    return make_together([(path, make)])[0]
+
+
+def make_together(
+    files: Sequence[tuple[str | os.PathLike[str], Callable[[Path], object]]],
+) -> tuple[Path, ...]:
+    """Make several files that belong together: all are written beside their targets before the first is moved over.
+
+    Raises
+    ------
+    FileError
+        One of them cannot be written; none of the targets was touched.
+    """
+    drafts: list[tuple[Path, Path]] = []
+    target = Path()
     try:
-        handle, name = tempfile.mkstemp(dir=target.parent, prefix=f".{target.stem}-", suffix=target.suffix)
+        for path, make in files:
+            target = Path(path)
+            if target.is_dir():
+                msg = f"{target}: cannot be written (it is a folder)"
+                raise FileError(msg)
+            draft = _draft(target)
+            drafts.append((draft, target))
+            make(draft)
+            mode = target.stat().st_mode if target.exists() else 0o666 & ~_umask()
+            draft.chmod(mode & 0o777)
+        for draft, target in drafts:
+            draft.replace(target)
     except OSError as error:
-        msg = f"{target}: cannot be written ({error.strerror})"
-        raise FileError(msg) from error
-    os.close(handle)
-    beside = Path(name)
-    try:
-        make(beside)
-        mode = target.stat().st_mode if target.exists() else 0o666 & ~_umask()
-        beside.chmod(mode & 0o777)
-        beside.replace(target)
-    except OSError as error:
-        msg = f"{target}: cannot be written ({error.strerror})"
+        msg = f"{target}: cannot be written ({error.strerror or error})"
         raise FileError(msg) from error
     finally:
-        with contextlib.suppress(OSError):
-            beside.unlink()
-    return target
+        for draft, _ in drafts:
+            with contextlib.suppress(OSError):
+                draft.unlink()
+    return tuple(target for _, target in drafts)
+
+
+def _draft(target: Path) -> Path:
+    """An empty file beside the target, with its suffix."""
+    handle, name = tempfile.mkstemp(dir=target.parent, prefix=f".{target.stem[:80]}-", suffix=target.suffix)
+    os.close(handle)
+    return Path(name)
 
 
 def _umask() -> int:

@@ -8,6 +8,8 @@ from typing import Any
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from mirrorlab import AngleSettings, Arrangement
 from mirrorlab.files.samples import samples
@@ -21,6 +23,8 @@ from mirrorlab.files.sheet_file import (
     sheet_to_text,
 )
 from mirrorlab.files.whole import FileError
+
+LANTERN = Arrangement.from_angles(["90", "60", "45"])
 
 
 def good(**changes: Any) -> str:
@@ -68,6 +72,12 @@ def test_normals_come_back_to_the_same_double(tmp_path: Path) -> None:
         (good(reading={"max_denominator": "many"}), "max_denominator is a whole number"),
         (good(reading={"max_denominator": -1}), "largest denominator -1"),
         (good(seed={"heights": [1, None]}), '"seed" is'),
+        (good(seed={"heights": [1, 10**400]}), '"seed" is'),
+        (good().replace('["90", "60", "45"]', "[1e999]"), "inf"),
+        (good(mirrors={"normals": [[1, 0], [10**400, 1]]}), '"normals" is'),
+        (good(mirrors={"normals": [[0, 0], [1, 0]]}), '"mirrors"'),
+        (good(mirrors={"angles": ["90"] * 66}), '"mirrors"'),
+        ("[" * 200_000, "not JSON"),
         (good(seed={"heights": [1], "place": "centre"}), '"seed" is'),
         (good(seed={"elsewhere": 1}), '"seed" is'),
         (good(name=3), '"name" is 3'),
@@ -80,6 +90,43 @@ def test_a_wrong_file_is_refused_with_what_stands_there(text: str, said: str) ->
         sheet_from_text(text, "lantern.json")
     assert str(caught.value).startswith("lantern.json: ")
     assert said in str(caught.value)
+
+
+def test_a_byte_order_mark_is_passed_over(tmp_path: Path) -> None:
+    (tmp_path / "a.json").write_bytes(b"\xef\xbb\xbf" + good().encode())
+    assert load_sheet(tmp_path / "a.json").arrangement.finding().order == 48
+
+
+def test_a_file_that_is_too_large_is_refused_unread(tmp_path: Path) -> None:
+    with (tmp_path / "a.json").open("wb") as handle:
+        handle.truncate(5_000_000)
+    with pytest.raises(FileError, match="larger than 4 MB"):
+        load_sheet(tmp_path / "a.json")
+
+
+def test_a_wrong_sheet_is_never_written(tmp_path: Path) -> None:
+    target = save_sheet(tmp_path / "a.json", Sheet(LANTERN, "old"))
+    with pytest.raises(ValueError, match="JSON"):
+        save_sheet(target, Sheet(LANTERN, "new", crystal={"distance": float("nan")}))
+    assert load_sheet(target).name == "old"
+    assert [path.name for path in tmp_path.iterdir()] == ["a.json"]
+
+
+@given(
+    st.recursive(
+        st.none() | st.booleans() | st.integers() | st.floats(allow_nan=False) | st.text(max_size=8),
+        lambda inner: st.lists(inner, max_size=3) | st.dictionaries(st.text(max_size=4), inner, max_size=3),
+        max_leaves=6,
+    ),
+    st.sampled_from(["version", "name", "note", "mirrors", "reading", "seed", "crystal", "glass"]),
+)
+def test_any_value_of_any_key_is_read_or_refused(value: Any, key: str) -> None:
+    said = "lantern.json: "
+    try:
+        sheet_from_text(good(**{key: value}), "lantern.json")
+    except FileError as error:
+        said = str(error)
+    assert said.startswith("lantern.json: ")
 
 
 def test_files_that_are_no_text_or_are_not_there(tmp_path: Path) -> None:

@@ -3,16 +3,20 @@
 from __future__ import annotations
 
 import csv
+import io
 import json
 import os
+import re
 from pathlib import Path
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from mirrorlab import Arrangement
 from mirrorlab.files.orbit_table import write_orbit, write_points
-from mirrorlab.files.table import Column, write_table
+from mirrorlab.files.table import Column, table_text, write_table
 from mirrorlab.files.whole import FileError, make_whole, write_whole
 
 LANTERN = Arrangement.from_angles(["90", "60", "36"])
@@ -72,6 +76,39 @@ def test_cells_with_commas_and_quotes(tmp_path: Path) -> None:
         assert list(csv.reader(handle)) == [["a", "b"], ['x, "y"', ""]]
 
 
+def test_values_are_written_as_xml_schema_has_them(tmp_path: Path) -> None:
+    """W3C, XML Schema Part 2: lexical forms of boolean and double."""
+    row = [
+        np.float64(0.1),
+        np.int64(7),
+        True,
+        np.bool_(False),
+        float("nan"),
+        float("inf"),
+        float("-inf"),
+        1e-300,
+    ]
+    table, _ = write_table(tmp_path / "t.csv", [Column(c) for c in "abcdefgh"], [row], {})
+    assert table.read_text().splitlines()[1] == "0.1,7,true,false,NaN,INF,-INF,1e-300"
+
+
+def test_column_names_fit_a_uri_template(tmp_path: Path) -> None:
+    """W3C, Metadata Vocabulary for Tabular Data, 5.6: the name of a column is a variable name of RFC 6570."""
+    _, beside = write_table(tmp_path / "t.csv", [Column("4cos² α"), Column("word")], [], {})
+    columns = json.loads(beside.read_text())["tableSchema"]["columns"]
+    assert [column["titles"] for column in columns] == ["4cos² α", "word"]
+    assert all(re.fullmatch(r"[A-Za-z0-9][A-Za-z0-9_]*", column["name"]) for column in columns)
+
+
+@given(
+    st.lists(st.tuples(st.floats(allow_nan=False), st.text(st.characters(exclude_categories=["Cs", "Cc"]))))
+)
+def test_any_row_reads_back(rows: list[tuple[float, str]]) -> None:
+    text = table_text([Column("x", "double"), Column("word")], rows)
+    read = list(csv.reader(io.StringIO(text, newline="")))
+    assert [(float(x), word) for x, word in read[1:]] == rows
+
+
 def test_numpy_file(tmp_path: Path) -> None:
     orbit = LANTERN.orbit(heights=[1, 2, 3])
     assert (np.load(write_points(tmp_path / "o.npy", orbit)) == orbit.points).all()
@@ -89,6 +126,28 @@ def test_a_failure_leaves_the_old_file_and_nothing_else(tmp_path: Path) -> None:
         make_whole(target, fail)
     assert target.read_text() == "old"
     assert os.listdir(tmp_path) == ["a.txt"]
+
+
+def test_a_table_and_its_metadata_come_together_or_not_at_all(tmp_path: Path) -> None:
+    write_table(tmp_path / "t.csv", [Column("old")], [], {})
+    (tmp_path / "u.csv-metadata.json").mkdir()
+    with pytest.raises(FileError, match=r"u\.csv-metadata\.json: cannot be written"):
+        write_table(tmp_path / "u.csv", [Column("new")], [], {})
+    assert sorted(os.listdir(tmp_path)) == ["t.csv", "t.csv-metadata.json", "u.csv-metadata.json"]
+
+
+def test_an_interruption_leaves_nothing_behind(tmp_path: Path) -> None:
+    def stop(draft: Path) -> None:
+        draft.write_text("half")
+        raise KeyboardInterrupt
+
+    with pytest.raises(KeyboardInterrupt):
+        make_whole(tmp_path / "a.txt", stop)
+    assert os.listdir(tmp_path) == []
+
+
+def test_a_file_with_a_very_long_name(tmp_path: Path) -> None:
+    assert write_whole(tmp_path / ("a" * 250 + ".csv"), "x").read_text() == "x"
 
 
 def test_a_folder_that_is_not_there(tmp_path: Path) -> None:
