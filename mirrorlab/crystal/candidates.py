@@ -7,6 +7,7 @@ Mirrors generate only part of most groups. A group fits exactly when its mirrors
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 from itertools import combinations
 from typing import TYPE_CHECKING
 
@@ -274,6 +275,7 @@ def decide(
     return Decision(*names, f"{_axis_name(kind)}, number of", having, sentence)
 
 
+@lru_cache(maxsize=256)
 def _axis_kinds(group: NamedGroup) -> dict[str, list[Element]]:
     """The axes of a group by kind: 2, 3, 4, 6, and -4, -6 where no centre stands for the rotoinversion."""
     kinds: dict[str, list[Element]] = {}

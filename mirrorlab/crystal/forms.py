@@ -25,7 +25,8 @@ from mirrorlab.crystal.symbols import GroupName
 
 _GENERAL_METRIC = np.array([[1.0, 0.1592, 0.0933], [0.1592, 1.7725, -0.2207], [0.0933, -0.2207, 2.4048]])
 SMALL_INDEX = 3
-"""Faces up to this index show every kind of form that a group has."""
+"""Faces up to this index, none negative, show every kind of form that a group has: in every group one of the faces
+with the same angles to its axes and mirrors has such indices."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -138,7 +139,7 @@ def _form(group: NamedGroup, face: Indices) -> Form:
         faces=faces,
         face_symmetry=oriented_symbol(group, stabiliser),
         eigensymmetry=name.eigensymmetry,
-        kind=_kind(group, face, stabiliser, eigensymmetry, len(faces)),
+        kind=_kind(group, stabiliser, eigensymmetry, len(faces)),
         closed=bounds(normals),
         hexagonal=group.hexagonal,
     )
@@ -209,51 +210,44 @@ def eigensymmetry(normals: ArrayLike) -> GroupName:
     """
     rows = np.asarray(normals, float)
     cosines = rows @ rows.T
-    first = 0
-    nearest = np.where(np.abs(cosines[0]) < 1 - 1e-9, cosines[0], -2)
-    second = int(np.argmax(nearest))
-    frame = _frame(rows[first], rows[second])
+    second = int(np.argmax(np.where(np.abs(cosines[0]) < 1 - 1e-9, cosines[0], -2)))
+    frame = _frames(rows[:1], rows[second : second + 1])[0]
+    starts, ends = np.nonzero(np.abs(cosines - cosines[0, second]) < 1e-9)
+    targets = np.swapaxes(_frames(rows[starts], rows[ends]), 1, 2)
+    sides = [np.diag([1.0, 1.0, side]) @ frame for side in (1.0, -1.0)]
+    turns = np.concatenate([targets @ side for side in sides])
     wanted = set(matrix_keys(rows))
-    found: dict[bytes, NDArray] = {}
-    for start, end in zip(*np.nonzero(np.abs(cosines - cosines[first, second]) < 1e-9), strict=True):
-        target = _frame(rows[start], rows[end])
-        for side in (1.0, -1.0):
-            turned = target.T @ np.diag([1.0, 1.0, side]) @ frame
-            if set(matrix_keys(rows @ turned.T)) == wanted:
-                found.setdefault(matrix_keys([turned])[0], turned)
-    return classify(np.array(list(found.values())))
+    images = rows @ np.swapaxes(turns, 1, 2)
+    keys = matrix_keys(images.reshape(-1, 3))
+    count = len(rows)
+    kept = [k for k in range(len(turns)) if wanted.issuperset(keys[k * count : (k + 1) * count])]
+    distinct = dict(zip(matrix_keys(turns[kept]), kept, strict=True))
+    return classify(turns[list(distinct.values())])
 
 
-def _frame(first: NDArray, second: NDArray) -> NDArray[np.float64]:
+def _frames(first: NDArray, second: NDArray) -> NDArray[np.float64]:
     across = np.cross(first, second)
-    across = across / np.linalg.norm(across)
-    return np.stack([first, np.cross(across, first), across])
+    across = across / np.linalg.norm(across, axis=1)[:, None]
+    return np.stack([first, np.cross(across, first), across], axis=1)
 
 
-def _kind(
-    group: NamedGroup, face: Indices, stabiliser: tuple[int, ...], symmetry: GroupName | None, count: int
-) -> str:
+def _kind(group: NamedGroup, stabiliser: tuple[int, ...], symmetry: GroupName | None, count: int) -> str:
     plain = "special" if len(stabiliser) > 1 else "general"
     if symmetry is None and plain == "special":
         return plain
-    free = _free_face(group, face, stabiliser)
-    faces, _ = _faces_of(group, free)
-    _, general_symmetry = _named(group, faces)
-    same = general_symmetry == symmetry and len(faces) == count
+    same = _of_free_face(group, stabiliser) == (symmetry, count)
     return plain if same else "limiting"
 
 
-def _free_face(group: NamedGroup, face: Indices, stabiliser: tuple[int, ...]) -> Indices:
-    """A face tilted freely from this one as far as the operations that leave it in place allow."""
-    inverse = np.linalg.inv(group.matrices[list(stabiliser)].astype(float))
-    average = inverse.mean(axis=0)
-    tilt = np.array([97.0, 61.0, 37.0])
-    free = (1000 * np.asarray(face, float) + tilt) @ average * len(stabiliser)
-    if not group.name.crystallographic:
-        return tuple(free.tolist())
-    whole = [round(value) for value in free]
-    divisor = gcd(*whole)
-    return tuple(value // divisor for value in whole)
+@lru_cache(maxsize=4096)
+def _of_free_face(group: NamedGroup, stabiliser: tuple[int, ...]) -> tuple[GroupName | None, int]:
+    """Eigensymmetry and number of faces for a face tilted freely, as far as what leaves it in place allows."""
+    average = np.linalg.inv(group.matrices[list(stabiliser)].astype(float)).sum(axis=0)
+    free = np.array([97.0, 61.0, 37.0]) @ average
+    if group.name.crystallographic:
+        free = np.rint(free)
+    faces, _ = _faces_of(group, tuple(free.tolist()))
+    return _named(group, faces)[1], len(faces)
 
 
 @lru_cache(maxsize=64)
@@ -272,7 +266,7 @@ def forms_of(group: NamedGroup) -> tuple[Form, ...]:
         raise IndicesError(msg)
     found: dict[tuple[str, str, str], Form] = {}
     seen: set[tuple[int, ...]] = set()
-    for face in sorted(product(range(-SMALL_INDEX, SMALL_INDEX + 1), repeat=3), key=_plainness):
+    for face in sorted(product(range(SMALL_INDEX + 1), repeat=3), key=_plainness):
         if face in seen or gcd(*face) != 1:
             continue
         made = _form(group, face)

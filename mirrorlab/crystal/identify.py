@@ -90,12 +90,13 @@ def elements_of(matrices: ArrayLike) -> tuple[Element, ...]:
     """The symmetry directions of a set of orthogonal matrices, each once."""
     directions: list[NDArray] = []
     facts: list[list] = []
-    for matrix in np.asarray(matrices, float):
-        sign = 1 if np.linalg.det(matrix) > 0 else -1
-        order, _ = rotation_order(sign * matrix)
+    stack = np.asarray(matrices, float)
+    signs = np.where(np.linalg.det(stack) > 0, 1, -1)
+    for sign, rotation in zip(signs.tolist(), signs[:, None, None] * stack, strict=True):
+        order, _ = rotation_order(rotation)
         if order == 1:
             continue
-        axis = _axis(sign * matrix, order)
+        axis = _axis(rotation, order)
         place = _place(axis, directions)
         if place == len(directions):
             directions.append(axis)
@@ -123,9 +124,11 @@ def _axis(rotation: NDArray, order: int) -> NDArray[np.float64]:
 def _place(axis: NDArray, directions: list[NDArray]) -> int:
     if not directions:
         return 0
-    sines = np.linalg.norm(np.cross(np.array(directions), axis), axis=1)
-    nearest = int(np.argmin(sines))
-    return nearest if sines[nearest] < SAME_DIRECTION else len(directions)
+    # The distance between unit vectors along one line, either way round, is the sine for small angles.
+    known = np.array(directions)
+    apart = np.minimum(np.abs(known - axis).max(axis=1), np.abs(known + axis).max(axis=1))
+    nearest = int(np.argmin(apart))
+    return nearest if apart[nearest] < SAME_DIRECTION else len(directions)
 
 
 def orthogonal(matrices: ArrayLike, basis: ArrayLike | None = None) -> NDArray[np.float64]:
@@ -145,7 +148,7 @@ def orthogonal(matrices: ArrayLike, basis: ArrayLike | None = None) -> NDArray[n
         stack = frame @ stack @ np.linalg.inv(frame)
     errors = np.abs(stack @ np.swapaxes(stack, 1, 2) - np.eye(3)).max(axis=(1, 2))
     worst = int(np.argmax(errors))
-    if not errors[worst] < 1e-4:
+    if not errors[worst] < ROUND_OFF:
         msg = f"matrix {worst + 1} of {len(stack)} is not orthogonal (off by {errors[worst]:.2g}): no point operation"
         raise IdentifyError(msg)
     return stack

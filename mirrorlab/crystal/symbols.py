@@ -169,7 +169,8 @@ def parse_symbol(text: str) -> tuple[GroupName, str]:
 
     Notes
     -----
-    Plain digits are ambiguous where n has two digits: "52" is read as 5 2 (D5); write C52 for the rotations alone.
+    Plain digits are ambiguous where n has two digits: "52" is read as 5 2 (D5), and "11m", "112", "31m", "312", "432",
+    "532" as the crystallographic and icosahedral groups they are. Schoenflies symbols (C52, C31v) are never ambiguous.
     Settings other than the standard one are kept for the 32 groups only.
     """
     plain = clean_symbol(text)
