@@ -74,12 +74,12 @@ def same_mirrors(normals: Array, others: Array) -> NDArray[np.bool_]:
     return np.asarray(least < SAME_MIRROR**2)
 
 
-def typed_walls(roots: Array, inside: Array, typed: Array) -> int:
-    """How many of the typed mirrors are walls of the chamber that holds a point."""
+def typed_walls(roots: Array, inside: Array, typed: Array) -> NDArray[np.bool_]:
+    """Which of the typed mirrors are walls of the chamber that holds a point."""
     heights = roots @ inside
     above = roots[heights > 0]
     after = above @ inside - 2 * (typed @ inside)[:, None] * (typed @ above.T)
-    return int(((after < 0).sum(axis=1) == 1).sum())
+    return np.asarray((after < 0).sum(axis=1) == 1)
 
 
 def corner_points(roots: Array, corners: Array) -> list[Array]:

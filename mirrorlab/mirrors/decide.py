@@ -90,7 +90,12 @@ def decide(arrangement: Arrangement) -> Finding:
     if between is None or between == 1:
         return finish(CLOSED, group, between, group.crystallographic)
     roots = np.concatenate(pieces)
-    point = max(corner_points(roots, frame), key=lambda inside: typed_walls(roots, inside, normals))
+
+    def familiar(point: Array) -> tuple[int, list[bool]]:
+        walls = typed_walls(roots, point, normals)
+        return int(walls.sum()), walls.tolist()  # most typed walls, the earliest letters where as many
+
+    point = max(corner_points(roots, frame), key=familiar)
     group = build_group(pieces, point, normals, arrangement.letters)
     return finish(SUBDIVIDED, group, between, group.crystallographic)
 

@@ -31,9 +31,7 @@ def _lattice(finding: Finding) -> str:
     if finding.crystallographic:
         return "a lattice can carry it"
     pairs = [flag.letters for flag in finding.flags if flag.code == "no-lattice"]
-    cycles = [f"the cycle {flag.letters}" for flag in finding.flags if flag.code == "cycle"]
-    at_fault = " and ".join(pairs or cycles)
-    return "no lattice can carry it" + (f", because of {at_fault}" if at_fault else "")
+    return "no lattice can carry it" + (f", because of {' and '.join(pairs)}" if pairs else "")
 
 
 def _closed(finding: Finding) -> str:
@@ -69,7 +67,8 @@ def _tube(finding: Finding) -> str:
         families = " × ".join(tube.moved_families)
         symbol = tube.moved_point_group
         name = families if symbol is None else f"{symbol.hermann_mauguin} ({families})"
-        moved = f"; moved through one {'line' if finding.rank == 2 else 'point'} the same planes make {name}"
+        where = {1: "onto one another", 2: "through one line"}.get(finding.rank, "through one point")
+        moved = f"; moved {where} the same planes make {name}"
     bounded = all(part.singular for part in finding.parts)
     heads = {1: "Parallel mirrors", 2: "A tube" if bounded else "A tube open on one side"}
     head = heads.get(finding.rank, "A cell" if bounded else "A cell open on one side")

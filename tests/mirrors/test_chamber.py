@@ -81,9 +81,9 @@ def test_corner_points_stand_in_the_region_off_every_mirror(angles):
     for point in points:
         assert (arrangement.normals @ point > 0).all()
         assert np.abs(roots @ point).min() > 1e-9
-        simple = [c for c in group.mirrors * np.sign(group.mirrors @ point)[:, None]]
-        walls = np.array(simple)[simple_of(np.array(simple), point)]
-        expected = same_mirrors(walls, arrangement.normals).any(axis=0).sum()
-        assert typed_walls(roots, point, arrangement.normals) == expected
-    best = max(typed_walls(roots, point, arrangement.normals) for point in points)
+        positive = group.mirrors * np.sign(group.mirrors @ point)[:, None]
+        walls = positive[simple_of(positive, point)]
+        expected = same_mirrors(walls, arrangement.normals).any(axis=0)
+        assert np.array_equal(typed_walls(roots, point, arrangement.normals), expected)
+    best = max(typed_walls(roots, point, arrangement.normals).sum() for point in points)
     assert len(set(group.letters) & set(arrangement.letters)) == best
