@@ -29,6 +29,8 @@ if TYPE_CHECKING:
     from mirrorlab.crystal.positions import GroupOrbit
     from mirrorlab.drawing.model import Drawing
 
+PICTURES = (".png", ".svg", ".pdf")
+
 GROUP_EXAMPLES = """examples:
   mirrorlab group -43m
   mirrorlab group 31m --forms --subgroups
@@ -129,6 +131,7 @@ def run_group(args: argparse.Namespace) -> int:
         from mirrorlab.crystal.positions import orbit_under
 
         orbit = orbit_under(group, args.point)
+    _check_before_writing(args, group)
     written: list[Path] = []
     if args.csv:
         from mirrorlab.files.crystal_tables import write_group_orbit, write_operations
@@ -152,6 +155,25 @@ def run_group(args: argparse.Namespace) -> int:
             print_orbit(group, orbit, 0 if args.csv else SHOWN)
     _report(written)
     return 0
+
+
+def _check_before_writing(args: argparse.Namespace, group: NamedGroup) -> None:
+    """Meet every error that the words can lead to before the first file or line is written."""
+    _check_picture(args)
+    if args.forms:
+        from mirrorlab.crystal.forms import forms_of
+
+        forms_of(group)
+    if args.subgroups:
+        from mirrorlab.crystal.relations import subgroups
+
+        subgroups(group)
+
+
+def _check_picture(args: argparse.Namespace) -> None:
+    if args.picture and Path(args.picture).suffix.lower() not in PICTURES:
+        msg = f'"{args.picture}": a picture ends in {", ".join(PICTURES)}'
+        raise UsageError(msg)
 
 
 def group_dict(
@@ -194,6 +216,7 @@ def run_form(args: argparse.Namespace) -> int:
     made = combination(
         group, [indices for indices, _ in pairs], [distance for _, distance in pairs], _basis(args)
     )
+    _check_picture(args)
     written: list[Path] = []
     if args.csv:
         from mirrorlab.files.crystal_tables import write_faces
