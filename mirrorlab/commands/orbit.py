@@ -18,6 +18,7 @@ EXAMPLES = """examples:
   mirrorlab orbit 90 60 36 --place "corner bc" --csv images.csv
   mirrorlab orbit --family E6 --place centre --npy images.npy
   mirrorlab orbit 90 60 45 --point 1,0.2,0.5 --rotations --json
+  mirrorlab orbit 90 90 60 --heights 1,2,3 --cell 4.9,4.9,5.4,90,90,120 --csv fractions.csv
 """
 
 
@@ -43,6 +44,12 @@ def add_orbit(subparsers: Any) -> None:
     parser.add_argument("--limit", type=int, default=MOST_IMAGES, help="refuse more images than this")
     parser.add_argument("--csv", metavar="F", help="write all images to a CSV file, with its metadata file")
     parser.add_argument("--npy", metavar="F", help="write the coordinates to a NumPy file")
+    parser.add_argument(
+        "--cell",
+        type=numbers,
+        metavar="a,b,c,α,β,γ",
+        help="coordinates as fractions of this cell, in the standard setting of the group",
+    )
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run)
 
@@ -59,6 +66,10 @@ def run(args: argparse.Namespace) -> int:
         limit=args.limit,
         progress=_progress(),
     )
+    if args.cell is not None:
+        from mirrorlab.commands.crystal_orbit import print_in_cell
+
+        return print_in_cell(args, finding, orbit)
     written = []
     if args.csv:
         from mirrorlab.files.orbit_table import write_orbit

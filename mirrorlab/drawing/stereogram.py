@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -94,7 +95,7 @@ def group_stereogram(
     if combination is not None:
         parts.poles(combination)
     elif options.points:
-        seed = clear_direction(matrices, parts.projection) if point is None else np.asarray(point, float)
+        seed = _clear_for(group, parts.projection) if point is None else np.asarray(point, float)
         parity = (np.linalg.det(matrices) < 0).astype(int)
         parts.images(matrices @ seed, parity, seed_first=False)
     if options.labels:
@@ -144,6 +145,11 @@ def arrangement_stereogram(
         parts.images(in_space(orbit.points) @ turn.T, orbit.parity, seed_first=True)
     frame = arrangement.frame if alignment is None else f"standard setting of {alignment.group.setting}"
     return parts.drawing("Stereogram", frame)
+
+
+@lru_cache(maxsize=64)
+def _clear_for(group: NamedGroup, projection: Projection) -> Array:
+    return clear_direction(group.cartesian, projection)
 
 
 def clear_direction(matrices: Array, projection: Projection | None = None) -> Array:

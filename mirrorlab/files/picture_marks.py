@@ -15,6 +15,9 @@ from mirrorlab.drawing.model import Role
 CROWD = 90
 """Marks of one role that stand well apart at full size; more become smaller, so that they stay apart."""
 
+RING = 1.5
+"""A mark of a point below the plane of a stereogram is a ring that a dot above it leaves in sight."""
+
 LEAST_MARK = 0.42
 """Smallest size of a mark, as a part of its full size: still filled or hollow to the eye."""
 
@@ -45,7 +48,14 @@ def draw_marks(
         scale *= max(LEAST_MARK, (CROWD / len(places)) ** 0.5)
     if role is not Role.SEED and symbol in ("+", "o", ""):
         hollow = symbol == "o" or (not symbol and role is Role.IMAGE_ODD)
-        _dots(painter, places, hollow, ink, look, scale * _relative_size(role))
+        _dots(
+            painter,
+            places,
+            hollow,
+            ink,
+            look,
+            scale * _relative_size(role) * (RING if symbol == "o" else 1.0),
+        )
         return
     for x, y in places.tolist():
         if role is Role.SEED:
@@ -59,7 +69,7 @@ def mark_radius(role: Role, symbol: str, look: Look) -> float:
     if role is Role.SEED:
         return 0.5 * look.seed_size
     if symbol in ("+", "o", ""):
-        return 0.5 * look.mark_size * _relative_size(role)
+        return 0.5 * look.mark_size * _relative_size(role) * (RING if symbol == "o" else 1.0)
     return 0.9 * look.mark_size
 
 

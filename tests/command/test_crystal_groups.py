@@ -189,3 +189,38 @@ def test_no_qt_without_a_picture():
         "assert not [m for m in sys.modules if m.startswith(('PySide6', 'pyqtgraph'))]"
     )
     subprocess.run([sys.executable, "-c", code], check=True, stdout=subprocess.DEVNULL)
+
+
+def test_images_as_fractions_of_a_cell(capsys, tmp_path):
+    target = tmp_path / "fractions.csv"
+    cell = ("--cell", "3,3,5,90,90,120")
+    status, _, _ = run(capsys, "orbit", "90", "90", "60", "--heights", "1,2,3", *cell, "--csv", str(target))
+    assert status == 0
+    rows = read(target)
+    assert len(rows) == 12
+    # Heights 1 and 2 … are lengths in the unit of the cell: the mirror across c stands at z = 1/5 of it.
+    assert {round(abs(float(row["z"])), 9) for row in rows} == {0.2}
+    status, out, _ = run(capsys, "orbit", "90", "90", "60", "--heights", "1,2,3", *cell, "--json")
+    found = json.loads(out)
+    assert (status, found["group"]) == (0, "-6m2")
+    assert found["points"][3] == [float(rows[3][name]) for name in "xyz"]
+
+
+def test_a_cell_without_the_symmetry_is_refused(capsys, tmp_path):
+    target = tmp_path / "never.csv"
+    words = (
+        "orbit",
+        "90",
+        "60",
+        "45",
+        "--heights",
+        "1,2,3",
+        "--cell",
+        "3,3,5,90,90,120",
+        "--csv",
+        str(target),
+    )
+    status, out, err = run(capsys, *words)
+    assert (status, out) == (2, "")
+    assert "m-3m" in err
+    assert not list(tmp_path.iterdir())
