@@ -12,6 +12,8 @@ from mirrorlab.files.table import Column, write_table
 from mirrorlab.files.whole import make_whole
 from mirrorlab.mirrors import Finding, Orbit
 
+STRETCH = 8192
+
 
 def coordinate_names(dimension: int) -> tuple[str, ...]:
     """x, y, z up to three dimensions; x1, x2, … above."""
@@ -35,11 +37,18 @@ def orbit_columns(orbit: Orbit) -> tuple[Column, ...]:
 
 
 def orbit_rows(orbit: Orbit) -> Iterator[list[object]]:
-    """The rows, one an image."""
-    for k, (point, parity, depth, word) in enumerate(
-        zip(orbit.points.tolist(), orbit.parity.tolist(), orbit.depth.tolist(), orbit.words(), strict=True), 1
-    ):
-        yield [k, *point, parity, depth, word]
+    """The rows, one an image; a stretch of them at a time, so that a long orbit is not held twice."""
+    words = orbit.words()
+    for start in range(0, len(orbit), STRETCH):
+        part = slice(start, start + STRETCH)
+        columns = (
+            orbit.points[part].tolist(),
+            orbit.parity[part].tolist(),
+            orbit.depth[part].tolist(),
+            words[part],
+        )
+        for k, (point, parity, depth, word) in enumerate(zip(*columns, strict=True), start + 1):
+            yield [k, *point, parity, depth, word]
 
 
 def orbit_about(orbit: Orbit, finding: Finding) -> dict[str, object]:

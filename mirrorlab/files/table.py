@@ -17,6 +17,7 @@ import re
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
+from typing import TextIO
 
 import numpy as np
 
@@ -56,28 +57,40 @@ def write_table(
     table, metadata : Path
     """
     target = Path(path)
-    table = table_text(columns, rows).encode()
     content = json.dumps(metadata(target.name, columns, about), indent=2, ensure_ascii=False, allow_nan=False)
-    table_path, metadata_path = make_together(
-        [
-            (target, lambda draft: draft.write_bytes(table)),
-            (
-                target.with_name(target.name + "-metadata.json"),
-                lambda draft: draft.write_bytes(f"{content}\n".encode()),
-            ),
-        ]
-    )
+
+    def write(draft: Path) -> None:
+        with draft.open("w", encoding="utf-8", newline="") as stream:
+            _write_rows(stream, columns, rows)
+
+    def describe(draft: Path) -> None:
+        draft.write_bytes(f"{content}\n".encode())
+
+    beside = target.with_name(target.name + "-metadata.json")
+    table_path, metadata_path = make_together([(target, write), (beside, describe)])
     return table_path, metadata_path
 
 
 def table_text(columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> str:
     """The table as RFC 4180 text, with CRLF line ends."""
     buffer = io.StringIO(newline="")
-    writer = csv.writer(buffer, lineterminator="\r\n")
-    writer.writerow([column.name for column in columns])
-    for row in rows:
-        writer.writerow([_cell(value) for value in row])
+    _write_rows(buffer, columns, rows)
     return buffer.getvalue()
+
+
+def _write_rows(stream: TextIO, columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> None:
+    writer = csv.writer(stream, lineterminator="\r\n")
+    writer.writerow([column.name for column in columns])
+    # the writer writes plain numbers and texts as wanted; the call of `_cell` would take as long as the rest
+    writer.writerows(
+        [
+            value
+            if (kind := type(value)) is str or kind is int or (kind is float and math.isfinite(value))
+            else _cell(value)
+            for value in row
+        ]
+        for row in rows
+    )
 
 
 def _cell(value: object) -> str:

@@ -15,7 +15,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from mirrorlab import Arrangement
-from mirrorlab.files.orbit_table import write_orbit, write_points
+from mirrorlab.files.orbit_table import STRETCH, orbit_rows, write_orbit, write_points
 from mirrorlab.files.table import Column, table_text, write_table
 from mirrorlab.files.whole import FileError, make_whole, write_whole
 
@@ -32,6 +32,15 @@ def test_numbers_read_back_to_the_same_double(tmp_path: Path) -> None:
     assert (read == orbit.points).all()
     assert [row["word"] for row in rows] == orbit.words()
     assert [int(row["depth"]) for row in rows] == orbit.depth.tolist()
+
+
+def test_a_long_orbit_is_written_in_stretches_that_join() -> None:
+    orbit = Arrangement.from_family("B6").orbit(place="centre")
+    rows = list(orbit_rows(orbit))
+    assert len(rows) == 46080 > 2 * STRETCH
+    assert [row[0] for row in rows] == list(range(1, 46081))
+    assert [row[1:-3] for row in rows] == orbit.points.tolist()
+    assert [row[-1] for row in rows] == orbit.words()
 
 
 def test_lines_end_as_rfc_4180_has_them(tmp_path: Path) -> None:
