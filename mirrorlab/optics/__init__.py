@@ -21,6 +21,17 @@ _HOMES: dict[str, str] = {
     "parse_length": "lengths",
     "tube": "build_tube",
     "wedge": "build_wedge",
+    # what the eye sees
+    "Lights": "scene",
+    "PATTERNS": "pattern",
+    "Scene": "scene",
+    "TraceCancelled": "tracer",
+    "make_scene": "scene",
+    "preview_size": "tracer",
+    "trace": "tracer",
+    "warm_up": "tracer",
+    "with_ball": "scene",
+    "with_card": "scene",
 }
 """Public name to the module of this package that holds it."""
 

@@ -101,7 +101,7 @@ class Assembly:
     eye, target, up : ndarray, shape (3,)
         Where the eye is, what it looks at, and what is up for it.
     field_of_view : float
-        Full angle from the lower to the upper rim of the view, in radians.
+        Full angle across the shorter side of the view, in radians.
     axes : ndarray, shape (3, 3)
         Rotation: ``axes @ x`` takes a direction from the arrangement's frame (filled with zeros) to this one.
     dimensions : mapping

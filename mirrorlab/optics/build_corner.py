@@ -15,6 +15,7 @@ from mirrorlab.optics.stand import (
     Length,
     Mirrors,
     as_given,
+    field_for,
     finish,
     floor_card,
     longest_side,
@@ -82,16 +83,15 @@ def corner(
     mouth, far = unit * deep, unit * tip
     centre = np.append(in_centre(unit[:, :2]), 1.0)
     if tip > 0:
-        place = floor_card(far)
-        eye, target = centre * deep, centre * tip
+        place, ball = floor_card(far), float(np.linalg.norm(far, axis=1).max())
     else:
-        inner = (axes @ np.linalg.solve(normals, np.ones(3))).astype(float)
+        inner = axes @ np.linalg.solve(normals, np.ones(3))
         inner = inner / inner[2] * 0.45 * deep
-        clear = float(((normals @ axes.T) @ inner).min())
-        place = ObjectPlace(
-            inner, np.array([1.0, 0, 0]), np.array([0, 1.0, 0]), 0.7 * clear, 0.7 * clear, "ball", True
-        )
-        eye, target = centre * 2.2 * deep, centre * 0.3 * deep
+        clear = float((normals @ axes.T @ inner).min())
+        place = ObjectPlace(inner, np.array([1.0, 0, 0]), np.array([0, 1.0, 0]), clear, clear, "ball", True)
+        ball = float(np.linalg.norm(inner)) + clear
+    eye = centre * deep
+    field = field_for(ball, float(np.linalg.norm(eye)))
     given = as_given(
         "corner", angles=list(angles), depth=depth, truncated=truncated, opening=opening, cut=cut
     )
@@ -105,8 +105,9 @@ def corner(
         mirrors,
         place,
         eye,
-        target,
+        np.zeros(3),
         np.array([0.0, 1, 0]),
+        field,
         axes,
         given,
     )

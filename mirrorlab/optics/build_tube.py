@@ -12,10 +12,12 @@ from mirrorlab.optics.lengths import AssemblyError, positive_length
 from mirrorlab.optics.shapes import cross_section, frustum_panels
 from mirrorlab.optics.stand import (
     DEFAULT_MIRROR,
+    WIDE_FIELD,
     AngleLike,
     Length,
     Mirrors,
     as_given,
+    field_for,
     finish,
     floor_card,
     longest_side,
@@ -82,6 +84,11 @@ def tube(
     mouth = np.column_stack([flat, np.full(len(flat), long)])
     far = np.column_stack([flat * taper, np.zeros(len(flat))])
     place = floor_card(far)
+    field = WIDE_FIELD
+    if taper < 1:
+        # The images of the far end make a ball around the point that the mirrors lead to.
+        beyond = long * taper / (1 - taper)
+        field = field_for(math.hypot(beyond, float(np.linalg.norm(far[0, :2]))), long + beyond)
     axes = np.array([[0.0, -1, 0], [1, 0, 0], [0, 0, 1]])
     given = as_given("tube", angles=list(angles), length=length, sides=sides, taper=taper, opening=opening)
     return finish(
@@ -96,6 +103,7 @@ def tube(
         np.array([0.0, 0, long]),
         np.zeros(3),
         np.array([0.0, 1, 0]),
+        field,
         axes,
         given,
     )

@@ -11,6 +11,7 @@ from mirrorlab.optics.lengths import AssemblyError, positive_length
 from mirrorlab.optics.shapes import in_centre, make_panel
 from mirrorlab.optics.stand import (
     DEFAULT_MIRROR,
+    MARGIN,
     AngleLike,
     Length,
     Mirrors,
@@ -83,23 +84,17 @@ def wedge(
         centre = np.append(in_centre(flat[:, :2]), 0.0)
         mouth = flat + rise
         place = floor_card(flat)
-        eye, target, up = centre + rise, centre, np.array([0.0, 1, 0])
+        # Images stand around the end of the edge, so that is what the eye looks at.
+        eye, target, up = centre + rise, edge, np.array([0.0, 1, 0])
+        field = 2 * MARGIN * math.atan(reach / long)
     else:
         mouth = np.array([left, left + rise, right + rise, right])
-        room = min(0.5 * left[1], 0.6 * right[0], 0.4 * long)
-        place = ObjectPlace(
-            np.array([0.0, 0.55 * left[1], long / 2]),
-            np.array([-1.0, 0, 0]),
-            np.array([0.0, 0, 1]),
-            room,
-            room,
-            inside=True,
-        )
-        eye, target, up = (
-            middle + np.array([0, 1.2 * max(long, 2 * right[0]), 0.15 * long]),
-            middle,
-            np.array([0.0, 0, 1]),
-        )
+        spot = np.array([0.0, 0.5 * left[1], 0.38 * long])
+        size = 1.3 * min(spot[1] * half_chord, 0.38 * long, 0.4 * left[1])
+        place = ObjectPlace(spot, np.array([-1.0, 0, 0]), np.array([0.0, 0, 1]), size, size, "ball", True)
+        back = max(long, 2 * right[0])
+        eye, target, up = middle + np.array([0, 1.5 * back, 0.3 * back]), middle, np.array([0.0, 0, 1])
+        field = 2 * math.atan(MARGIN * max(long, right[0]) / 2 / (1.5 * back))
     half = theta / 2
     axes = np.array(
         [[math.cos(half), -math.sin(half), 0], [math.sin(half), math.cos(half), 0], [0, 0, 1]], dtype=float
@@ -107,5 +102,5 @@ def wedge(
     given = as_given("wedge", angle=angle, length=length, depth=depth, opening=opening, look=look)
     chord = 2 * right[0]
     return finish(
-        "wedge", (a, b), mouth, chord, opening, thickness, mirrors, place, eye, target, up, axes, given
+        "wedge", (a, b), mouth, chord, opening, thickness, mirrors, place, eye, target, up, field, axes, given
     )

@@ -23,7 +23,10 @@ Mirrors: TypeAlias = str | MirrorSpec | Sequence[str | MirrorSpec]
 
 DEFAULT_MIRROR = "first-surface aluminium"
 WIDE_FIELD = math.radians(55)
-"""Radians from the lower to the upper rim of a view: about what one takes in through an eyepiece."""
+"""Radians across the shorter side of a view: about what one takes in through an eyepiece."""
+
+MARGIN = 1.2
+"""How much wider a view is than what it is about."""
 
 
 def to_radians(angle: AngleLike, field: str) -> float:
@@ -70,6 +73,11 @@ def floor_card(polygon: Array) -> ObjectPlace:
     return ObjectPlace(centre, right, up, float(np.ptp(across)), float(np.ptp(along)))
 
 
+def field_for(radius: float, distance: float) -> float:
+    """Return the field of view that takes in a ball of images around a point at this distance, in radians."""
+    return min(2 * MARGIN * math.asin(min(radius / distance, 0.99)), WIDE_FIELD * 1.4)
+
+
 def longest_side(polygon: Array) -> float:
     """Return the length of a polygon's longest side."""
     return float(np.linalg.norm(np.roll(polygon, -1, axis=0) - polygon, axis=1).max())
@@ -87,6 +95,7 @@ def finish(
     eye: Array,
     target: Array,
     up: Array,
+    field: float,
     axes: Array,
     given: dict[str, object],
 ) -> Assembly:
@@ -127,7 +136,7 @@ def finish(
         eye,
         target,
         up,
-        WIDE_FIELD,
+        field,
         axes,
         dimensions,
     )
