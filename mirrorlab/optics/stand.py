@@ -25,6 +25,9 @@ DEFAULT_MIRROR = "first-surface aluminium"
 WIDE_FIELD = math.radians(55)
 """Radians across the shorter side of a view: about what one takes in through an eyepiece."""
 
+WIDEST_FIELD = math.radians(100)
+"""A wider flat picture pulls its rims apart beyond what one takes for a view."""
+
 MARGIN = 1.2
 """How much wider a view is than what it is about."""
 
@@ -75,7 +78,7 @@ def floor_card(polygon: Array) -> ObjectPlace:
 
 def field_for(radius: float, distance: float) -> float:
     """Return the field of view that takes in a ball of images around a point at this distance, in radians."""
-    return min(2 * MARGIN * math.asin(min(radius / distance, 0.99)), WIDE_FIELD * 1.4)
+    return min(2 * MARGIN * math.asin(min(radius / distance, 1.0)), WIDEST_FIELD)
 
 
 def longest_side(polygon: Array) -> float:
@@ -136,7 +139,7 @@ def finish(
         eye,
         target,
         up,
-        field,
+        min(field, WIDEST_FIELD),
         axes,
         dimensions,
     )
