@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.drawing.camera import Camera
+from mirrorlab.drawing.look import Look
 from mirrorlab.drawing.prepared import Prepared
 
 Array = NDArray[np.float64]
@@ -40,6 +41,20 @@ def hidden(prepared: Prepared, camera: Camera, points: Array, lift: float = LIFT
     if 0 < len(corners) * count <= MOST_TESTS:
         result |= behind_triangles(start, towards, corners)
     return result
+
+
+def dimmed(prepared: Prepared, camera: Camera, points: Array, lift: float = LIFT) -> NDArray[np.bool_]:
+    """Return which points are drawn dimmed: those hidden or, where nothing is solid, those on the far half."""
+    if prepared.bare and not prepared.drawing.flat:
+        return np.asarray(camera.view(points)[..., 2] < 0)
+    return hidden(prepared, camera, points, lift)
+
+
+def dimmed_alpha(prepared: Prepared, look: Look) -> float:
+    """How strongly what is dimmed is drawn; 0 behind the ball, which is silvered."""
+    if prepared.has_ball:
+        return 0.0
+    return look.far_alpha if prepared.bare else look.hidden_alpha
 
 
 def behind_ball(start: Array, direction: Array) -> NDArray[np.bool_]:

@@ -51,6 +51,8 @@ class Look:
         How much of what is behind a chamber or a mirror is covered, 0 to 1.
     hidden_alpha : float
         How strongly a line or point shows that a solid hides; none does behind the ball, it is silvered.
+    far_alpha : float
+        How strongly the far half shows where nothing solid hides it.
     typed_width, generated_width, region_width, guide_width : float
         Line widths in pixels at 96 dots an inch.
     mark_size, seed_size, label_size : float
@@ -82,6 +84,7 @@ class Look:
     guide: str
     net: str
     generated: str
+    generated_bare: str
     select: str
     mirrors: tuple[str, ...]
     sheen: str = "#ffffff"
@@ -91,6 +94,7 @@ class Look:
     ball_alpha: float = 1.0
     disc_alpha: float = 0.22
     hidden_alpha: float = 0.22
+    far_alpha: float = 0.42
     typed_width: float = 2.4
     generated_width: float = 1.1
     region_width: float = 2.6
@@ -146,6 +150,7 @@ LIGHT_LOOK = Look(
     guide="#8E8A80",
     net="#DCD6C8",
     generated="#5C6770",
+    generated_bare="#5C6770",
     select="#0B6E99",
     mirrors=("#A24020", "#274D87", "#AA8D26", "#00817A", "#680F4C", "#06A5EA", "#45351F", "#F2766B"),
 )
@@ -177,6 +182,7 @@ DARK_LOOK = Look(
     guide="#77746C",
     net="#34373A",
     generated="#20272C",
+    generated_bare="#8D989F",
     select="#7CC7EC",
     mirrors=("#EE765F", "#45A4FC", "#FBD58D", "#57E1C8", "#916EAF", "#A8DFFD", "#9A770B", "#D98C8D"),
     sheen_alpha=0.32,
@@ -232,12 +238,14 @@ def face_tint(look: Look, role: Role, index: int = -1) -> tuple[str, float]:
     return plain.get(role, (look.face, 1.0))
 
 
-def line_style(look: Look, role: Role, index: int = -1) -> tuple[str, float, tuple[float, ...]]:
-    """Return tint, width in pixels and pattern (in line widths) of a line."""
+def line_style(
+    look: Look, role: Role, index: int = -1, bare: bool = False
+) -> tuple[str, float, tuple[float, ...]]:
+    """Return tint, width in pixels and pattern (in line widths) of a line; `bare` when it lies on the ground."""
     if role is Role.TYPED_MIRROR:
         return look.mirror(index), look.typed_width, look.pattern(index)
     plain: dict[Role, tuple[str, float, tuple[float, ...]]] = {
-        Role.GENERATED_MIRROR: (look.generated, look.generated_width, ()),
+        Role.GENERATED_MIRROR: (look.generated_bare if bare else look.generated, look.generated_width, ()),
         Role.REGION: (look.region_line, look.region_width, ()),
         Role.FLAGGED: (look.flagged, look.region_width, (2.0, 1.5)),
         Role.AXIS: (look.axis, look.generated_width, (9.0, 3.0, 1.5, 3.0)),

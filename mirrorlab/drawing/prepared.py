@@ -111,6 +111,11 @@ class Prepared:
         sheer = np.array([faces.role in SHEER_ROLES for faces in self.drawing.faces], dtype=bool)
         return ~sheer[self.block_of] if len(sheer) else np.zeros(0, dtype=bool)
 
+    @cached_property
+    def bare(self) -> bool:
+        """Whether there is nothing solid, so that lines lie on the ground and the far half shows."""
+        return not bool(self.solid.any()) and all(f.role is not Role.PANEL for f in self.drawing.faces)
+
     def key_of(self, triangle: int) -> Key:
         """Key of a triangle counted over all blocks."""
         block = int(self.block_of[triangle])

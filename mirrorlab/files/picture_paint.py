@@ -24,7 +24,7 @@ from PySide6.QtGui import (
 )
 
 from mirrorlab.drawing.camera import Camera
-from mirrorlab.drawing.hiding import LINE_LIFT, hidden
+from mirrorlab.drawing.hiding import LINE_LIFT, dimmed, dimmed_alpha, hidden
 from mirrorlab.drawing.look import Look, face_tint, line_style, rgb
 from mirrorlab.drawing.model import Key, Line, Role
 from mirrorlab.drawing.ordering import cut_loop
@@ -33,6 +33,7 @@ from mirrorlab.drawing.shading import HALFWAY, ball_shade, ball_sheen, mixed, pl
 from mirrorlab.drawing.strokes import Strokes, strokes
 from mirrorlab.files.picture_labels import draw_label
 from mirrorlab.files.picture_marks import draw_marks, halo, mark_radius, tint
+from mirrorlab.files.picture_triad import draw_triad
 
 Array = NDArray[np.float64]
 
@@ -97,6 +98,8 @@ def paint_over(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
         _paint_chosen(painter, prepared, sight, sight.hover, strong=False)
     _paint_points(painter, prepared, sight)
     _paint_labels(painter, prepared, sight)
+    if not prepared.drawing.flat and prepared.drawing.frame:
+        draw_triad(painter, sight.camera, sight.width, sight.height, sight.look, sight.scale)
     painter.restore()
 
 
@@ -271,8 +274,8 @@ def _glow(painter: QPainter, middle: QPointF, radius: float, name: str, at: Arra
         painter.drawPath(path)
 
 
-def _pen(look: Look, line: Line, scale: float, alpha: float = 1.0) -> QPen:
-    name, width, _ = line_style(look, line.role, line.index)
+def _pen(look: Look, line: Line, scale: float, alpha: float = 1.0, bare: bool = False) -> QPen:
+    name, width, _ = line_style(look, line.role, line.index, bare)
     pen = QPen(tint(name, alpha), width * line.weight * scale)
     pen.setCapStyle(Qt.PenCapStyle.FlatCap)
     pen.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
@@ -282,7 +285,7 @@ def _pen(look: Look, line: Line, scale: float, alpha: float = 1.0) -> QPen:
 def _paint_flat_lines(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
     painter.setBrush(Qt.BrushStyle.NoBrush)
     for line in _back_to_front(prepared):
-        pen = _pen(sight.look, line, sight.scale)
+        pen = _pen(sight.look, line, sight.scale, bare=prepared.bare)
         pattern = line_style(sight.look, line.role, line.index)[2]
         if pattern and not line.plain:
             pen.setDashPattern(list(pattern))
@@ -308,7 +311,7 @@ def _paint_lines(painter: QPainter, prepared: Prepared, sight: Sight, cut: Strok
     if not len(cut.start):
         return
     look = sight.look
-    back = hidden(prepared, sight.camera, 0.5 * (cut.start + cut.end), LINE_LIFT)
+    back = dimmed(prepared, sight.camera, 0.5 * (cut.start + cut.end), LINE_LIFT)
     a, b = sight.project(cut.start)[:, :2], sight.project(cut.end)[:, :2]
     order = {Role.NET: 0, Role.GUIDE: 1, Role.GENERATED_MIRROR: 2, Role.TYPED_MIRROR: 4, Role.REGION: 5}
     lines = prepared.drawing.lines
@@ -320,8 +323,8 @@ def _paint_lines(painter: QPainter, prepared: Prepared, sight: Sight, cut: Strok
             which = np.flatnonzero(back[part] == ghost) + part.start
             if not len(which):
                 continue
-            alpha = look.hidden_alpha if ghost else 1.0
-            painter.setPen(_pen(look, lines[number], sight.scale, alpha))
+            alpha = dimmed_alpha(prepared, look) if ghost else 1.0
+            painter.setPen(_pen(look, lines[number], sight.scale, alpha, prepared.bare))
             painter.drawPath(_stroke_path(a, b, which, cut.joined))
 
 
@@ -345,14 +348,14 @@ def _paint_points(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
         return
     look = sight.look
     seen = sight.project(positions)
-    back = hidden(prepared, sight.camera, positions)
+    back = dimmed(prepared, sight.camera, positions)
     margin = 20 * sight.scale
     inside = (seen[:, 0] > -margin) & (seen[:, 0] < sight.width + margin)
     inside &= (seen[:, 1] > -margin) & (seen[:, 1] < sight.height + margin)
     blocks, block_of = prepared.drawing.points, prepared.point_block
     order = sorted(range(len(blocks)), key=lambda k: blocks[k].role is Role.SEED)
     for ghost in (False,) if prepared.has_ball else (True, False):
-        painter.setOpacity(look.hidden_alpha if ghost else 1.0)
+        painter.setOpacity(dimmed_alpha(prepared, look) if ghost else 1.0)
         for number in order:
             block = blocks[number]
             which = np.flatnonzero((block_of == number) & (back == ghost) & inside)

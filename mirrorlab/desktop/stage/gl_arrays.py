@@ -97,7 +97,7 @@ def _plane(blocks: list[Faces], look: Look) -> tuple[NDArray[np.void], NDArray[n
 
 
 def line_arrays(
-    lines: tuple[Line, ...], cut: Strokes, look: Look
+    lines: tuple[Line, ...], cut: Strokes, look: Look, bare: bool = False
 ) -> tuple[NDArray[np.void], NDArray[np.uint32]]:
     """Four corners for each straight piece of a line, and the triangles between them.
 
@@ -112,7 +112,7 @@ def line_arrays(
     colors = np.empty((len(lines), 4), dtype=np.float32)
     widths = np.empty(len(lines), dtype=np.float32)
     for k, line in enumerate(lines):
-        name, width, _ = line_style(look, line.role, line.index)
+        name, width, _ = line_style(look, line.role, line.index, bare)
         colors[k] = (*rgb(name), 1.0)
         widths[k] = width * line.weight
     which = np.repeat(cut.line[order], 4)

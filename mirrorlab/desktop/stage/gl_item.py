@@ -21,7 +21,7 @@ from mirrorlab.desktop.stage.gl_arrays import (
     line_arrays,
 )
 from mirrorlab.drawing.camera import Camera
-from mirrorlab.drawing.hiding import LINE_LIFT
+from mirrorlab.drawing.hiding import LINE_LIFT, dimmed_alpha
 from mirrorlab.drawing.look import Look, rgb
 from mirrorlab.drawing.prepared import Prepared
 from mirrorlab.drawing.strokes import Strokes
@@ -133,7 +133,7 @@ class DrawingItem(GLGraphicsItem):
             self._face_data.put(self._faces.data)
             self._solid.put(self._faces.solid)
             self._ordered_for = None
-        data, index = line_arrays(prepared.drawing.lines, cut, look)
+        data, index = line_arrays(prepared.drawing.lines, cut, look, prepared.bare)
         self._line_data.put(data)
         self._line_index.put(index)
         self._faces_of, self._prepared, self._look = faces, prepared, look
@@ -229,9 +229,11 @@ class DrawingItem(GLGraphicsItem):
         program.set("u_half", 0.5 * width * dots, 0.5 * height * dots)
         program.set("u_lift", LINE_LIFT * self._camera.radius)
         program.set("u_scale", dots)
-        if not self._prepared.has_ball:
+        program.set("u_far_alpha", look.far_alpha if self._prepared.bare else 1.0)
+        program.set("u_depth", self._camera.distance if self._camera.field > 0 else 0.0)
+        if not (self._prepared.has_ball or self._prepared.bare):
             GL.glDepthFunc(GL.GL_GREATER)
-            program.set("u_alpha", look.hidden_alpha)
+            program.set("u_alpha", dimmed_alpha(self._prepared, look))
             _draw(self._line_data, LINE_TYPE, LINE_FIELDS, self._line_index)
             GL.glDepthFunc(GL.GL_LEQUAL)
         program.set("u_alpha", 1.0)

@@ -64,6 +64,8 @@ uniform mat4 u_projection;
 uniform vec2 u_half;      // half the picture, in pixels
 uniform float u_lift;     // towards the eye, in the drawing's unit
 uniform float u_scale;    // device pixels a pixel
+uniform float u_depth;    // of the target, from the eye
+uniform float u_far_alpha;
 IN vec3 a_start;
 IN vec3 a_end;
 IN vec2 a_corner;         // 0 or 1 along, -1 or 1 across
@@ -90,6 +92,8 @@ void main() {
     vec4 here = a_corner.x > 0.5 ? end : start;
     vec2 shift = a_corner.y * outer * vec2(-along.y, along.x) + (2.0 * a_corner.x - 1.0) * 0.5 * along;
     v_color = a_color;
+    float far = step((u_view * vec4(0.5 * (a_start + a_end), 1.0)).z, -u_depth);
+    v_color.a *= mix(1.0, u_far_alpha, far);
     v_across = a_corner.y * outer;
     v_reach = reach;
     gl_Position = vec4(here.xy + shift / u_half * here.w, here.zw);
