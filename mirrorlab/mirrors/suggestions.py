@@ -17,7 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.angles import Angle, write_angle
-from mirrorlab.mirrors.exact import triangle_rank
+from mirrorlab.mirrors.exact import CERTAIN, triangle_rank
 from mirrorlab.mirrors.families import MOST_MIRRORS
 from mirrorlab.mirrors.generation import generate_roots
 from mirrorlab.mirrors.graphs import nearest_graphs
@@ -117,10 +117,18 @@ def supplements(angles: tuple[Angle, ...], names: tuple[str, ...], decide: Decid
         return ()
     known = [f for f in fractions if f is not None]
     typed = np.array([float(180 * f) for f in known])
+    size = (1 + math.isqrt(1 + 8 * len(known))) // 2
+    gram = np.eye(size)
+    row, column = np.triu_indices(size, 1)
+    gram[row, column] = gram[column, row] = -np.cos(np.radians(typed))
     result = []
     for k, f in enumerate(known):
         if f in (HALF, 0):
             continue
+        turned = gram.copy()
+        turned[row[k], column[k]] = turned[column[k], row[k]] = -gram[row[k], column[k]]
+        if np.linalg.eigvalsh(turned)[0] < -CERTAIN:
+            continue  # still no planes have these angles: no need to look closer
         candidate = (*known[:k], 1 - f, *known[k + 1 :])
         suggestion = _suggest(candidate, typed, names, decide)
         if suggestion.kind.startswith("closed"):

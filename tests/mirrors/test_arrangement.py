@@ -22,7 +22,13 @@ def test_angles_are_pairs_row_by_row():
 
 
 def test_every_notation_makes_the_same_mirrors():
-    same = [["90", "60", "45"], [90, 60.0, 45], [F(1, 2), F(1, 3), F(1, 4)], ["pi/2", "π/3", "45°"], ["90°", "60d", "45deg"]]
+    same = [
+        ["90", "60", "45"],
+        [90, 60.0, 45],
+        [F(1, 2), F(1, 3), F(1, 4)],
+        ["pi/2", "π/3", "45°"],
+        ["90°", "60d", "45deg"],
+    ]
     for angles in same:
         arrangement = Arrangement.from_angles(angles)
         assert [a.fraction for a in arrangement.angles] == [F(1, 2), F(1, 3), F(1, 4)]

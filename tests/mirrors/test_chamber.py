@@ -71,7 +71,9 @@ def test_same_mirrors_up_to_sign_and_no_farther():
     assert tiny > SAME_MIRROR
 
 
-@pytest.mark.parametrize("angles", [["90", "60", "72"], ["144", "144", "144"], ["60", "90", "60", "120", "90", "60"]])
+@pytest.mark.parametrize(
+    "angles", [["90", "60", "72"], ["144", "144", "144"], ["60", "90", "60", "120", "90", "60"]]
+)
 def test_corner_points_stand_in_the_region_off_every_mirror(angles):
     arrangement = Arrangement.from_angles(angles)
     group = arrangement.finding().group

@@ -43,7 +43,9 @@ def test_coefficient_bound_holds():
     # Hadamard: a k by k minor of 2G is at most (2√k)^k, and there are C(8, k).
     from math import comb, sqrt
 
-    assert max(comb(8, k) * (2 * sqrt(k)) ** k for k in range(1, 9)) <= 2**conjugates.CONJUGATE_BITS * (1 + 1e-12)
+    assert max(comb(8, k) * (2 * sqrt(k)) ** k for k in range(1, 9)) <= 2**conjugates.CONJUGATE_BITS * (
+        1 + 1e-12
+    )
 
 
 def test_zero_and_not_zero(slow):

@@ -41,7 +41,9 @@ def fractions_of(typed):
     return table
 
 
-@pytest.mark.parametrize(("name", "count"), [("A3", 12), ("B3", 12), ("H3", 12), ("A4", 8), ("B4", 8), ("D4", 8), ("F4", 6)])
+@pytest.mark.parametrize(
+    ("name", "count"), [("A3", 12), ("B3", 12), ("H3", 12), ("A4", 8), ("B4", 8), ("D4", 8), ("F4", 6)]
+)
 def test_against_all_elements(name, count, slow):
     whole, picks = irreducible_picks(slow, name, count, seed=11)
     group = slow.elements(whole.simple, 2000)
@@ -159,7 +161,9 @@ def cells_by_sampling(typed, samples=60_000):
     points = weights @ corners
     normals = np.array([n for n, _ in planes])
     offsets = np.array([c for _, c in planes])
-    crossing = ((corners @ normals.T - offsets).min(axis=0) < -1e-9) & ((corners @ normals.T - offsets).max(axis=0) > 1e-9)
+    crossing = ((corners @ normals.T - offsets).min(axis=0) < -1e-9) & (
+        (corners @ normals.T - offsets).max(axis=0) > 1e-9
+    )
     return len(np.unique(points @ normals[crossing].T > offsets[crossing], axis=0))
 
 

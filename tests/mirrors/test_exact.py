@@ -30,7 +30,9 @@ def signs_by_sympy(table):
     )
     result = []
     for k in range(1, n + 1):
-        total = sum(matrix.extract(list(rows), list(rows)).det() for rows in itertools.combinations(range(n), k))
+        total = sum(
+            matrix.extract(list(rows), list(rows)).det() for rows in itertools.combinations(range(n), k)
+        )
         gone = sympy.simplify(sympy.expand(total)) == 0
         result.append(0 if gone else int(sympy.sign(sympy.N(total, 60))))
     return tuple(result)
@@ -74,7 +76,9 @@ def determinant(matrix):
 
 
 @pytest.mark.parametrize("bits", [64, 256, 2048])
-@pytest.mark.parametrize("fraction", [F(0), F(1, 3), F(1, 2), F(2, 5), F(359, 360), F(17, 323), F(1, 100_000)])
+@pytest.mark.parametrize(
+    "fraction", [F(0), F(1, 3), F(1, 2), F(2, 5), F(359, 360), F(17, 323), F(1, 100_000)]
+)
 def test_cosine_is_right_to_its_last_units(fraction, bits):
     with mpmath.workprec(bits + 64):
         true = mpmath.cos(mpmath.pi * fraction.numerator / fraction.denominator) * mpmath.mpf(2) ** bits
@@ -102,7 +106,9 @@ def test_singular_matrices_against_algebra(name, slow):
     assert min(signs) == 0
 
 
-@pytest.mark.parametrize("fractions", [[F(1, 5), F(2, 5), F(2, 5)], [F(1, 3), F(1, 4), F(1, 5)], [F(2, 5), F(1, 2), F(1, 3)]])
+@pytest.mark.parametrize(
+    "fractions", [[F(1, 5), F(2, 5), F(2, 5)], [F(1, 3), F(1, 4), F(1, 5)], [F(2, 5), F(1, 2), F(1, 3)]]
+)
 def test_small_matrices_against_algebra(fractions, slow):
     table = slow.table(fractions, 3)
     assert coefficient_signs(table) == signs_by_sympy(table)

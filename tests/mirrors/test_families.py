@@ -54,7 +54,29 @@ def test_products():
 
 @pytest.mark.parametrize(
     "text",
-    ["", "x", "A0", "A9", "B1", "D3", "E5", "E9", "F3", "G3", "H2", "H5", "I2(1)", "I2(0)", "I2(100001)", "I2", "I3(5)", "Q4", "A1x", "A33", "E8xA1"],
+    [
+        "",
+        "x",
+        "A0",
+        "A9",
+        "B1",
+        "D3",
+        "E5",
+        "E9",
+        "F3",
+        "G3",
+        "H2",
+        "H5",
+        "I2(1)",
+        "I2(0)",
+        "I2(100001)",
+        "I2",
+        "I3(5)",
+        "Q4",
+        "A1x",
+        "A33",
+        "E8xA1",
+    ],
 )
 def test_what_is_no_family_is_refused_with_what_was_typed(text):
     with pytest.raises(FamilyError, match=r'family "') as error:
@@ -96,7 +118,10 @@ def test_graphs_of_infinite_groups_are_not_recognised(labels):
 def symmetries_by_trial(family):
     labels = {(i, j): m for i, j, m in family.edges} | {(j, i): m for i, j, m in family.edges}
     return sum(
-        all(labels.get((p[i], p[j]), 2) == labels.get((i, j), 2) for i, j in itertools.combinations(range(family.rank), 2))
+        all(
+            labels.get((p[i], p[j]), 2) == labels.get((i, j), 2)
+            for i, j in itertools.combinations(range(family.rank), 2)
+        )
         for p in itertools.permutations(range(family.rank))
     )
 

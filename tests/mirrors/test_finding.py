@@ -93,7 +93,12 @@ def test_evidence_of_parallel_mirrors_has_no_product_order():
 def test_infinite_findings_have_no_group():
     for kind in ("open", "tube", "unbuildable"):
         finding = Arrangement.from_angles(SAMPLES[kind]).finding()
-        assert (finding.group, finding.families, finding.order, finding.mirror_count) == (None, (), None, None)
+        assert (finding.group, finding.families, finding.order, finding.mirror_count) == (
+            None,
+            (),
+            None,
+            None,
+        )
         assert finding.chambers_between is None
         assert finding.point_group is None
         assert finding.rotation_group is None
@@ -110,7 +115,8 @@ SENTENCES = {
     "0": "Parallel mirrors: the images tile the strip once; moved onto one another the same planes make m (A1).",
     "60 60 90 60 90 90": "A cell open on one side: the images tile the space once; moved through one point the same "
     "planes make -6m2 (A2 × A1).",
-    "45 90 90 60 90 45": "A cell: the images tile the space once; moved through one point the same planes make m-3m (B3).",
+    "45 90 90 60 90 45": "A cell: the images tile the space once; moved through one point the same planes "
+    "make m-3m (B3).",
     "60 60 45": "Cannot be built: no planes have these angles.",
     "60": "Closes as 3m (A2): 6 images, 3 mirrors; a lattice can carry it.",
     "": "Closes as m (A1): 2 images, 1 mirror; a lattice can carry it.",

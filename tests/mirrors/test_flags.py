@@ -18,7 +18,9 @@ def flags(angles):
     return Arrangement.from_angles(angles).finding().flags
 
 
-@pytest.mark.parametrize("fraction", [F(k, m) for m in range(1, 13) for k in range(m) if F(k, m).denominator == m])
+@pytest.mark.parametrize(
+    "fraction", [F(k, m) for m in range(1, 13) for k in range(m) if F(k, m).denominator == m]
+)
 def test_four_cosine_squares(fraction):
     value = four_cos_squared(fraction)
     assert value == pytest.approx(4 * np.cos(np.pi * float(fraction)) ** 2, abs=1e-12)
@@ -72,7 +74,7 @@ def cycles_by_trial(table):
             product = 1
             for i, j in zip(cycle, cycle[1:] + cycle[:1], strict=True):
                 product *= four_cos_squared(table[i][j])
-            if product and int(round(product**0.5)) ** 2 != product:
+            if product and round(product**0.5) ** 2 != product:
                 return False
     return True
 
@@ -91,14 +93,17 @@ def test_cycles_against_all_cycles(seed, slow):
         for i, j in zip(cycle, cycle[1:] + cycle[:1], strict=True):
             product *= four_cos_squared(table[i][j])
         assert product > 0
-        assert int(round(product**0.5)) ** 2 != product
+        assert round(product**0.5) ** 2 != product
 
 
 def lattice_angles_that_close(slow, size, count):
     rng = np.random.default_rng(size)
     found = []
     while len(found) < count:
-        angles = [LATTICE_ANGLES[k] if rng.random() < 0.5 else F(1, 2) for k in rng.integers(7, size=size * (size - 1) // 2)]
+        angles = [
+            LATTICE_ANGLES[k] if rng.random() < 0.5 else F(1, 2)
+            for k in rng.integers(7, size=size * (size - 1) // 2)
+        ]
         if np.linalg.eigvalsh(slow.gram(angles, size))[0] > 1e-9:
             found.append(angles)
     return found

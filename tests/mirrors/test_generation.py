@@ -59,7 +59,9 @@ def test_dependent_mirrors_need_no_care(slow):
     assert len(heights) == 6
 
 
-@pytest.mark.parametrize("angles", [[F(2, 5), F(1, 3), F(1, 3)], [F(1, 2), F(2, 5), F(2, 5)], [F(2, 3), F(1, 4), F(1, 4)]])
+@pytest.mark.parametrize(
+    "angles", [[F(2, 5), F(1, 3), F(1, 3)], [F(1, 2), F(2, 5), F(2, 5)], [F(2, 3), F(1, 4), F(1, 4)]]
+)
 def test_stops_beyond_the_bound(angles, slow):
     closed = slow.mirrors(slow.normals(angles, 3), 100)
     heights, words, complete = generate_roots(slow.table(angles, 3), 15)

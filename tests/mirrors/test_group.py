@@ -27,7 +27,9 @@ def test_elements_are_the_group(name, slow):
     assert np.allclose(matrices @ matrices.transpose(0, 2, 1), np.eye(group.dimension), atol=1e-12)
     assert np.allclose(np.linalg.det(matrices), 1 - 2 * parity)
     assert (parity == 0).sum() == group.rotation_order
-    reflections = [m for m in matrices if np.isclose(np.trace(m), group.dimension - 2) and np.allclose(m, m.T)]
+    reflections = [
+        m for m in matrices if np.isclose(np.trace(m), group.dimension - 2) and np.allclose(m, m.T)
+    ]
     assert len([m for m in reflections if np.isclose(np.linalg.det(m), -1)]) == group.mirror_count
     has_inversion = slow.key(-np.eye(group.dimension)) in keys
     assert group.contains_inversion == has_inversion

@@ -10,7 +10,15 @@ import pytest
 from mirrorlab.mirrors import Arrangement
 from mirrorlab.mirrors.spelling import LONGEST_WORD
 
-ARRANGEMENTS = [["90", "60", "72"], ["144", "144", "144"], ["2pi/5"], ["3pi/7"], ["60", "60", "120"], ["120", "90", "90", "60", "90", "60"], [F(101, 360)]]
+ARRANGEMENTS = [
+    ["90", "60", "72"],
+    ["144", "144", "144"],
+    ["2pi/5"],
+    ["3pi/7"],
+    ["60", "60", "120"],
+    ["120", "90", "90", "60", "90", "60"],
+    [F(101, 360)],
+]
 
 
 @pytest.mark.parametrize("angles", ARRANGEMENTS, ids=str)
@@ -31,11 +39,10 @@ def test_words_lead_to_the_walls(angles, slow):
         assert min(np.abs(image - wall).max(), np.abs(image + wall).max()) < 1e-9
 
 
-def test_shortest_words(slow):
+def test_shortest_words():
+    # a at 0°, b at 72°, the wall between at 36°: a(b) is at 108° and b(a) at 144°, so it takes one more reflection.
     finding = Arrangement.from_angles(["2pi/5"]).finding()
-    assert finding.wall_words[0] == "a"
-    assert finding.wall_words[1] in ("b(a)", "ab(a)", "a(b)", "ba(b)")
-    assert len(finding.wall_words[1]) == 4
+    assert finding.wall_words == ("a", "ab(a)")
 
 
 def test_a_word_too_long_to_follow_is_left_out():

@@ -17,7 +17,10 @@ def closing(slow):
     """Every triple of kπ/m, m up to 5, in every order, that closes by definition."""
     found = set()
     for triple in itertools.combinations_with_replacement(slow.fractions(5), 3):
-        if np.linalg.eigvalsh(slow.gram(triple, 3))[0] > 1e-9 and slow.mirrors(slow.normals(triple, 3), 40) is not None:
+        if (
+            np.linalg.eigvalsh(slow.gram(triple, 3))[0] > 1e-9
+            and slow.mirrors(slow.normals(triple, 3), 40) is not None
+        ):
             found |= set(itertools.permutations(triple))
     assert len(found) > 100
     return found
@@ -37,7 +40,19 @@ def with_two_right_angles(typed):
     return found
 
 
-TYPED = [(61, 60, 90), (90, 60, 40), (50, 50, 50), (59, 61, 89), (100, 100, 100), (10, 20, 30), (144, 100, 93), (90, 60, 72), (60, 60, 60), (33, 45, 91), (170, 170, 170)]
+TYPED = [
+    (61, 60, 90),
+    (90, 60, 40),
+    (50, 50, 50),
+    (59, 61, 89),
+    (100, 100, 100),
+    (10, 20, 30),
+    (144, 100, 93),
+    (90, 60, 72),
+    (60, 60, 60),
+    (33, 45, 91),
+    (170, 170, 170),
+]
 
 
 @pytest.mark.parametrize("typed", TYPED, ids=str)
@@ -55,7 +70,11 @@ def test_each_really_closes_and_says_so(typed, slow):
     assert len({s.angles for s in finding.suggestions}) == len(finding.suggestions)
     for suggestion in finding.suggestions:
         found = Arrangement.from_angles(suggestion.texts()).finding()
-        assert (found.kind, found.families, found.order) == (suggestion.kind, suggestion.families, suggestion.order)
+        assert (found.kind, found.families, found.order) == (
+            suggestion.kind,
+            suggestion.families,
+            suggestion.order,
+        )
         assert found.chambers_between == suggestion.chambers_between
         made = slow.mirrors(slow.normals(suggestion.angles, 3), 400)
         assert len(made) == found.mirror_count
@@ -88,7 +107,9 @@ def test_two_mirrors():
 
 def nearest_of_four(typed):
     """Smallest (largest, total) change over every graph of 180°/m on four mirrors."""
-    options = [sorted({F(1, m) for m in (2, 3, 4, 5, max(2, int(180 // t)), max(2, -int(-180 // t)))}) for t in typed]
+    options = [
+        sorted({F(1, m) for m in (2, 3, 4, 5, max(2, int(180 // t)), max(2, -int(-180 // t)))}) for t in typed
+    ]
     grids = np.meshgrid(*[np.array([float(f) for f in o]) for o in options], indexing="ij")
     table = np.stack([g.ravel() for g in grids], axis=1)
     gram = np.broadcast_to(np.eye(4), (len(table), 4, 4)).copy()
@@ -109,7 +130,9 @@ def test_four_mirrors_against_all_graphs(seed):
         pytest.fail("the sample must not close by itself")
     best = finding.suggestions[0]
     assert best.kind == "closed"
-    assert (round(best.largest_change, 6), round(sum(map(abs, best.changes)), 6)) <= nearest_of_four(np.array(typed))
+    assert (round(best.largest_change, 6), round(sum(map(abs, best.changes)), 6)) <= nearest_of_four(
+        np.array(typed)
+    )
 
 
 def test_obtuse_angles_may_stay_obtuse():

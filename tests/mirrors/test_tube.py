@@ -97,7 +97,11 @@ def cross(first, second):
 
 def flat_triples():
     options = sorted({F(k, m) for m in (2, 3, 4, 5, 6, 7, 8, 10, 12) for k in range(1, m)})
-    return [(a, b, 1 - a - b) for a, b in itertools.combinations_with_replacement(options, 2) if b <= 1 - a - b and a + b < 1]
+    return [
+        (a, b, 1 - a - b)
+        for a, b in itertools.combinations_with_replacement(options, 2)
+        if b <= 1 - a - b and a + b < 1
+    ]
 
 
 @pytest.mark.parametrize("angles", flat_triples(), ids=str)
@@ -169,7 +173,10 @@ def test_a_region_without_end():
 def test_four_mirrors_round_a_plane_leave_their_distances_open():
     turn = np.radians([0, 60, 120, 240])
     normals = np.stack([np.cos(turn), np.sin(turn)], axis=1)
-    apart = [180 - np.degrees(np.arccos(np.clip(normals[i] @ normals[j], -1, 1))) for i, j in itertools.combinations(range(4), 2)]
+    apart = [
+        180 - np.degrees(np.arccos(np.clip(normals[i] @ normals[j], -1, 1)))
+        for i, j in itertools.combinations(range(4), 2)
+    ]
     found = tube([round(a) for a in apart])
     assert found.tiling == "undetermined"
     assert found.chambers is None
