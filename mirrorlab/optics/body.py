@@ -118,7 +118,7 @@ def follow(
 
     Parameters
     ----------
-    start : ndarray, shape (3,)
+    start : ndarray, shape (3,) or (N, 3)
         Inside the body.
     directions : ndarray, shape (N, 3)
         Unit.
@@ -129,7 +129,7 @@ def follow(
     """
     n = len(directions)
     ways = np.array(directions, dtype=np.float64)
-    points = np.tile(np.asarray(start, dtype=np.float64), (n, 1))
+    points = np.array(np.broadcast_to(np.asarray(start, dtype=np.float64), (n, 3)))
     left = np.full(n, np.inf) if lengths is None else np.array(lengths, dtype=np.float64)
     gone = np.zeros(n)
     faces = np.full(n, -1, dtype=np.int64)
