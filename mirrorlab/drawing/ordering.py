@@ -13,6 +13,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.drawing.sphere import cross
+
 Array = NDArray[np.float64]
 
 THICK = 1e-6
@@ -94,6 +96,30 @@ def _choose(pieces: list[Piece], thick: float) -> Piece:
         if cuts < fewest:
             best, fewest = piece, cuts
     return best
+
+
+def bridged(loops: list[Array], normal: Array) -> list[Array]:
+    """Loops of a plane patch with each hole joined to its outline by a bridge of no width.
+
+    Parameters
+    ----------
+    loops : list of ndarray, shape (n, 3)
+        Outlines run counter-clockwise about the normal, holes clockwise.
+    normal : ndarray, shape (3,)
+    """
+    if len(loops) == 1:
+        return loops
+    turns = [float(normal @ cross(loop, np.roll(loop, -1, axis=0)).sum(axis=0)) for loop in loops]
+    outer = [loop for loop, turn in zip(loops, turns, strict=True) if turn >= 0]
+    for hole in [loop for loop, turn in zip(loops, turns, strict=True) if turn < 0]:
+        if not outer:
+            return [hole]
+        gaps = [np.linalg.norm(loop[:, None] - hole[None], axis=2) for loop in outer]
+        nearest = min(range(len(outer)), key=lambda k: float(gaps[k].min()))
+        i, j = np.unravel_index(int(gaps[nearest].argmin()), gaps[nearest].shape)
+        loop, turned = outer[nearest], np.roll(hole, -int(j), axis=0)
+        outer[nearest] = np.concatenate([loop[: i + 1], turned, turned[:1], loop[i:]])
+    return outer
 
 
 def cut_loop(loop: Array, height: Array) -> Array:

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.drawing.model import Drawing, Faces, Key, Role
-from mirrorlab.drawing.ordering import Piece, Tree, grow
+from mirrorlab.drawing.ordering import Piece, Tree, bridged, grow
 from mirrorlab.drawing.sphere import cross
 
 Array = NDArray[np.float64]
@@ -132,14 +132,19 @@ class Prepared:
                 found += _patches(block, faces, self.corners[rows], self.curved[block])
         return tuple(found)
 
+    def outlines(self, patch: Patch) -> list[Array]:
+        """Outlines of a plane patch, holes joined to them, shape (n, 3) each."""
+        vertices = self.drawing.faces[patch.block].vertices
+        return bridged([vertices[loop] for loop in patch.loops], patch.normal)
+
     @cached_property
     def tree(self) -> Tree | None:
         """The plane patches, so cut that they can be put in order for any eye; None when there are too many."""
         pieces = [
-            Piece(self.drawing.faces[patch.block].vertices[loop], patch.normal, number)
+            Piece(loop, patch.normal, number)
             for number, patch in enumerate(self.patches)
             if not self.curved[patch.block]
-            for loop in patch.loops
+            for loop in self.outlines(patch)
         ]
         return grow(pieces) if len(pieces) <= MOST_ORDERED else None
 

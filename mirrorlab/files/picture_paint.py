@@ -163,7 +163,7 @@ def _ordered(prepared: Prepared, eye: Array) -> list[tuple[Patch, Array]]:
         return [(prepared.patches[piece.patch], piece.points) for piece in prepared.tree.back_to_front(eye)]
     plane = [patch for patch in prepared.patches if not prepared.curved[patch.block]]
     plane.sort(key=lambda patch: -float(np.linalg.norm(eye - patch.middle)))
-    return [(p, prepared.drawing.faces[p.block].vertices[loop]) for p in plane for loop in p.loops]
+    return [(p, loop) for p in plane for loop in prepared.outlines(p)]
 
 
 def _outline_height(camera: Camera) -> float:

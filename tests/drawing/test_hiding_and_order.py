@@ -13,7 +13,7 @@ from mirrorlab.drawing.camera import home_camera
 from mirrorlab.drawing.hiding import behind_ball, dimmed_alpha, hidden, ray_lengths
 from mirrorlab.drawing.look import LIGHT_LOOK
 from mirrorlab.drawing.model import Drawing, Faces, Points, Role
-from mirrorlab.drawing.ordering import Piece, cut_loop, grow
+from mirrorlab.drawing.ordering import Piece, bridged, cut_loop, grow
 from mirrorlab.drawing.picking import near_seed, pick, seed_at
 from mirrorlab.drawing.prepared import Prepared, boundary_loops
 
@@ -122,6 +122,18 @@ def test_cutting_keeps_the_area():
     assert left[:, 0].max() == pytest.approx(0.5)
     assert len(cut_loop(square, np.full(4, -1.0))) == 0
     assert cut_loop(square, np.full(4, 1.0)) is square
+
+
+def test_a_ring_is_one_outline_with_a_bridge():
+    t = np.linspace(0, 2 * np.pi, 25)[:-1]
+    circle = np.stack([np.cos(t), np.sin(t), 0 * t], axis=1)
+    (loop,) = bridged([2 * circle, circle[::-1]], np.array([0.0, 0, 1]))
+    x, y = loop[:, 0], loop[:, 1]
+    area = 0.5 * np.sum(x * np.roll(y, -1) - y * np.roll(x, -1))
+    inner = 0.5 * 24 * np.sin(2 * np.pi / 24)
+    assert area == pytest.approx(3 * inner)
+    apart = bridged([circle, circle + np.array([5.0, 0, 0])], np.array([0.0, 0, 1]))
+    assert len(apart) == 2, "two islands stay two"
 
 
 def test_loops_are_the_edges_that_one_triangle_has_alone(hand: Drawing):
