@@ -2,19 +2,19 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
-from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.drawing.caution_block import caution_block
+from mirrorlab.drawing.composing import A4, GAP, MARGIN, PAGE_TOP, in_one_piece, in_pages, side_by_side
 from mirrorlab.drawing.cutsheet_joints import joint_sections
 from mirrorlab.drawing.cutsheet_panel import WRITE, extent, mark_lines, panel_drawing
 from mirrorlab.drawing.lettering import text_lines, text_width, wrapped
 from mirrorlab.drawing.sheet import Layer, Sheet, Stroke, Text, joined, moved
 from mirrorlab.optics import polygon
-from mirrorlab.optics.cautions import Caution, Place
+from mirrorlab.optics.cautions import Place
 from mirrorlab.optics.cutjob import CutJob
 from mirrorlab.optics.glass import GlassPanel
 from mirrorlab.optics.joints import JOINT_WORDS
@@ -27,17 +27,6 @@ TEXT = 2.6
 SMALL = 400.0
 """mm; longer panes get larger lettering, in proportion, so that it reads on a drawing seen as a whole."""
 
-GAP = 8.0
-"""mm between blocks."""
-
-MARGIN = 6.0
-"""mm kept free around the sheet's content."""
-
-A4 = (190.0, 277.0)
-"""mm; the printable part of an A4 page: a width is chosen that needs few pages."""
-
-PAGE_TOP = 2.0
-"""mm kept free at the top of a page, so that ascenders don't reach the page before."""
 
 RULER = 100.0
 """mm"""
@@ -55,7 +44,10 @@ def cut_sheet(job: CutJob, unit: str = "mm") -> Sheet:
     blocks, text = _blocks(job, unit)
     widest = max(block.width for block in blocks)
     choices = [max(widest, A4[0] - 2 * MARGIN, share * widest) + 2 * MARGIN for share in (1.0, 1.5, 2.1, 3.2)]
-    sheets = [_in_one_piece(job, blocks, width, text, unit) for width in choices]
+    sheets = [
+        in_one_piece(job.title, _rows(job, blocks, width - 2 * MARGIN, text, unit), width)
+        for width in choices
+    ]
     return min(sheets, key=lambda sheet: max(sheet.width / A4[0], sheet.height / A4[1]))
 
 
@@ -81,7 +73,7 @@ def cut_pages(job: CutJob, page: tuple[float, float] = A4, unit: str = "mm") -> 
     ]
     if not ways:
         return cut_sheet(job, unit)
-    sheets = [_in_pages(job, blocks, way, text, unit) for way in ways]
+    sheets = [in_pages(job.title, _rows(job, blocks, way[0], text, unit), way) for way in ways]
     return min(sheets, key=lambda sheet: sheet.width * sheet.height)
 
 
@@ -93,72 +85,19 @@ def _blocks(job: CutJob, unit: str) -> tuple[list[Sheet], float]:
 
 def _rows(job: CutJob, blocks: Sequence[Sheet], inner: float, text: float, unit: str) -> list[list[Sheet]]:
     """All blocks in rows no wider than `inner`, from the top down."""
-    cautions = job.cautions(Place.CUT_SHEET)
+    cautions = [(caution.title, caution.text) for caution in job.cautions(Place.CUT_SHEET)]
     drawn = {stroke.layer for block in blocks for stroke in block.strokes}
     beside = inner - _ruler().width - GAP
     rows = [
         [_head(job, inner, text, unit)],
-        *_side_by_side(blocks, inner),
+        *side_by_side(blocks, inner),
         [_legend(drawn, inner, text)],
-        *_side_by_side(joint_sections(job, 0.8 * text), inner),
+        *side_by_side(joint_sections(job, 0.8 * text), inner),
         [_notes(job, inner, text)],
     ]
     if beside > 60 * text:
         return [*rows, [_ruler(), caution_block(cautions, beside, 0.85 * text)]]
     return [*rows, [_ruler()], [caution_block(cautions, inner, 0.85 * text)]]
-
-
-def _side_by_side(blocks: Sequence[Sheet], width: float) -> list[list[Sheet]]:
-    rows: list[list[Sheet]] = []
-    used = width + 1.0
-    for block in blocks:
-        if used + GAP + block.width > width:
-            rows.append([])
-            used = -GAP
-        rows[-1].append(block)
-        used += GAP + block.width
-    return rows
-
-
-def _placed(row: Sequence[Sheet], left: float, top: float) -> list[Sheet]:
-    """The blocks of a row, tops level."""
-    found, x = [], left
-    for block in row:
-        found.append(moved(block, np.array([x, top - block.height])))
-        x += block.width + GAP
-    return found
-
-
-def _tall(row: Sequence[Sheet]) -> float:
-    return max(block.height for block in row)
-
-
-def _in_one_piece(job: CutJob, blocks: Sequence[Sheet], width: float, text: float, unit: str) -> Sheet:
-    rows = [row for row in _rows(job, blocks, width - 2 * MARGIN, text, unit) if _tall(row)]
-    height = 2 * MARGIN + sum(_tall(row) + GAP for row in rows) - GAP
-    parts, level = [], height - MARGIN
-    for row in rows:
-        parts += _placed(row, MARGIN, level)
-        level -= _tall(row) + GAP
-    return joined(job.title, width, height, tuple(parts))
-
-
-def _in_pages(
-    job: CutJob, blocks: Sequence[Sheet], page: tuple[float, float], text: float, unit: str
-) -> Sheet:
-    """No row crosses from one page to the next."""
-    rows = [row for row in _rows(job, blocks, page[0], text, unit) if _tall(row)]
-    parts, level = [], -PAGE_TOP  # level counts down from the top of the first page
-    for row in rows:
-        left_on_page = page[1] - (-level) % page[1]
-        if _tall(row) > left_on_page:
-            level -= left_on_page + PAGE_TOP
-        parts += _placed(row, 0.0, level)
-        level -= _tall(row) + GAP
-    height = math.ceil((-level - GAP) / page[1] - 1e-9) * page[1]
-    up = np.array([0.0, height])
-    whole = joined(job.title, page[0], height, tuple(moved(part, up) for part in parts))
-    return replace(whole, page=page)
 
 
 def _block(pane: GlassPanel, job: CutJob, height: float, unit: str) -> Sheet:
@@ -271,33 +210,3 @@ def _ruler() -> Sheet:
     texts += text_lines(Layer.RULER, words, np.array([16.0, rise - 8.0]), 0.85 * TEXT)
     shift = np.array([1.0, 1.0])
     return moved(Sheet("ruler", RULER + 8.0, rise + 4.0, tuple(strokes), tuple(texts)), shift)
-
-
-def caution_block(cautions: Sequence[Caution], width: float, height: float = 0.85 * TEXT) -> Sheet:
-    """The cautions in a frame, each title in bold on a line of its own words."""
-    pad, pitch = 2.5 * height, 1.7 * height
-    column = max(text_width(caution.title, height, bold=True) for caution in cautions) + 2 * height
-    stacked = column > 0.4 * width
-    rows: list[tuple[float, str, bool]] = []
-    for caution in cautions:
-        indent = 0.0 if stacked else column
-        lines = wrapped(caution.text, height, width - 2 * pad - indent)
-        rows.append((0.0, caution.title, True))
-        if stacked:
-            rows += [(0.0, line, False) for line in lines]
-        else:
-            rows += [(indent, line, False) for line in lines]
-    texts, level = [], -0.8 * height
-    previous_title = False
-    for indent, line, bold in rows:
-        if not (indent and previous_title):
-            level -= pitch
-        texts.append(
-            Text(Layer.CAUTION, line, np.array([pad + indent, level]), height, anchor="start", bold=bold)
-        )
-        previous_title = bold
-    heading = Text(Layer.CAUTION, "CAUTION", np.array([pad, 0.0]), 1.3 * height, anchor="start", bold=True)
-    tall = -level + 2 * pad + 0.6 * height
-    frame = Stroke(Layer.CAUTION, np.array([(0, 0), (width, 0), (width, tall), (0, tall)]), closed=True)
-    block = moved(Sheet("", 0, 0, texts=(heading, *texts)), np.array([0.0, tall - pad]))
-    return Sheet("cautions", width, tall, (frame,), block.texts)

@@ -91,7 +91,7 @@ def _section(pane: GlassPanel, side: int, other: GlassPanel, back: int, height: 
 
 def _round_scale(scale: float) -> float:
     """The largest round enlargement not above `scale`; a room's thick glass may have to be reduced."""
-    choices = (0.1, 0.2, 0.25, 0.5, 1.0, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0)
+    choices = (0.1, 0.2, 0.25, 0.5, 0.75, 1.0, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0)
     return max((choice for choice in choices if choice <= scale), default=scale)
 
 

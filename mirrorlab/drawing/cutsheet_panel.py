@@ -124,8 +124,11 @@ def _ground(pane: GlassPanel) -> Iterator[Stroke]:
         out = np.array([along[1], -along[0]]) * strip
         count = max(2, int(np.linalg.norm(stop - start) // 6.0) + 1)
         for share in (np.arange(count) + 0.5) / count:
-            foot = start + share * (stop - start)
-            yield Stroke(Layer.BEVEL, np.array([foot, foot + out]))
+            ends = start + share * (stop - start) + np.array([np.zeros(2), out])
+            if polygon.holds(
+                pane.blank, ends[1]
+            ):  # beside a blunt corner the strip ends before the side does
+                yield Stroke(Layer.BEVEL, ends)
 
 
 def _lengths(pane: GlassPanel, height: float, write: object, board: Board) -> tuple[LengthDimension, ...]:

@@ -5,7 +5,6 @@ Widths are those of DejaVu Sans, a wide face, so that text set in any common san
 
 from __future__ import annotations
 
-import textwrap
 from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, field
 
@@ -19,23 +18,59 @@ Array = NDArray[np.float64]
 CAP_HEIGHT = 0.729
 """Height of a capital over the font size, in DejaVu Sans."""
 
-_NARROW = "ijlI.,:;|!'’()[]/ft·"
-_WIDE = "mwMW@%—…"
+_BY_WIDTH = {
+    23: "′",
+    27: "'",
+    28: "ijl",
+    29: "IJ",
+    32: " \u00a0,.·’‘",
+    34: "/:;\\|",
+    35: "f",
+    36: "-",
+    37: "″",
+    39: "()[]t",
+    40: "!²³",
+    41: "r",
+    46: '"',
+    50: "*_`°–",
+    52: "sz“”",
+    53: "?",
+    55: "c",
+    56: "L",
+    58: "Fk",
+    59: "vxy",
+    60: "P",
+    61: "TYao",
+    62: "e",
+    63: "ESbdghnpqu",
+    64: "$0123456789{}",
+    66: "K",
+    68: "AV",
+    69: "BRXZ",
+    70: "C",
+    73: "U",
+    75: "HN",
+    77: "DG",
+    78: "&",
+    79: "OQ",
+    82: "w",
+    84: "#+<=>^~×−±",
+    86: "M",
+    95: "%",
+    97: "m½",
+    99: "W",
+}
+"""Characters by their advance in DejaVu Sans, in hundredths of the font size; read from the font."""
 
-
-def _em(character: str) -> float:
-    if character in _NARROW:
-        return 0.38
-    if character in _WIDE:
-        return 1.0
-    if character in " \u00a0":
-        return 0.32
-    return 0.72 if character.isupper() else 0.64
+_EM = {character: width / 100 for width, characters in _BY_WIDTH.items() for character in characters}
+_WIDEST = 1.0
+_BOLD = 1.15
+"""Bold lines are 12 to 14 % wider."""
 
 
 def text_width(text: str, height: float, bold: bool = False) -> float:
     """Width in mm of a line whose capitals are `height` mm high."""
-    return sum(_em(c) for c in text) * height / CAP_HEIGHT * (1.1 if bold else 1.0)
+    return sum(_EM.get(c, _WIDEST) for c in text) * height / CAP_HEIGHT * (_BOLD if bold else 1.0)
 
 
 def text_box(text: Text, pad: float = 0.0) -> Array:
@@ -62,13 +97,14 @@ def readable(angle: float) -> float:
 
 def wrapped(text: str, height: float, width: float) -> list[str]:
     """Lines no wider than `width` mm; a single longer word stays whole."""
-    columns = max(8, int(width / (0.62 * height / CAP_HEIGHT)))
-    while columns > 8:
-        lines = textwrap.wrap(text, columns, break_long_words=False)
-        if all(text_width(line, height) <= width for line in lines):
-            return lines
-        columns -= 1
-    return textwrap.wrap(text, columns, break_long_words=False)
+    lines: list[str] = []
+    for word in text.split(" "):
+        longer = f"{lines[-1]} {word}" if lines else word
+        if lines and text_width(longer, height) <= width:
+            lines[-1] = longer
+        else:
+            lines.append(word)
+    return lines
 
 
 @dataclass(slots=True)

@@ -6,14 +6,15 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from mirrorlab.drawing.cutsheet import MARGIN, TEXT
+from mirrorlab.drawing.composing import MARGIN, in_one_piece, in_pages
+from mirrorlab.drawing.cutsheet import TEXT
 from mirrorlab.drawing.lettering import Board, text_lines, wrapped
-from mirrorlab.drawing.sheet import Layer, Sheet, Stroke, Text, joined, moved
+from mirrorlab.drawing.sheet import Layer, Sheet, Stroke, Text
 from mirrorlab.optics import polygon
-from mirrorlab.optics.nesting import Cutting, Layout, SheetLayout
+from mirrorlab.optics.nesting import Cutting, Layout, SheetLayout, layout_words
 
-SPACE = 12.0
-"""mm between stock sheets on paper."""
+HEAD_ROOM = 50.0
+"""mm; kept for the words above the first sheet."""
 
 LEVEL_ROOM = 6.0
 """Room at the right for the levels of the cuts, in text heights."""
@@ -39,54 +40,21 @@ def stock_sheet(layout: Layout, title: str, room: tuple[float, float] | None = N
         fitting = [
             s
             for s in ROUND
-            if s * stock.width <= room[0] - 2 * MARGIN - LEVEL_ROOM * TEXT
-            and s * stock.height <= room[1] - 70
+            if s * stock.width <= room[0] - LEVEL_ROOM * TEXT and s * stock.height <= room[1] - HEAD_ROOM
         ]
         scale = fitting[0] if fitting else ROUND[-1]
     text = TEXT * (max(1.0, stock.width / 600) if room is None else 1.0)
     levels = LEVEL_ROOM * text if stock.cutting is Cutting.STRAIGHT else 0.0
-    width = max(scale * stock.width + 2 * MARGIN + levels, 120.0 if room is None else room[0])
-    lines = [line for said in layout_words(layout, scale) for line in wrapped(said, text, width - 2 * MARGIN)]
-    head = 1.7 * text * (len(lines) + 1.5)
-    each = scale * stock.height + SPACE + 1.7 * text
-    height = 2 * MARGIN + head + each * len(layout.sheets)
-    parts = [
-        Sheet(
-            "",
-            0,
-            0,
-            texts=text_lines(
-                Layer.LETTERING, [title, *lines], np.array([MARGIN, height - MARGIN]), text, bold_first=True
-            ),
-        )
-    ]
+    width = max(scale * stock.width + levels, 120.0 if room is None else room[0])
+    lines = [title, *(line for said in layout_words(layout, scale) for line in wrapped(said, text, width))]
+    high = 1.7 * text * len(lines)
+    head = text_lines(Layer.LETTERING, lines, np.array([0.0, high]), text, bold_first=True)
+    rows = [[Sheet("head", width, high, texts=head)]]
     for number, sheet in enumerate(layout.sheets):
-        bottom = height - MARGIN - head - each * (number + 1) + SPACE
-        drawing = _one(sheet, layout, scale, text, f"Sheet {number + 1} of {len(layout.sheets)}")
-        parts.append(moved(drawing, np.array([MARGIN, bottom])))
-    return joined(title, width, height, tuple(parts), scale)
-
-
-def layout_words(layout: Layout, scale: float = 1.0) -> tuple[str, ...]:
-    """The layout in words: sheets, waste, remnant, how to cut."""
-    stock = layout.stock
-    drawn = "" if scale == 1 else f" Drawn at 1:{1 / scale:g}; not a template."
-    remnant = layout.remnant
-    many = "s" if len(layout.sheets) > 1 else ""
-    size = f"{stock.width:g} × {stock.height:g} mm, margin {stock.margin:g} mm, kerf {stock.kerf:g} mm"
-    used = f"Pieces {layout.piece_area:.4f} m² of {layout.sheet_area:.4f} m²"
-    words = [
-        f"{len(layout.sheets)} sheet{many} of {size}.{drawn}",
-        f"{used}: waste {layout.waste_area:.4f} m², {layout.waste_percent:.1f} %.",
-    ]
-    if remnant[1] > stock.margin + 1:
-        words.append(
-            f"A remnant of {remnant[0]:.0f} × {remnant[1]:.0f} mm stays whole on the last sheet; "
-            f"without it the waste is {layout.waste_percent_without_remnant:.1f} %."
-        )
-    if stock.cutting is Cutting.STRAIGHT:
-        words.append("Cut along the strips first, then across each; every cut goes right through. Then trim.")
-    return tuple(words)
+        rows.append([_one(sheet, layout, scale, text, f"Sheet {number + 1} of {len(layout.sheets)}")])
+    if room is None:
+        return in_one_piece(title, rows, width + 2 * MARGIN)
+    return in_pages(title, rows, room, scale)
 
 
 def _one(sheet: SheetLayout, layout: Layout, scale: float, text: float, name: str) -> Sheet:
@@ -109,7 +77,7 @@ def _one(sheet: SheetLayout, layout: Layout, scale: float, text: float, name: st
     strokes += [Stroke(Layer.CUT, scale * p.outline, closed=True) for p in sheet.placements]
     title = Text(Layer.LETTERING, name, np.array([0.0, high + text]), text, anchor="start", bold=True)
     texts = (title, *_letters(sheet, scale, text), *_levels(sheet, layout, scale, text))
-    return Sheet(name, wide, high, tuple(strokes), texts)
+    return Sheet(name, wide, high + 2 * text, tuple(strokes), texts)
 
 
 def _levels(sheet: SheetLayout, layout: Layout, scale: float, text: float) -> Iterator[Text]:

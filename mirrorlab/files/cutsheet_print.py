@@ -73,7 +73,7 @@ def _print_tile(
     painter.scale(RESOLUTION / 25.4, RESOLUTION / 25.4)
     painter.translate(EDGE, EDGE)
     painter.save()
-    painter.setClipRect(QRectF(0, 0, tile.width, tile.height))
+    painter.setClipRect(QRectF(-0.5, 0, tile.width + 1, tile.height))
     painter.translate(-tile.left, -tile.top)
     paint_sheet(painter, sheet)
     for mark in register_marks(sheet, found, tile):

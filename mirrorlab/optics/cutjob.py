@@ -42,8 +42,8 @@ class CutJob:
         How many assemblies to make.
     layout : Layout or None
         On stock sheets, when stock was given.
-    folded, folded_by_shape : Fold
-        What came of folding the panes together by their bevels, and by their flat shapes.
+    folded : Fold
+        What came of folding the panes together by their bevels.
     hazards : Hazards
     """
 
@@ -54,7 +54,6 @@ class CutJob:
     copies: int
     layout: Layout | None
     folded: Fold
-    folded_by_shape: Fold
     hazards: Hazards
 
     @property
@@ -76,6 +75,11 @@ class CutJob:
     def rows(self) -> tuple[CutRow, ...]:
         """The cut list."""
         return cut_list(self.panes, self.copies)
+
+    @property
+    def folded_by_shape(self) -> Fold:
+        """What comes of folding the flat shapes alone; worked out when asked for, it takes a while."""
+        return fold_by_shapes([pane.flat for pane in self.panes])
 
     @property
     def glass_area(self) -> float:
@@ -155,7 +159,6 @@ def make_cut_job(
         copies=copies,
         layout=layout,
         folded=fold_by_bevels(panes),
-        folded_by_shape=fold_by_shapes(flat),
         hazards=hazards_of(assembly, panes),
     )
     return job if title else _titled(job)

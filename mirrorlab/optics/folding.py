@@ -7,7 +7,7 @@ flat faces are swung about their shared edges until the open edge closes.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -19,6 +19,18 @@ from mirrorlab.optics.panels import FlatPanel
 
 Array = NDArray[np.float64]
 Pair = tuple[str, str]
+
+NUDGE = 1e-6
+"""Radians by which a hinge is moved to see how the gap changes."""
+
+SMALLEST_STEP = 1e-12
+"""Radians; a smaller turn moves nothing."""
+
+SHUT = 1e-10
+"""mm; a smaller gap is rounding."""
+
+MOST_STEPS = 60
+"""Gauss–Newton steps; it takes five to ten."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -130,8 +142,6 @@ def fold_by_shapes(panels: Sequence[FlatPanel]) -> Fold:
     """Fold three flat faces by their shapes alone; wedges and four-sided tubes stay loose hinges."""
     if len(panels) != 3:
         return Fold({}, 0.0, 0.0)
-    from scipy.optimize import least_squares
-
     first, second, third = panels
     joint = second.neighbours.index(third.letter), third.neighbours.index(second.letter)
 
@@ -150,9 +160,28 @@ def fold_by_shapes(panels: Sequence[FlatPanel]) -> Fold:
         return (ends[0] - ends[1][::-1]).ravel()
 
     starts = [np.full(2, angle) for angle in np.radians([45.0, 90.0, 135.0])]
-    found = [least_squares(open_edge, start, xtol=1e-15, ftol=1e-15, gtol=1e-15) for start in starts]
-    best = min(found, key=lambda result: result.cost)
-    return _measure(panels, *swung(best.x))
+    found = [_closed(open_edge, start) for start in starts]
+    best = min(found, key=lambda angles: float(np.linalg.norm(open_edge(angles))))
+    return _measure(panels, *swung(best))
+
+
+def _closed(gap: Callable[[Array], Array], angles: Array) -> Array:
+    """Gauss–Newton steps, each shortened until the gap shrinks."""
+    size = float(np.linalg.norm(gap(angles)))
+    for _ in range(MOST_STEPS):
+        if size < SHUT:
+            break
+        here = gap(angles)
+        nudges = np.eye(2) * NUDGE
+        slope = np.column_stack([(gap(angles + n) - gap(angles - n)) / (2 * NUDGE) for n in nudges])
+        step = -np.linalg.lstsq(slope, here, rcond=None)[0]
+        while np.linalg.norm(step) > SMALLEST_STEP and np.linalg.norm(gap(angles + step)) >= size:
+            step = step / 2
+        if np.linalg.norm(step) <= SMALLEST_STEP:
+            break
+        angles = angles + step
+        size = float(np.linalg.norm(gap(angles)))
+    return angles
 
 
 def _hinged(fixed: FlatPanel, moving: FlatPanel, angle: float) -> tuple[Array, Array]:

@@ -20,15 +20,16 @@ as offset of the coated face / of the other face.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from enum import StrEnum
 
 import numpy as np
 
-SQUARE_TOLERANCE = np.radians(0.05)
+SQUARE_TOLERANCE = math.radians(0.05)
 """A bevel below this is called square: no glass bevel is ground closer."""
 
-FEATHER_ANGLE = np.radians(40.0)
+FEATHER_ANGLE = math.radians(40.0)
 """Included angle of the glass at an edge below which the arris is a feather edge that chips and cuts:
 common practice, no source."""
 

@@ -199,6 +199,28 @@ class Layout:
         }
 
 
+def layout_words(layout: Layout, scale: float = 1.0) -> tuple[str, ...]:
+    """The layout in words: sheets, waste, remnant, how to cut."""
+    stock = layout.stock
+    drawn = "" if scale == 1 else f" Drawn at 1:{1 / scale:g}; not a template."
+    remnant = layout.remnant
+    many = "s" if len(layout.sheets) > 1 else ""
+    size = f"{stock.width:g} × {stock.height:g} mm, margin {stock.margin:g} mm, kerf {stock.kerf:g} mm"
+    used = f"Pieces {layout.piece_area:.4f} m² of {layout.sheet_area:.4f} m²"
+    words = [
+        f"{len(layout.sheets)} sheet{many} of {size}.{drawn}",
+        f"{used}: waste {layout.waste_area:.4f} m², {layout.waste_percent:.1f} %.",
+    ]
+    if remnant[1] > stock.margin + 1:
+        words.append(
+            f"A remnant of {remnant[0]:.0f} × {remnant[1]:.0f} mm stays whole on the last sheet; "
+            f"without it the waste is {layout.waste_percent_without_remnant:.1f} %."
+        )
+    if stock.cutting is Cutting.STRAIGHT:
+        words.append("Cut along the strips first, then across each; every cut goes right through. Then trim.")
+    return tuple(words)
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Pose:
     """A piece turned so that one of its sides lies level, its box starting at (0, 0)."""

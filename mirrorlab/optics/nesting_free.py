@@ -126,7 +126,7 @@ def _outside(points: Array, outline: Array) -> Array:
 
 
 def _grown(outline: Array, kerf: float) -> Array:
-    if kerf <= 0:
+    if kerf <= FIT_TOLERANCE:
         return outline
     steps = np.arange(ROUND_CORNERS) * 2 * np.pi / ROUND_CORNERS
     radius = kerf / np.cos(np.pi / ROUND_CORNERS)

@@ -162,5 +162,15 @@ def _finish(strips: Sequence[_Strip], stock: Stock) -> SheetLayout:
         level = strip.bottom + strip.height + stock.kerf / 2
         if level < stock.height:
             along.append(np.array([[0.0, level], [stock.width, level]]))
-    across = [cut for strip in strips for cut in strip.cuts]
+    across = [_on_sheet(cut, stock.width) for strip in strips for cut in strip.cuts]
     return SheetLayout(tuple(p for strip in strips for p, _ in strip.placed), (*along, *across))
+
+
+def _on_sheet(cut: Array, width: float) -> Array:
+    """The part of a slanted cut that lies on the sheet: it may leave through the right-hand edge."""
+    (x0, y0), (x1, y1) = cut
+    ends = []
+    for x, y in cut:
+        over = min(max(x, 0.0), width)
+        ends.append((over, y if over == x else y0 + (over - x0) * (y1 - y0) / (x1 - x0)))
+    return np.array(ends)

@@ -97,6 +97,11 @@ def bounds(outline: Array) -> tuple[float, float, float, float]:
     return float(low[0]), float(low[1]), float(high[0]), float(high[1])
 
 
+def holds(outline: Array, point: Array, slack: float = 1e-6) -> bool:
+    """Whether a point lies in a convex polygon or on its border, within `slack` mm."""
+    return bool(np.all(np.sum(inward_normals(outline) * (point - outline), axis=1) >= -slack))
+
+
 def largest_circle(outline: Array) -> tuple[Array, float]:
     """Centre (2,) and radius of the largest circle inside a convex polygon.
 

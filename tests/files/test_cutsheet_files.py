@@ -243,7 +243,7 @@ def test_reserved_text_widths_hold_for_the_font_that_is_drawn(job, qapp):
     for text in cut_sheet(job).texts:
         font.setBold(text.bold)
         real = QFontMetricsF(font).horizontalAdvance(text.text) * text.height / (100 * CAP_HEIGHT)
-        assert real <= text_width(text.text, text.height, text.bold) * 1.06, text.text
+        assert real <= text_width(text.text, text.height, text.bold) * 1.01, text.text
 
 
 def test_painted_sheet_shows_its_lines(qapp):
