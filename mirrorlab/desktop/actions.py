@@ -6,7 +6,7 @@ from collections.abc import Callable
 from functools import partial
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QObject, Qt
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import QHBoxLayout, QMenu, QToolButton, QWidget
 
@@ -21,10 +21,11 @@ if TYPE_CHECKING:
 Keys = QKeySequence.StandardKey | str
 
 
-class Actions:
+class Actions(QObject):
     """The window's menus."""
 
     def __init__(self, window: Window) -> None:
+        super().__init__(window)  # as the window's child its links to the theme go with the window
         self._window = window
         self.help = Help(window)
         self.undo = window.document.undo_stack.createUndoAction(window, "Undo")

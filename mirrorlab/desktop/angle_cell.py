@@ -2,17 +2,15 @@
 
 from __future__ import annotations
 
-from fractions import Fraction
-
 from PySide6.QtCore import QEvent, Qt, Signal
 from PySide6.QtGui import QFocusEvent, QKeyEvent, QKeySequence
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
 
-from mirrorlab.angles import Angle, write_angle
-from mirrorlab.desktop.marks import FINE, NO_FRACTION, NO_LATTICE, WRONG, ReadingMark
+from mirrorlab.angles import Angle
+from mirrorlab.desktop.angle_text import short_reading
+from mirrorlab.desktop.marks import WRONG, ReadingMark
 from mirrorlab.desktop.parts import Field, label
 from mirrorlab.desktop.stylesheet import set_kind, set_live, set_wrong
-from mirrorlab.mirrors import Finding
 
 
 class AngleEdit(Field):
@@ -167,24 +165,3 @@ class AngleCell(QFrame):
     def _set_error(self, message: str) -> None:
         self.error = message
         self.edit.wrong = bool(message)
-
-
-def short_reading(angle: Angle, compact: bool = False) -> str:
-    """The closing fraction in a few characters; "≈" where it was read from an uncertain value."""
-    if angle.fraction is None:
-        return "none" if compact else "no fraction"
-    written = pretty(angle.fraction, "pi")
-    return written if angle.source == "exact" or compact else f"≈ {written}"
-
-
-def pretty(angle: Angle | Fraction | float, notation: str) -> str:
-    """An angle as it is printed, π for pi; what is typed back needs no π."""
-    return write_angle(angle, notation).replace("pi", "π")
-
-
-def mark_of(finding: Finding, pair: tuple[int, int], angle: Angle) -> str:
-    """The mark of a pair, from the finding's flags."""
-    if angle.fraction is None:
-        return NO_FRACTION
-    codes = {flag.code for flag in finding.flags if tuple(flag.mirrors) == pair}
-    return NO_LATTICE if "no-lattice" in codes else FINE

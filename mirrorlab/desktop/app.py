@@ -12,17 +12,17 @@ from PySide6.QtCore import QCoreApplication, QSettings
 from PySide6.QtGui import QIcon
 from PySide6.QtWidgets import QApplication
 
-from mirrorlab.desktop.document import Document, Seed, Settings, State
-from mirrorlab.desktop.samples import SAMPLES
+from mirrorlab.desktop.document import Document, Settings, State
+from mirrorlab.desktop.sheets import state_of
 from mirrorlab.desktop.stage import prepare_opengl
 from mirrorlab.desktop.theme import THEMES
 from mirrorlab.desktop.theming import system_theme, theming
+from mirrorlab.files.samples import assets, samples
 
 if TYPE_CHECKING:
     from mirrorlab.desktop.window import Window
 
 ORGANISATION = "Mirrorlab"
-FIRST_SEED = Seed(heights=(1.0, 1.0, 1.0), place=None)
 
 
 def prepare() -> None:
@@ -45,19 +45,13 @@ def make_application(arguments: list[str]) -> QApplication:
 
 
 def icon() -> QIcon:
-    """The icon, from the wheel's assets or the source tree's."""
-    package = Path(__file__).parents[1]
-    for folder in (package / "assets", package.parent / "assets"):
-        if (folder / "icon.svg").is_file():
-            return QIcon(str(folder / "icon.svg"))
-    return QIcon()
+    """The window's icon."""
+    return QIcon(str(assets() / "icon.svg"))
 
 
 def first_state() -> State:
     """What stands on the stage at the start: the first sample."""
-    settings = Settings()
-    sample = SAMPLES[0]
-    return State(sample.arrangement(settings.reading), FIRST_SEED, settings, name=sample.name)
+    return state_of(samples()[0], Settings())
 
 
 def make_window(settings: QSettings | None = None) -> Window:

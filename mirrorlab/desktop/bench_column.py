@@ -10,6 +10,9 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, rule
 from mirrorlab.desktop.theming import theming
 
+FAIR_PART = 0.195
+MOST_WIDE = 400
+
 
 class BenchColumn(QFrame):
     """Tabs over the benches.
@@ -29,7 +32,7 @@ class BenchColumn(QFrame):
         super().__init__(parent)
         self.setObjectName("bench")
         self.setProperty("kind", "panel")
-        self.setFixedWidth(theming().theme.spacing.bench_width)
+        self.fit(0)
         self.document = document
         self.slots = there()
         self._benches: dict[str, Bench] = {}
@@ -42,6 +45,11 @@ class BenchColumn(QFrame):
         column.addWidget(rule())
         column.addWidget(self.stack, 1)
         self.tabs.chosen.connect(self.show_index)
+
+    def fit(self, window_width: int) -> None:
+        """Take a fair part of a wide window."""
+        least = theming().theme.spacing.bench_width
+        self.setFixedWidth(min(MOST_WIDE, max(least, round(window_width * FAIR_PART))))
 
     def bench(self, title: str) -> Bench:
         """The bench of a title, built on first use."""

@@ -346,7 +346,7 @@ class Document(QObject):
         try:
             self.orbit = self._orbit_job()(None)
         except (OrbitError, TooLarge) as error:
-            self.orbit_note = str(error)
+            self.orbit_note = why_none(error)
 
     def _orbit_job(self) -> Callable[[Any], Orbit]:
         arrangement, seed, limit = self.arrangement, self.seed, self.settings.most_images
@@ -366,7 +366,7 @@ class Document(QObject):
     def _orbit_failed(self, error: Exception) -> None:
         if not isinstance(error, OrbitError | TooLarge):
             raise error
-        self.orbit_note = str(error)
+        self.orbit_note = why_none(error)
         self.seed_changed.emit()
 
 
@@ -382,6 +382,16 @@ def fitted(seed: Seed, arrangement: Arrangement) -> Seed:
     except OrbitError:
         return Seed(rotations=seed.rotations)
     return seed
+
+
+def why_none(error: Exception) -> str:
+    """Why there is no list of images, for a person."""
+    if isinstance(error, TooLarge):
+        return (
+            f"{error.size:,} images would take {error.memory / 2**20:,.0f} MiB; "
+            f"the limit is {error.limit:,} images. Raise it on the bench, or move the seed onto a wall."
+        )
+    return str(error)
 
 
 def read_again(arrangement: Arrangement, reading: AngleSettings) -> Arrangement:

@@ -9,7 +9,7 @@ from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import QFrame, QGridLayout, QHBoxLayout, QLabel, QScrollArea, QVBoxLayout, QWidget
 
 from mirrorlab.desktop import symbols
-from mirrorlab.desktop.angle_cell import pretty
+from mirrorlab.desktop.angle_text import plain_text, pretty
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import button, label
 from mirrorlab.desktop.theming import theming
@@ -107,7 +107,7 @@ class EvidenceSheet(QFrame):
 
     def _apply(self, suggestion: Suggestion) -> None:
         reading = self.document.settings.reading
-        arrangement = Arrangement.from_angles(suggestion.texts(), reading)
+        arrangement = Arrangement.from_angles([plain_text(f) for f in suggestion.angles], reading)
         self.document.set_arrangement(arrangement, f"suggestion {suggestion.name}")
 
 

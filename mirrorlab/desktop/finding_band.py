@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
 
@@ -22,6 +24,10 @@ HEADLINES = {
     "unbuildable": "Unbuildable",
 }
 
+
+SYMBOL = re.compile(r"[-\dm/]+(?= \([A-I]\d)|p\dm?m?\d?m?(?=\))")
+FAMILY = re.compile(r"\b[A-I]\d(?:\(\d+\))?(?=[ ):.;,])")
+"""Group symbols within a sentence: Hermann–Mauguin ones stand before a family in brackets."""
 
 SYMBOL_SIZE = 25
 """Points of the group's symbols: to be read across a table."""
@@ -153,11 +159,5 @@ class FindingBand(QFrame):
 def sentence_html(finding: Finding) -> str:
     """The finding's sentence with its symbols set as printed."""
     text = finding.sentence.replace("&", "&amp;").replace("<", "&lt;")
-    groups = [finding.point_group]
-    if finding.tube is not None:
-        groups.append(finding.tube.moved_point_group)
-    for group in groups:
-        if group is not None:
-            runs = symbols.hermann_mauguin(group.hermann_mauguin)
-            text = text.replace(f" {group.hermann_mauguin} (", f" {symbols.as_html(runs)} (", 1)
-    return text
+    text = SYMBOL.sub(lambda match: symbols.as_html(symbols.hermann_mauguin(match[0])), text)
+    return FAMILY.sub(lambda match: symbols.as_html(symbols.families([match[0]])), text)

@@ -19,13 +19,16 @@ from PySide6.QtWidgets import (
 
 from mirrorlab.angles import AngleSettings
 from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
-from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.parts import button, label, rule
 from mirrorlab.desktop.reading import PairReading
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.triangle import Triangle
 from mirrorlab.desktop.ways_in import WaysIn
 
-NOTATIONS = (("degrees", "degrees"), ("pi", "fractions of π"), ("dms", "degrees, minutes, seconds"))
+NOTATIONS = (("degrees", "60.5°"), ("pi", "2π/5"), ("dms", "60°30'00\""))
+FAIR_PART, MOST_WIDE = 0.175, 360
+"""Part of a wide window that the panel takes, and the most pixels."""
+
 MARGIN = 14
 SCROLL_BAR = 10
 """Kept free at the right, so that nothing moves or is cut off when the panel must scroll."""
@@ -71,11 +74,12 @@ class MirrorsPanel(QFrame):
         column.addWidget(self.triangle)
         column.addLayout(buttons)
         column.addWidget(self.reading)
-        column.addStretch(1)
-        column.addWidget(self.settings)
         column.addWidget(self.settings_button)
+        column.addWidget(self.settings)
+        column.addWidget(rule())
         column.addWidget(label("Other ways in", "small"))
         column.addWidget(self.ways)
+        column.addStretch(1)
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
@@ -90,13 +94,17 @@ class MirrorsPanel(QFrame):
         size = self.document.arrangement.size
         given = self.document.arrangement.given_normals
         self.name.setText(self.document.name or "Mirrors")
+        self.fit()
         self.add.setEnabled(size < MOST_MIRRORS and not given)
         self.remove.setEnabled(size > FEWEST_MIRRORS)
         self.remove.setText(f"Remove {self.document.arrangement.letters[self._to_remove()]}")
         self.settings_button.setText(settings_in_words(self.document))
+
+    def fit(self) -> None:
+        """Be as wide as the triangle needs, and take a fair part of a wide window."""
         inside = max(self.triangle.wanted_width(), self.ways.minimumSizeHint().width())
         width = max(theming().theme.spacing.triangle_width, inside + 2 * MARGIN + SCROLL_BAR)
-        self.setFixedWidth(width)
+        self.setFixedWidth(max(width, min(MOST_WIDE, round(self.window().width() * FAIR_PART))))
 
     def _to_remove(self) -> int:
         key = self.document.selection
@@ -127,6 +135,8 @@ class ReadingSettings(QWidget):
         self.sigmas.setKeyboardTracking(False)
         self.sigmas.setToolTip("59.9(2) is searched for a closing fraction within so many times 0.2°")
         self.notation = QComboBox()
+        self.notation.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
+        self.notation.setMinimumContentsLength(6)
         for value, text in NOTATIONS:
             self.notation.addItem(text, value)
         form = QFormLayout(self)

@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
-from PySide6.QtCore import Signal
-from PySide6.QtWidgets import QGridLayout, QHBoxLayout, QVBoxLayout, QWidget
+from PySide6.QtCore import QSignalBlocker, Signal
+from PySide6.QtWidgets import QGridLayout, QHBoxLayout, QSpinBox, QVBoxLayout, QWidget
 
 from mirrorlab.desktop import symbols
+from mirrorlab.desktop.angle_text import mark_of, short_reading
 from mirrorlab.desktop.bench import Bench
 from mirrorlab.desktop.chamber_map import ChamberMap
 from mirrorlab.desktop.document import Document
@@ -29,7 +32,6 @@ class PointsBench(Bench):
     """
 
     title = "Points"
-    exports_rows_as = "csv"
     export_wanted = Signal(str)
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
@@ -41,6 +43,7 @@ class PointsBench(Bench):
             hints=("Images under all reflections", "Images that no mirror inverts"),
         )
         self.facts = Facts()
+        self.limit = ImageLimit(document)
         self.map = ChamberMap(document)
         self.map.says.connect(self.says)
         self.exports = {
@@ -73,6 +76,7 @@ class PointsBench(Bench):
         column.addWidget(label("Images", "heading"))
         column.addWidget(self.group)
         column.addWidget(self.facts)
+        column.addWidget(self.limit)
         column.addSpacing(8)
         column.addWidget(label("Export", "heading"))
         row = QHBoxLayout()
@@ -89,7 +93,15 @@ class PointsBench(Bench):
 
     def table_title(self) -> str:
         orbit = self.document.orbit
-        return "Images" if orbit is None else f"{len(orbit):,} image{'s' if len(orbit) != 1 else ''}"
+        if orbit is not None:
+            return f"{len(orbit):,} image{'s' if len(orbit) != 1 else ''}"
+        count = len(self.document.arrangement.pairs)
+        return f"{count} pair{'s' if count != 1 else ''} of mirrors"
+
+    @property
+    def exports_rows_as(self) -> str:
+        """Images have a file of their own; the pairs that stand in for them have none."""
+        return "" if self.document.orbit is None else "csv"
 
     def table_note(self) -> str:
         orbit = self.document.orbit
@@ -97,19 +109,21 @@ class PointsBench(Bench):
 
     def refresh(self) -> None:
         orbit = self.document.orbit
-        self._model.set_columns(() if orbit is None else image_columns(orbit), "image")
+        if orbit is None:
+            self._model.set_columns(pair_columns(self.document), None)
+        else:
+            self._model.set_columns(image_columns(orbit), "image")
         self.seed.refresh()
         self.map.refresh()
         self.group.choose(1 if self.document.seed.rotations else 0)
         self.facts.show_orbit(self.document)
+        self.limit.refresh()
         for part in self.exports.values():
             part.setEnabled(True)
         for kind in ("csv", "npy"):
             self.exports[kind].setEnabled(orbit is not None)
 
     def _choose_group(self, which: int) -> None:
-        from dataclasses import replace
-
         seed = replace(self.document.seed, rotations=which == 1)
         if seed != self.document.seed:
             self.document.set_seed(seed, "rotations only" if which else "whole group")
@@ -131,9 +145,60 @@ def image_columns(orbit: Orbit) -> list[Column]:
     return columns
 
 
+def pair_columns(document: Document) -> list[Column]:
+    """The table of the typed pairs, for arrangements without a list of images."""
+    arrangement, finding = document.arrangement, document.finding
+    rows = list(zip(arrangement.angles, arrangement.pairs, finding.evidence.four_cos, strict=True))
+    return [
+        Column("pair", arrangement.pair_names, text=True),
+        Column("typed", [angle.text for angle in arrangement.angles], text=True),
+        Column("degrees", np.array([angle.degrees for angle in arrangement.angles])),
+        Column("uncertainty", np.array([angle.uncertainty for angle in arrangement.angles]), hint="degrees"),
+        Column("read as", [short_reading(angle) for angle in arrangement.angles], text=True),
+        Column("4cos²", np.array([float(value) for _, _, (_, value, _) in rows])),
+        Column(
+            "order", [order for _, _, (_, _, order) in rows], hint="of the product of the two reflections"
+        ),
+        Column("mark", [mark_of(finding, pair, angle) for angle, pair, _ in rows], text=True),
+    ]
+
+
 def _coordinate(value: float) -> str:
     text = f"{0.0 if abs(value) < 5e-10 else value:.6f}"
     return text.replace("-", "−")
+
+
+class ImageLimit(QWidget):
+    """The most images that are made; shown where the group could reach it."""
+
+    NEAR = 10
+    """It is shown for groups of more than this part of the limit."""
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.document = document
+        self.box = QSpinBox()
+        self.box.setRange(1000, 50_000_000)
+        self.box.setSingleStep(1_000_000)
+        self.box.setGroupSeparatorShown(True)
+        self.box.setKeyboardTracking(False)
+        self.box.setAccessibleName("most images")
+        row = QHBoxLayout(self)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.addWidget(label("Most images made", "muted"))
+        row.addWidget(self.box, 1)
+        self.box.valueChanged.connect(self._change)
+        self.refresh()
+
+    def refresh(self) -> None:
+        """Show the document's limit."""
+        most, order = self.document.settings.most_images, self.document.finding.order
+        with QSignalBlocker(self.box):
+            self.box.setValue(most)
+        self.setVisible(order is not None and order * self.NEAR > most)
+
+    def _change(self, most: int) -> None:
+        self.document.set_settings(replace(self.document.settings, most_images=most))
 
 
 class Facts(QWidget):

@@ -5,8 +5,8 @@ from __future__ import annotations
 from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
 
-from mirrorlab.angles import Angle, write_angle
-from mirrorlab.desktop.angle_cell import mark_of, pretty
+from mirrorlab.angles import Angle
+from mirrorlab.desktop.angle_text import mark_of, plain_text, pretty
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.marks import FINE, NO_FRACTION, NO_LATTICE, WRONG, ReadingMark
 from mirrorlab.desktop.parts import button, label
@@ -73,7 +73,7 @@ class PairReading(QFrame):
                 item.widget().deleteLater()
         nearby = angle.nearest(NEAREST) if mark == NO_FRACTION else ()
         for near in nearby:
-            text = write_angle(near.fraction, "pi")
+            text = plain_text(near.fraction)
             away = f"{near.deviation_degrees:+.3g}°".replace("-", "−")
             offer = button(pretty(near.fraction, "pi"), hint=f"Type {text}, {away} from the typed value")
             offer.clicked.connect(lambda _=False, t=text: self.triangle.take(t))

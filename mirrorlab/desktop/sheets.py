@@ -7,7 +7,15 @@ from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
-from mirrorlab.desktop.document import MOST_MIRRORS, Document, Seed, fitted
+from mirrorlab.desktop.document import (
+    FEWEST_MIRRORS,
+    MOST_MIRRORS,
+    Document,
+    Seed,
+    Settings,
+    State,
+    fitted,
+)
 from mirrorlab.files.sheet_file import Sheet, load_sheet, save_sheet
 
 
@@ -43,20 +51,37 @@ def read_sheet(path: Path, document: Document, keep_path: bool = True) -> None:
     ValueError
         What is wrong with the file.
     """
-    sheet = load_sheet(path)
-    arrangement = sheet.arrangement
-    if not 2 <= arrangement.size <= MOST_MIRRORS:
-        msg = f"it holds {arrangement.size} mirrors; the window shows 2 to {MOST_MIRRORS}"
+    show_sheet(load_sheet(path), document, path if keep_path else None, path.stem)
+
+
+def show_sheet(sheet: Sheet, document: Document, path: Path | None = None, name: str = "") -> None:
+    """Put a sheet into the document, as one step. Raises `SheetError` when the window cannot show it."""
+    size = sheet.arrangement.size
+    if not FEWEST_MIRRORS <= size <= MOST_MIRRORS:
+        msg = f"it holds {size} mirror{'s' if size != 1 else ''}; the window shows 2 to {MOST_MIRRORS}"
         raise SheetError(msg)
-    settings = replace(document.settings, reading=arrangement.settings)
+    state = state_of(sheet, document.settings)
     document.put_sheet(
+        state.arrangement,
+        sheet.name or name,
+        path,
+        seed=state.seed,
+        settings=state.settings,
+        crystal=state.crystal,
+        glass=state.glass,
+    )
+
+
+def state_of(sheet: Sheet, settings: Settings) -> State:
+    """A sheet as a state of the document."""
+    arrangement = sheet.arrangement
+    return State(
         arrangement,
-        sheet.name or path.stem,
-        path if keep_path else None,
-        seed=fitted(seed_from(sheet.seed), arrangement),
-        settings=settings,
+        fitted(seed_from(sheet.seed), arrangement),
+        replace(settings, reading=arrangement.settings),
         crystal=dict(sheet.crystal) or None,
         glass=dict(sheet.glass) or None,
+        name=sheet.name,
     )
 
 

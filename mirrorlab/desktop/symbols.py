@@ -32,16 +32,31 @@ class Run:
 
 
 def hermann_mauguin(symbol: str) -> tuple[Run, ...]:
-    """Runs of a Hermann–Mauguin symbol in plain characters, ``"m-3m"``; "-" bars the next number."""
-    runs = []
-    for bar, digits, letters, other in re.findall(r"(-?)(\d+)|([a-zA-Z]+)|(.)", symbol):
-        if digits:
-            runs.append(Run(digits, barred=bool(bar)))
+    """Runs of a Hermann–Mauguin symbol in plain characters, ``"m-3m"``; "-" bars the next axis."""
+    runs: list[Run] = []
+    for match in re.finditer(r"(-?)(\d+)|([a-zA-Z]+)|(.)", symbol):
+        bar, digits, letters, other = match.groups()
+        if digits and bar:
+            axis = barred_axis(digits, symbol[match.end() :])
+            runs.append(Run(digits[:axis], barred=True))
+            if digits[axis:]:
+                runs.append(Run(digits[axis:]))
+        elif digits:
+            runs.append(Run(digits))
         elif letters:
             runs.append(Run(letters, slanted=True))
         else:
             runs.append(Run(other))
     return tuple(runs)
+
+
+def barred_axis(digits: str, rest: str) -> int:
+    """How many of the digits after a "-" are the order of the barred axis.
+
+    In ``-43m`` and ``-82m`` the last digit is an axis of its own, in ``-10m2`` both belong to one.
+    """
+    own = len(digits) > 1 and digits[-1] in "23" and rest == "m"
+    return len(digits) - 1 if own else len(digits)
 
 
 def schoenflies(symbol: str) -> tuple[Run, ...]:

@@ -7,7 +7,8 @@ from PySide6.QtGui import QMouseEvent
 from PySide6.QtWidgets import QGridLayout, QWidget
 
 from mirrorlab.angles import AngleError
-from mirrorlab.desktop.angle_cell import AngleCell, mark_of
+from mirrorlab.desktop.angle_cell import AngleCell
+from mirrorlab.desktop.angle_text import mark_of
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.marks import LetterDisc
 from mirrorlab.mirrors import ArrangementError

@@ -7,10 +7,12 @@ import re
 from PySide6.QtCore import Signal
 from PySide6.QtWidgets import QHBoxLayout, QMenu, QPlainTextEdit, QVBoxLayout, QWidget
 
+from mirrorlab.desktop.angle_text import plainly_typed
 from mirrorlab.desktop.document import MOST_MIRRORS, Document
 from mirrorlab.desktop.parts import Field, button, label
-from mirrorlab.desktop.samples import SAMPLES, Sample
+from mirrorlab.desktop.sheets import show_sheet
 from mirrorlab.desktop.stylesheet import set_wrong
+from mirrorlab.files.samples import samples
 from mirrorlab.mirrors import Arrangement
 
 
@@ -68,15 +70,9 @@ class WaysIn(QWidget):
 
 def fill_samples(menu: QMenu, document: Document) -> None:
     """Put one action a sample into a menu."""
-    for sample in SAMPLES:
-        action = menu.addAction(f"{sample.name}  –  {sample.note}")
-        action.triggered.connect(lambda _=False, s=sample: load_sample(document, s))
-
-
-def load_sample(document: Document, sample: Sample) -> None:
-    """Put a sample into the triangle, as a step that can be undone."""
-    arrangement = sample.arrangement(document.settings.reading)
-    document.put_sheet(arrangement, sample.name)
+    for sheet in samples():
+        action = menu.addAction(f"{sheet.name}  –  {sheet.note}")
+        action.triggered.connect(lambda _=False, s=sheet: show_sheet(s, document))
 
 
 class FamilyEntry(QWidget):
@@ -113,7 +109,7 @@ class FamilyEntry(QWidget):
         """Make the arrangement, or say in place why it cannot be made."""
         name = self.field.text().strip()
         try:
-            arrangement = Arrangement.from_family(name, self.document.settings.reading)
+            arrangement = plainly_typed(Arrangement.from_family(name, self.document.settings.reading))
         except ValueError as error:
             self._say(str(error))
             return

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QSettings, QSize, Qt
-from PySide6.QtGui import QCloseEvent
+from PySide6.QtGui import QCloseEvent, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QMainWindow, QSplitter, QVBoxLayout, QWidget
 
 from mirrorlab.desktop.actions import Actions
@@ -70,8 +70,8 @@ class Window(QMainWindow):
         self.split.setChildrenCollapsible(False)
         self.split.addWidget(upper)
         self.split.addWidget(self.table)
-        self.split.setStretchFactor(0, 1)
-        self.split.setStretchFactor(1, 0)
+        self.split.setStretchFactor(0, 3)
+        self.split.setStretchFactor(1, 1)
         sheet = QHBoxLayout()
         sheet.setSpacing(1)
         sheet.addWidget(self.split, 1)
@@ -117,6 +117,11 @@ class Window(QMainWindow):
         name = self.document.path.name if self.document.path else self.document.name
         self.setWindowTitle(f"{name or 'New arrangement'}[*] – Mirrorlab")
         self.setWindowModified(not self.document.undo_stack.isClean())
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self.benches.fit(self.width())
+        self.mirrors.fit()
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Keep unsaved changes for the next start, and end all work."""

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import time
 from collections.abc import Callable
 from typing import Any, TypeAlias
 
@@ -9,6 +10,10 @@ from PySide6.QtCore import QObject, QThread, Signal
 
 Job: TypeAlias = Callable[[Callable[[int, int], bool]], Any]
 """Called in a thread of its own with ``progress(done, total)``, which answers False when it should stop."""
+
+
+TELL_EVERY = 0.05
+"""Seconds between two reports of progress: the eye sees no more, and the window has better things to do."""
 
 
 class _Thread(QThread):
@@ -31,12 +36,15 @@ class _Thread(QThread):
         self.done = done
         self.failed = failed
         self.cancelled = False
+        self._told = 0.0
         self.result: Any = None
         self.error: Exception | None = None
 
     def report(self, done: int, total: int) -> bool:
         """Tell the window how far the job is; False when it should stop."""
-        if not self.cancelled:
+        now = time.monotonic()
+        if not self.cancelled and (done >= total or now - self._told >= TELL_EVERY):
+            self._told = now
             self.progressed.emit(self, done, total)
         return not self.cancelled
 

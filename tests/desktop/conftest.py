@@ -9,9 +9,9 @@ from pathlib import Path
 
 import pytest
 import shiboken6
-from PySide6.QtCore import QCoreApplication, QEvent, QSettings, QThread, QTimer
+from PySide6.QtCore import QCoreApplication, QEvent, QSettings, Qt, QThread, QTimer
+from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
-from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop.stage import prepare_opengl
 
@@ -21,7 +21,7 @@ if QCoreApplication.instance() is None:
 from mirrorlab.desktop.app import first_state, make_window
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.theming import theming
-from mirrorlab.desktop.window import Window
+from mirrorlab.desktop.window import FIRST_SIZE, Window
 
 
 @pytest.fixture
@@ -53,29 +53,78 @@ def settings(tmp_path: Path) -> QSettings:
     return made
 
 
-@pytest.fixture
-def window(dressed: QApplication, qtbot: QtBot, settings: QSettings) -> Iterator[Window]:
-    """The real window in sight. Fails when closing it leaves widgets, threads or timers behind."""
-    swept(dressed)
-    widgets = set(dressed.topLevelWidgets())
+@pytest.fixture(scope="module")
+def one_window(qapp: QApplication, tmp_path_factory: pytest.TempPathFactory) -> Iterator[Window]:
+    """One real window for the tests of a module; they get it through `window`, which clears it.
+
+    Fails when closing it leaves widgets, threads or timers behind.
+    """
+    qapp.setStyle("Fusion")
+    theming().wear("light")
+    swept(qapp)
+    widgets = set(qapp.topLevelWidgets())
     threads = set(threading.enumerate())
     timers = set(live_timers())
-    made = make_window(settings)
-    with qtbot.waitActive(made):
-        made.show()
-        made.activateWindow()
+    folder = tmp_path_factory.mktemp("window")
+    made = make_window(QSettings(str(folder / "settings.ini"), QSettings.Format.IniFormat))
+    made.settings.setValue("kept folder", str(folder))
+    made.show()
+    made.activateWindow()
+    assert QTest.qWaitForWindowActive(made, 10_000)
     yield made
     work = made.document.work
     made.close()
     assert not work.running(), "work goes on after the window was closed"
     assert not [t for t in work.findChildren(QThread) if t.isRunning()], "threads run on after the close"
     made.deleteLater()
-    swept(dressed)
+    swept(qapp)
     assert not shiboken6.isValid(made), "the window outlives its deletion"
-    left = [w for w in dressed.topLevelWidgets() if w not in widgets]
+    left = [w for w in qapp.topLevelWidgets() if w not in widgets]
     assert not left, f"widgets left behind: {left}"
     assert not set(threading.enumerate()) - threads, "threads left behind"
     assert not set(live_timers()) - timers, "timers left running"
+
+
+@pytest.fixture
+def window(one_window: Window, settings: QSettings) -> Iterator[Window]:
+    """The real window in sight, as it starts, with settings of this test alone."""
+    one_window.settings = settings
+    yield one_window
+    clear(one_window)
+
+
+def clear(window: Window) -> None:
+    """Bring the window back to how it starts."""
+    document = window.document
+    document.work.cancel()
+    document.undo_stack.clear()
+    document._paths.clear()
+    document._show(first_state())
+    document.select(None)
+    window.actions_.help.hide()
+    window.notice.hide()
+    window.status.say("")
+    mirrors = window.mirrors
+    for opened in (
+        mirrors.ways.family_button,
+        mirrors.ways.normals_button,
+        mirrors.settings_button,
+        window.band.toggle,
+        window.stage.double,
+    ):
+        opened.setChecked(False)
+    for cell in mirrors.triangle.cells:
+        cell.forget_error()
+    mirrors.triangle.refresh()
+    window.table.set_folded(False)
+    window.stage.left.choose("Space")
+    window.benches.show_index(0)
+    window.table.rows.sortByColumn(-1, Qt.SortOrder.AscendingOrder)
+    window.resize(FIRST_SIZE)
+    if theming().theme.name != "light":
+        theming().wear("light")
+    window.setFocus()
+    QApplication.processEvents()
 
 
 def live_timers() -> list[QTimer]:

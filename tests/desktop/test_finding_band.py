@@ -17,6 +17,9 @@ from mirrorlab.desktop.window import Window
 def test_overbars_and_slanted_letters() -> None:
     assert symbols.hermann_mauguin("m-3m") == (Run("m", True), Run("3", barred=True), Run("m", True))
     assert symbols.hermann_mauguin("-10m2") == (Run("10", barred=True), Run("m", True), Run("2"))
+    assert symbols.hermann_mauguin("-43m") == (Run("4", barred=True), Run("3"), Run("m", True))
+    assert symbols.hermann_mauguin("-122m")[:2] == (Run("12", barred=True), Run("2"))
+    assert symbols.hermann_mauguin("-3m") == (Run("3", barred=True), Run("m", True))
     assert symbols.hermann_mauguin("6/mmm") == (Run("6"), Run("/"), Run("mmm", True))
     assert symbols.as_html(symbols.hermann_mauguin("m-3-5")).count("overline") == 2
 

@@ -42,7 +42,7 @@ def test_a_nearby_angle_is_taken_with_one_click(window: Window) -> None:
     assert offers[0].text() == "π/4"
     QTest.mouseClick(offers[0], Qt.MouseButton.LeftButton)
     assert window.document.finding.families == ("B3",)
-    assert window.mirrors.triangle.cells[2].edit.text() == "pi/4"
+    assert window.mirrors.triangle.cells[2].edit.text() == "45"
 
 
 def test_an_unreadable_text_stays_with_its_error_and_the_last_good_arrangement(window: Window) -> None:
