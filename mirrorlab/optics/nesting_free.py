@@ -18,7 +18,7 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
-from mirrorlab.optics import polygon
+from mirrorlab.optics import nesting_straight, polygon
 from mirrorlab.optics.nesting import FIT_TOLERANCE, Layout, Piece, Placement, Pose, SheetLayout, Stock, poses
 
 Array = NDArray[np.float64]
@@ -88,7 +88,10 @@ class _Sheet:
 
 
 def lay_out(pieces: Sequence[Piece], stock: Stock) -> Layout:
-    """Place the largest pieces first, each on the first sheet that takes it."""
+    """Place the largest pieces first, each on the first sheet that takes it.
+
+    A layout of strips can be cut freely too, and is kept when it comes out better.
+    """
     queue = []
     for number, piece in enumerate(pieces):
         turns = poses(piece.outline)
@@ -99,7 +102,10 @@ def lay_out(pieces: Sequence[Piece], stock: Stock) -> Layout:
         if not any(_put(sheet, piece.name, key, turns, copy) for sheet in sheets):
             sheets.append(_Sheet(stock))
             _put(sheets[-1], piece.name, key, turns, copy)
-    return Layout(stock, tuple(SheetLayout(tuple(sheet.placements)) for sheet in sheets))
+    free = Layout(stock, tuple(SheetLayout(tuple(sheet.placements)) for sheet in sheets))
+    strips = nesting_straight.lay_out(pieces, stock)
+    uncut = Layout(stock, tuple(SheetLayout(sheet.placements) for sheet in strips.sheets))
+    return min((free, uncut), key=lambda layout: (len(layout.sheets), layout.sheets[-1].top))
 
 
 def _put(sheet: _Sheet, name: str, key: str, turns: Sequence[Pose], copy: int) -> bool:

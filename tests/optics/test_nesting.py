@@ -119,6 +119,16 @@ def test_triangles_stand_head_to_foot():
         assert len(layout.sheets) == 1, cutting
 
 
+def test_free_cutting_never_needs_more_glass_than_straight():
+    for shapes in ((TRIANGLE, TRAPEZIUM), (NEEDLE, SQUARE), (TRAPEZIUM, NEEDLE)):
+        pieces = [Piece("a", shapes[0], 7), Piece("b", shapes[1], 5)]
+        used = []
+        for cutting in (Cutting.FREE, Cutting.STRAIGHT):
+            layout = nest(pieces, Stock(500, 350, 5, 2, cutting))
+            used.append((len(layout.sheets), layout.sheets[-1].top))
+        assert used[0] <= used[1]
+
+
 def test_a_long_piece_is_turned_to_fit():
     layout = nest([Piece("a", np.array([(0, 0), (20, 0), (20, 390.0), (0, 390)]), 2)], Stock(400, 60, 5))
     assert len(layout.sheets) == 1
