@@ -13,6 +13,10 @@ SAME_MIRROR = 1e-7
 """Two unit normals nearer than this name one mirror. Mirrors of a finite group read with closing fractions up
 to m = 100,000 stand at least 0.00003 apart, and double precision errs by about 1e-14."""
 
+ROOMY = 0.5
+"""A point farther from every mirror than this over the number of normals is far enough: even among 100,000 mirrors that
+is ten digits above rounding."""
+
 
 def simple_of(positive: Array, inside: Array) -> NDArray[np.int64]:
     """Which of an irreducible group's positive roots are simple: their reflection turns no other one negative.
@@ -58,7 +62,7 @@ def generic_point(roots: Array, frame: Array) -> Array:
         margin = float(np.abs(roots @ point).min(initial=1.0))
         if margin > room:
             best, room = point, margin
-        if room > 0.05:
+        if room * len(roots) > ROOMY:
             break
     return np.asarray(best, dtype=np.float64)
 

@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.mirrors.chamber import generic_point, simple_of
+from mirrorlab.mirrors.group import family_of
 
 Array = NDArray[np.float64]
 SAME = 1e-7
@@ -59,19 +60,23 @@ def share_of_space(fractions: list[list[Fraction]], normals: Array, roots: Array
     return share(tuple(range(len(normals))))
 
 
-def chambers_in_region(order: int, fractions: list[list[Fraction]], normals: Array, roots: Array) -> int:
-    """Chambers of an irreducible finite group of that order in the cone between independent typed mirrors.
+def chambers_in_region(fractions: list[list[Fraction]], normals: Array, roots: Array) -> int:
+    """Chambers of an irreducible finite group in the cone between independent typed mirrors.
 
-    See `share_of_space` for the other parameters.
+    See `share_of_space` for the parameters.
     """
-    n = len(normals)
-    if all(fractions[i][j].numerator == 1 for i in range(n) for j in range(i + 1, n)):
-        return 1  # no obtuse or skipped angle: the typed mirrors are themselves a chamber's walls
-    count = order * share_of_space(fractions, normals, roots)
+    if is_plain(fractions):
+        return 1
+    count = family_of(roots).order * share_of_space(fractions, normals, roots)
     if count.denominator != 1:
         msg = f"a region of {count} chambers"
         raise AssertionError(msg)
     return int(count)
+
+
+def is_plain(fractions: list[list[Fraction]]) -> bool:
+    """Whether every angle is 180°/m or 0: then no mirror stands between the typed ones, they are chamber walls."""
+    return all(f.numerator == 1 or f == 0 for row in fractions for f in row)
 
 
 def _few(chosen: tuple[int, ...], fractions: list[list[Fraction]]) -> Fraction:

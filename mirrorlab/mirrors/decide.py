@@ -16,7 +16,7 @@ from mirrorlab.mirrors.counting import chambers_in_region
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
-from mirrorlab.mirrors.group import ReflectionGroup, build_group, family_of
+from mirrorlab.mirrors.group import ReflectionGroup, build_group
 from mirrorlab.mirrors.spelling import spell_walls
 from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
@@ -109,7 +109,7 @@ def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array) -> i
         if roots is None:
             msg = "chambers are counted for finite groups"
             raise ValueError(msg)
-        counts.append(chambers_in_region(family_of(roots).order, known, normals[mine], roots))
+        counts.append(chambers_in_region(known, normals[mine], roots))
     return math.prod(counts)
 
 

@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.mirrors.closure import Fractions, Part
-from mirrorlab.mirrors.counting import chambers_in_region, chambers_in_simplex
+from mirrorlab.mirrors.counting import chambers_in_region, chambers_in_simplex, is_plain
 from mirrorlab.mirrors.flags import Flag
 from mirrorlab.mirrors.group import ReflectionGroup, family_of
 from mirrorlab.mirrors.symbols import PointGroup, point_group
@@ -131,13 +131,12 @@ def _count(parts: list[Part], fractions: Fractions, normals: NDArray[np.float64]
         if part.singular:
             counts.append(_simplex(part, known, mine))
         else:
-            counts.append(chambers_in_region(family_of(part.roots).order, known, mine, part.roots))
+            counts.append(chambers_in_region(known, mine, part.roots))
     return None if any(count is None for count in counts) else math.prod(c for c in counts if c is not None)
 
 
 def _simplex(part: Part, known: list[list[Fraction]], normals: NDArray[np.float64]) -> int | None:
-    n = len(known)
-    if all(known[i][j] == 0 or known[i][j].numerator == 1 for i in range(n) for j in range(i + 1, n)):
+    if is_plain(known):
         return 1
     if part.roots is None:
         return None
