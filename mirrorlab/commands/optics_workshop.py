@@ -90,7 +90,13 @@ def run_build(args: argparse.Namespace) -> int:
     assembly = assembly_for(arrangement, **dimensions_of(args, kind_of(arrangement)))
     joints = JointSettings.named(args.joint, args.order, parse_length(args.gap, "gap"))
     job = make_cut_job(assembly, joints, _stock(args), args.copies, args.title)
-    report = job_report(job, assembly, arrangement.finding())
+    figures = []
+    if args.report:
+        from mirrorlab.optics.images import count_images
+        from mirrorlab.optics.report import images_section
+
+        figures.append(images_section(count_images(assembly)))
+    report = job_report(job, assembly, arrangement.finding(), figures)
     written = _write(args, job, report, room)
     if args.json:
         print_json({**job.to_dict(), "assembly": assembly.to_dict(), "files": written})

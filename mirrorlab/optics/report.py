@@ -16,6 +16,7 @@ from mirrorlab.optics.joints import JOINT_WORDS
 if TYPE_CHECKING:
     from mirrorlab.mirrors import Finding
     from mirrorlab.optics.assembly import Assembly
+    from mirrorlab.optics.images import ImageCount
 
 Row = tuple[str, ...]
 
@@ -76,6 +77,15 @@ def job_report(
         sections.append(Section("Stock", layout_words(job.layout)))
     cautions = tuple((caution.title, caution.text) for caution in job.cautions(Place.REPORT))
     return Report(job.title, tuple(sections), cautions)
+
+
+def images_section(count: ImageCount) -> Section:
+    """The images, for the figures of a report."""
+    head = ("bounces", "images", "light left of the brightest")
+    rows = [
+        (str(bounces), str(images), f"{100 * left:.1f} %") for bounces, images, left in count.by_bounces()
+    ]
+    return Section("Images", (f"{count.sentence}.", *count.notes), (head, *rows))
 
 
 def _assembly(assembly: Assembly, finding: Finding | None) -> Section:

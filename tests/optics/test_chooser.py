@@ -10,6 +10,8 @@ import pytest
 from mirrorlab.optics.build import assembly_from
 from mirrorlab.optics.chooser import FAINTEST, SORTS, bright_images, choices, nearest
 from mirrorlab.optics.closing import Closing, ClosingError, closing_assemblies, spelled
+from mirrorlab.optics.images import count_images
+from mirrorlab.optics.mirror import MirrorSpec
 from mirrorlab.optics.panels import flatten_panels
 
 
@@ -82,6 +84,20 @@ def test_bright_images_of_tubes_by_hand():
         triangle = bounces * (bounces + 1) // 2
         assert bright_images(tubes["p3m1"], bounces) == 3 * triangle
         assert bright_images(tubes["p2mm"], bounces) == 4 * triangle
+
+
+@pytest.mark.parametrize("name", ["wedge 60°", "wedge 36°", "corner 90° 90° 90°", "corner 90° 60° 60°"])
+def test_light_that_is_followed_meets_as_many_images_as_are_listed(listed, name):
+    choice = next(c for c in listed if c.closing.name == name)
+    assert count_images(assembly_from(choice.dimensions)).count == choice.images
+
+
+@pytest.mark.parametrize("name", ["tube 60° 60° 60°", "tube 90° 45° 45°", "tube 90° 90° 90° 90°"])
+def test_light_that_is_followed_meets_as_many_bright_images_as_are_listed(name):
+    choice = next(c for c in choices(50.0, reflectance=0.75, kinds=("tube",)) if c.closing.name == name)
+    mirror = MirrorSpec("first", 0.75)
+    assembly = assembly_from({**choice.dimensions, "mirrors": [mirror] * len(choice.panels)})
+    assert count_images(assembly, faintest=FAINTEST).count == choice.bright
 
 
 def test_brightness_follows_the_reflectance():

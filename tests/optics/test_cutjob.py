@@ -14,6 +14,7 @@ from mirrorlab.optics import (
     Stock,
     cautions_for,
     corner,
+    count_images,
     job_report,
     make_cut_job,
     polygon,
@@ -23,7 +24,7 @@ from mirrorlab.optics import (
 from mirrorlab.optics.cautions import CAUTIONS, Hazards
 from mirrorlab.optics.cutlist import COLUMNS
 from mirrorlab.optics.joints import JointError
-from mirrorlab.optics.report import Section
+from mirrorlab.optics.report import images_section
 
 
 @pytest.fixture(scope="module")
@@ -137,13 +138,16 @@ def test_hazards_come_from_the_panes():
 def test_report_holds_assembly_figures_panes_and_cautions(job):
     assembly = corner(["90", "60", "45"], 100)
     finding = Arrangement.from_angles(["90", "60", "45"]).finding()
-    report = job_report(job, assembly, finding, figures=[Section("Images", ("47 of 47 seen",))])
+    report = job_report(job, assembly, finding, figures=[images_section(count_images(assembly))])
     headings = [section.heading for section in report.sections]
     assert headings == ["Assembly", "Images", "Panes", "Sides", "Joints", "Stock"]
     first = " ".join(report.sections[0].lines)
     assert finding.sentence in first
     assert "ab 90°, ac 60°, bc 45°" in first
     assert "reflectance 0.9" in first
+    images = report.sections[1]
+    assert "47 images" in images.lines[0]
+    assert sum(int(row[1]) for row in images.table[1:]) == 47
     sides = next(section for section in report.sections if section.heading == "Sides")
     assert len(sides.table) == 1 + len(job.rows)
     assert {title for title, _ in report.cautions} >= {"Cut glass", "Sunlight", "Mirror rooms"}
