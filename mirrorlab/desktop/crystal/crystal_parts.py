@@ -1,0 +1,294 @@
+"""Widgets of the crystal bench: chips of sections, a choice with a symbol, a list of typed lines, facts."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from PySide6.QtCore import QSignalBlocker, Qt, Signal
+from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent
+from PySide6.QtWidgets import QButtonGroup, QFrame, QGridLayout, QHBoxLayout, QVBoxLayout, QWidget
+
+from mirrorlab.desktop import symbols
+from mirrorlab.desktop.parts import Field, button, label
+from mirrorlab.desktop.stylesheet import set_kind, set_live, set_wrong
+
+CHIPS_IN_A_ROW = 3
+
+
+class Chips(QWidget):
+    """Buttons in rows of three, of which one is chosen; the arrow keys move among them.
+
+    Signals
+    -------
+    chosen(int)
+        By the user; `choose` does not emit it.
+    """
+
+    chosen = Signal(int)
+
+    def __init__(self, texts: Sequence[str], hints: Sequence[str], parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._group = QButtonGroup(self)
+        self._group.setExclusive(True)
+        grid = QGridLayout(self)
+        grid.setContentsMargins(0, 0, 0, 0)
+        grid.setSpacing(4)
+        for k, (text, hint) in enumerate(zip(texts, hints, strict=True)):
+            made = button(text, "segment", hint)
+            made.setCheckable(True)
+            self._group.addButton(made, k)
+            grid.addWidget(made, k // CHIPS_IN_A_ROW, k % CHIPS_IN_A_ROW)
+            grid.setColumnStretch(k % CHIPS_IN_A_ROW, 1)
+        self._group.button(0).setChecked(True)
+        self._group.idClicked.connect(self.chosen)
+
+    @property
+    def current(self) -> int:
+        """Which one is chosen."""
+        return self._group.checkedId()
+
+    def choose(self, index: int) -> None:
+        """Choose one without telling anyone."""
+        self._group.button(index).setChecked(True)
+
+    def button(self, index: int) -> QWidget:
+        """The button at a place."""
+        return self._group.button(index)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        steps = {
+            Qt.Key.Key_Left: -1,
+            Qt.Key.Key_Right: 1,
+            Qt.Key.Key_Up: -CHIPS_IN_A_ROW,
+            Qt.Key.Key_Down: CHIPS_IN_A_ROW,
+        }
+        place = self.current + steps.get(Qt.Key(event.key()), 0)
+        if place != self.current and 0 <= place < len(self._group.buttons()):
+            self._group.button(place).setFocus()
+            self._group.button(place).click()
+            return
+        super().keyPressEvent(event)
+
+
+class Choice(QFrame):
+    """A card to choose by mouse, Space or Enter: a symbol in large type, words beside it, a line below.
+
+    Signals
+    -------
+    chosen()
+    """
+
+    chosen = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        set_kind(self, "cell")
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setCursor(Qt.CursorShape.PointingHandCursor)
+        self.symbol = symbols.SymbolText(13)
+        self.beside = label("", "small")
+        self.state = label("", "small")
+        self.below = label("", "small", wrap=True)
+        head = QHBoxLayout()
+        head.setSpacing(8)
+        head.addWidget(self.symbol)
+        head.addWidget(self.beside, 1)
+        head.addWidget(self.state)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(10, 4, 10, 5)
+        column.setSpacing(2)
+        column.addLayout(head)
+        column.addWidget(self.below)
+
+    def show_choice(self, symbol: str, beside: str, below: str, state: str, live: bool) -> None:
+        """Fill the card; `state` is a word at the right, `live` marks the chosen one."""
+        self.symbol.set_runs(symbols.hermann_mauguin(symbol))
+        self.beside.setText(beside)
+        self.below.setText(below)
+        self.below.setVisible(bool(below))
+        self.state.setText(state)
+        self.setAccessibleName(f"{symbol} {state}".strip())
+        set_live(self, live)
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:
+        if event.button() == Qt.MouseButton.LeftButton:
+            self.chosen.emit()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
+            self.chosen.emit()
+            return
+        super().keyPressEvent(event)
+
+
+class _Line(QWidget):
+    """One typed line with what was read from it."""
+
+    def __init__(self, name: str) -> None:
+        super().__init__()
+        self.field = LineField()
+        self.field.setAccessibleName(name)
+        self.answer = label("", "small", wrap=True)
+        self.answer.setMinimumWidth(0)
+        row = QHBoxLayout(self)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(8)
+        self.field.setFixedWidth(104)
+        row.addWidget(self.field)
+        row.addWidget(self.answer, 1)
+
+
+class LineField(Field):
+    """A field that says when the keyboard comes.
+
+    Signals
+    -------
+    entered(), left()
+    """
+
+    entered = Signal()
+    left = Signal()
+
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        super().focusInEvent(event)
+        self.entered.emit()
+
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        super().focusOutEvent(event)
+        self.left.emit()
+
+
+class TypedList(QWidget):
+    """Lines of text, each with an answer beside it, and an empty one at the end to type the next.
+
+    Signals
+    -------
+    typed(tuple)
+        The texts now, the empty ones left out.
+    entered()
+        The keyboard came into one of the fields.
+    """
+
+    typed = Signal(tuple)
+    entered = Signal()
+
+    def __init__(self, name: str, hint: str, most: int, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._name, self._hint, self._most = name, hint, most
+        self._lines: list[_Line] = []
+        self._column = QVBoxLayout(self)
+        self._column.setContentsMargins(0, 0, 0, 0)
+        self._column.setSpacing(4)
+        self.error = label("", "wrong", wrap=True)
+        self._column.addWidget(self.error)
+        self.error.hide()
+        self._fit(1)
+
+    @property
+    def fields(self) -> list[Field]:
+        """The fields in sight, the empty one last."""
+        return [line.field for line in self._lines]
+
+    def texts(self) -> tuple[str, ...]:
+        """What is typed, without the empty lines."""
+        return tuple(text for line in self._lines if (text := line.field.text().strip()))
+
+    def show_texts(self, texts: Sequence[str]) -> None:
+        """Show other texts; a field with the keyboard keeps what is typed when it means the same."""
+        if tuple(texts) != self.texts():
+            self._fit(min(self._most, len(texts) + 1))
+            for k, line in enumerate(self._lines):
+                with QSignalBlocker(line.field):
+                    line.field.setText(texts[k] if k < len(texts) else "")
+        self._tidy()
+
+    def show_answers(self, answers: Sequence[tuple[str, bool]]) -> None:
+        """For each text in order what was read from it, and whether that is an error; the first error is told below."""
+        place = 0
+        error = ""
+        for line in self._lines:
+            words, wrong = "", False
+            if line.field.text().strip():
+                words, wrong = answers[place] if place < len(answers) else ("", False)
+                place += 1
+            set_wrong(line.field, wrong)
+            line.answer.setText("" if wrong else words)
+            error = error or (words if wrong else "")
+        self.error.setText(error)
+        self.error.setVisible(bool(error))
+
+    def _fit(self, count: int) -> None:
+        while len(self._lines) < count:
+            number = len(self._lines) + 1
+            line = _Line(f"{self._name} {number}")
+            line.field.textEdited.connect(self._edited)
+            line.field.entered.connect(self.entered)
+            line.field.left.connect(self._tidy)
+            line.field.returnPressed.connect(lambda k=number: self._next(k))
+            self._lines.append(line)
+            self._column.insertWidget(len(self._lines) - 1, line)
+        while len(self._lines) > max(1, count):
+            line = self._lines.pop()
+            self._column.removeWidget(line)
+            line.hide()
+            line.deleteLater()
+        for k, line in enumerate(self._lines):
+            last = k == len(self._lines) - 1
+            line.field.setPlaceholderText(self._hint if last else "")
+
+    def _edited(self) -> None:
+        if self._lines[-1].field.text().strip():
+            self._fit(min(self._most, len(self._lines) + 1))
+        self.typed.emit(self.texts())
+
+    def _next(self, place: int) -> None:
+        if place < len(self._lines):
+            self._lines[place].field.setFocus(Qt.FocusReason.TabFocusReason)
+
+    def _tidy(self) -> None:
+        """Close gaps once nobody types in them."""
+        texts = self.texts()
+        shown = [line.field.text().strip() for line in self._lines]
+        wanted = [*texts, *[""] * (len(shown) - len(texts))]
+        if shown != wanted and not any(line.field.hasFocus() for line in self._lines):
+            for line, text in zip(self._lines, wanted, strict=True):
+                line.field.setText(text)
+        busy = any(line.field.hasFocus() for line in self._lines)
+        if not busy:
+            self._fit(min(self._most, len(texts) + 1))
+
+
+class FactRows(QWidget):
+    """A name and a value a row; the values may wrap. Without a name the value takes the whole row."""
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._grid = QGridLayout(self)
+        self._grid.setContentsMargins(0, 0, 0, 0)
+        self._grid.setHorizontalSpacing(12)
+        self._grid.setVerticalSpacing(3)
+        self._grid.setColumnStretch(1, 1)
+        self._parts: list[tuple[QWidget, QWidget]] = []
+        self.texts: dict[str, str] = {}
+
+    def show_facts(self, facts: dict[str, str]) -> None:
+        """Show other facts, as rich text; empty ones are left out."""
+        kept = {name: text for name, text in facts.items() if text}
+        if kept == self.texts:
+            return
+        self.texts = kept
+        for pair in self._parts:
+            for part in pair:
+                self._grid.removeWidget(part)
+                part.hide()
+                part.deleteLater()
+        self._parts = []
+        for row, (name, text) in enumerate(kept.items()):
+            left, right = label(name, "muted"), label(text, "" if name else "muted", wrap=True)
+            left.setAlignment(Qt.AlignmentFlag.AlignTop)
+            if name:
+                self._grid.addWidget(left, row, 0)
+                self._grid.addWidget(right, row, 1)
+            else:
+                self._grid.addWidget(right, row, 0, 1, 2)
+            self._parts.append((left, right))

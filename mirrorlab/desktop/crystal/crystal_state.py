@@ -1,0 +1,113 @@
+"""What a crystallographer has typed: one frozen value, undone as one and saved with the arrangement."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import asdict, dataclass, fields
+from typing import Any
+
+from mirrorlab.desktop.document import Document
+
+CONSTANTS = ("a", "b", "c", "α", "β", "γ")
+
+STANDARD_TOLERANCE = 3.0
+"""Degrees of obliquity within which lattice mirrors are looked for; also what `lattice_mirrors` starts from."""
+
+COMPARE_TOLERANCE = 0.1
+"""Largest deviation of a matched point, in the unit of the list, until another is typed; common practice."""
+
+
+@dataclass(frozen=True, slots=True)
+class CrystalState:
+    """What is typed on the crystal bench.
+
+    Attributes
+    ----------
+    group : str
+        Symbol of the working group; "" takes the group of the mirrors.
+    faces : tuple of str
+        A face of each form, such as ``1,1,0:1.25``; texts that cannot be read stay as they are typed.
+    net : str
+        "wulff" or "schmidt".
+    underlay : bool
+        The net under the stereogram.
+    poles : bool
+        The stereogram shows the poles of the forms instead of the images of the seed.
+    constants : tuple of str
+        a, b, c, α, β, γ as typed, with their uncertainties; all empty for no cell.
+    centring : str
+    cell_name : str
+        Where the cell came from, such as the name of a CIF data block.
+    planes : tuple of str
+    tolerance : float
+        Largest obliquity of a lattice mirror, in degrees.
+    in_cell : bool
+        Images are written as fractions of the typed cell instead of unit axes.
+    list_text, list_name : str
+        The list of points or poles to compare, as CSV, and the file it came from.
+    list_tolerance : float
+        Largest deviation of a matched point.
+    refine : bool
+        The list is turned to fit the group best.
+    """
+
+    group: str = ""
+    faces: tuple[str, ...] = ()
+    net: str = "wulff"
+    underlay: bool = False
+    poles: bool = False
+    constants: tuple[str, ...] = ("",) * 6
+    centring: str = "P"
+    cell_name: str = ""
+    planes: tuple[str, ...] = ()
+    tolerance: float = STANDARD_TOLERANCE
+    in_cell: bool = False
+    list_text: str = ""
+    list_name: str = ""
+    list_tolerance: float = COMPARE_TOLERANCE
+    refine: bool = True
+
+    @property
+    def has_cell(self) -> bool:
+        """Whether any constant of a cell is typed."""
+        return any(text.strip() for text in self.constants)
+
+    def to_dict(self) -> dict[str, Any]:
+        """Plain JSON."""
+        plain = asdict(self)
+        return {key: list(value) if isinstance(value, tuple) else value for key, value in plain.items()}
+
+
+EMPTY = CrystalState()
+
+
+def crystal_state(document: Document) -> CrystalState:
+    """The document's value; what was read from a file is checked entry by entry, and what does not fit is left out."""
+    value = document.crystal
+    if isinstance(value, CrystalState):
+        return value
+    return from_mapping(value) if isinstance(value, Mapping) else EMPTY
+
+
+def from_mapping(plain: Mapping[str, Any]) -> CrystalState:
+    """A value from plain JSON."""
+    kept: dict[str, Any] = {}
+    for one in fields(CrystalState):
+        before = getattr(EMPTY, one.name)
+        found = plain.get(one.name, before)
+        if isinstance(before, tuple):
+            texts = isinstance(found, list | tuple) and all(isinstance(text, str) for text in found)
+            found = tuple(found) if texts else before
+        elif isinstance(before, bool):
+            found = found if isinstance(found, bool) else before
+        elif isinstance(before, float):
+            usable = isinstance(found, int | float) and not isinstance(found, bool) and 0 <= found < 1e6
+            found = float(found) if usable else before
+        elif not isinstance(found, str):
+            found = before
+        kept[one.name] = found
+    if len(kept["constants"]) != len(CONSTANTS):
+        kept["constants"] = EMPTY.constants
+    if kept["net"] not in ("wulff", "schmidt"):
+        kept["net"] = EMPTY.net
+    return CrystalState(**kept)
