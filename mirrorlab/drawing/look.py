@@ -45,6 +45,8 @@ class Look:
     ----------
     mirrors : tuple of str
         One tint a typed mirror (a, b, c …), told apart in lightness and under colour-vision deficiencies.
+    forms : tuple of str
+        One tint a form of a crystal; its faces carry their indices too.
     silver_light, silver_dark : str
         Chambers of even and of odd parity.
     ball_alpha, disc_alpha : float
@@ -87,6 +89,7 @@ class Look:
     generated_bare: str
     select: str
     mirrors: tuple[str, ...]
+    forms: tuple[str, ...]
     sheen: str = "#ffffff"
     shade: str = "#10161c"
     sheen_alpha: float = 0.62
@@ -153,6 +156,7 @@ LIGHT_LOOK = Look(
     generated_bare="#5C6770",
     select="#0B6E99",
     mirrors=("#A24020", "#274D87", "#AA8D26", "#00817A", "#680F4C", "#06A5EA", "#45351F", "#F2766B"),
+    forms=("#D8DEE0", "#E6CE98", "#B5CDC4", "#DDB9A5", "#B4BDD6", "#CDC4B4"),
 )
 """Ink, silvered glass and brass on paper."""
 
@@ -185,6 +189,7 @@ DARK_LOOK = Look(
     generated_bare="#8D989F",
     select="#7CC7EC",
     mirrors=("#EE765F", "#45A4FC", "#FBD58D", "#57E1C8", "#916EAF", "#A8DFFD", "#9A770B", "#D98C8D"),
+    forms=("#7F8B93", "#A98B4B", "#5F8579", "#99705C", "#66729A", "#857C6C"),
     sheen_alpha=0.32,
     shade_alpha=0.5,
     disc_alpha=0.26,
@@ -235,7 +240,7 @@ def face_tint(look: Look, role: Role, index: int = -1) -> tuple[str, float]:
         Role.PANEL: (look.mirror(index) if index >= 0 else look.panel, 0.35),
         Role.NET: (look.ball, 1.0),
     }
-    return plain.get(role, (look.face, 1.0))
+    return plain.get(role, (look.forms[index % len(look.forms)] if index >= 0 else look.face, 1.0))
 
 
 def line_style(

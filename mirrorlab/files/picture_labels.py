@@ -4,12 +4,18 @@ from __future__ import annotations
 
 import math
 
-from PySide6.QtCore import QPointF, Qt
+from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPainterPath, QPen
 
 from mirrorlab.drawing.look import Look, label_tint
 from mirrorlab.drawing.model import Label, Role
 from mirrorlab.files.picture_marks import tint
+
+TAG_SIZE, TAG_RADIUS = 1.12, 0.74
+"""Height of a tag's letter in label sizes, and the tag's radius in letter heights."""
+
+TEXT_SIZE = 0.92
+"""Height of other writing, in label sizes."""
 
 
 def label_font(look: Look, size: float, italic: bool = False) -> QFont:
@@ -22,12 +28,27 @@ def label_font(look: Look, size: float, italic: bool = False) -> QFont:
     return font
 
 
+def is_tag(label: Label) -> bool:
+    """Whether a label is a mirror's letter, drawn on a round tag."""
+    return label.role in (Role.TYPED_MIRROR, Role.GENERATED_MIRROR) and len(label.text) <= 2
+
+
+def label_box(x: float, y: float, label: Label, look: Look, scale: float = 1.0) -> QRectF:
+    """The room a label takes with its middle at a pixel."""
+    if is_tag(label):
+        radius = TAG_RADIUS * look.label_size * TAG_SIZE * scale
+        return QRectF(x - radius, y - radius, 2 * radius, 2 * radius)
+    font = label_font(look, look.label_size * TEXT_SIZE * scale)
+    box = QFontMetricsF(font).tightBoundingRect(label.text)
+    return QRectF(x - 0.5 * box.width(), y - 0.5 * box.height(), box.width(), box.height())
+
+
 def draw_label(
     painter: QPainter, x: float, y: float, label: Label, look: Look, scale: float = 1.0, alpha: float = 1.0
 ) -> None:
     """Draw a label with its middle at a pixel. Text is drawn as outlines: a file needs no font to show it."""
-    tag = label.role in (Role.TYPED_MIRROR, Role.GENERATED_MIRROR) and len(label.text) <= 2
-    size = look.label_size * scale * (1.12 if tag else 0.92)
+    tag = is_tag(label)
+    size = look.label_size * scale * (TAG_SIZE if tag else TEXT_SIZE)
     font = label_font(look, size, italic=tag)
     metrics = QFontMetricsF(font)
     path = QPainterPath()
@@ -35,7 +56,7 @@ def draw_label(
     path.addText(QPointF(x, y) - box.center(), font, label.text)
     ink = tint(label_tint(look, label.role, label.index), alpha)
     if tag:
-        radius = 0.74 * size
+        radius = TAG_RADIUS * size
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(tint(look.ground, alpha))
         painter.drawEllipse(QPointF(x, y), radius, radius)

@@ -12,6 +12,9 @@ from PySide6.QtGui import QBrush, QColor, QPainter, QPainterPath, QPen, QPolygon
 from mirrorlab.drawing.look import Look
 from mirrorlab.drawing.model import Role
 
+AXIS_SIZE = 1.1
+"""Radius of an axis' mark, in the size of an image's mark."""
+
 CROWD = 90
 """Marks of one role that stand well apart at full size; more become smaller, so that they stay apart."""
 
@@ -70,7 +73,7 @@ def mark_radius(role: Role, symbol: str, look: Look) -> float:
         return 0.5 * look.seed_size
     if symbol in ("+", "o", ""):
         return 0.5 * look.mark_size * _relative_size(role) * (RING if symbol == "o" else 1.0)
-    return 0.9 * look.mark_size
+    return AXIS_SIZE * look.mark_size
 
 
 def _relative_size(role: Role) -> float:
@@ -156,7 +159,7 @@ def _axis(painter: QPainter, centre: QPointF, symbol: str, ink: str, look: Look,
     inverse = symbol.startswith("-") or "\u0304" in symbol or "\u0305" in symbol
     digits = "".join(c for c in symbol if c.isdigit())
     order = int(digits) if digits else 1
-    radius = 0.85 * look.mark_size * scale
+    radius = AXIS_SIZE * (1.22 if order == 3 else 1.0) * look.mark_size * scale
     edge = QPen(tint(look.image_hollow), 1.2 * scale)
     edge.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
     if order < 2 or symbol == "m":
@@ -172,7 +175,7 @@ def _axis(painter: QPainter, centre: QPointF, symbol: str, ink: str, look: Look,
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(tint(look.image_hollow))
     if order % 2:
-        painter.drawEllipse(centre, 0.28 * radius, 0.28 * radius)
+        painter.drawEllipse(centre, 0.22 * radius, 0.22 * radius)
         return
     open_path = _shape(centre, order, 0.74 * radius)
     painter.drawPath(open_path)

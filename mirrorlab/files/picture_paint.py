@@ -31,7 +31,7 @@ from mirrorlab.drawing.ordering import cut_loop
 from mirrorlab.drawing.prepared import SHEER_ROLES, Patch, Prepared
 from mirrorlab.drawing.shading import HALFWAY, ball_shade, ball_sheen, mixed, plane_shade
 from mirrorlab.drawing.strokes import Strokes, strokes
-from mirrorlab.files.picture_labels import draw_label
+from mirrorlab.files.picture_labels import draw_label, is_tag, label_box
 from mirrorlab.files.picture_marks import draw_marks, halo, mark_radius, tint
 from mirrorlab.files.picture_triad import draw_triad
 
@@ -377,16 +377,27 @@ def _ring_chosen(painter: QPainter, prepared: Prepared, sight: Sight, seen: Arra
 
 
 def _paint_labels(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
+    """Letters and other writing. Tags always stand; other writing gives way where it would lie on some before it."""
     labels = prepared.drawing.labels
     if not labels:
         return
     positions = np.array([label.position for label in labels], dtype=float).reshape(-1, 3)
     seen = sight.project(positions)
-    back = hidden(prepared, sight.camera, positions)
-    for k in np.lexsort((seen[:, 2], ~back)).tolist():
-        if back[k] and prepared.has_ball:
+    back = dimmed(prepared, sight.camera, positions)
+    faint = sight.look.far_alpha if prepared.bare else 0.0
+    taken: list[QRectF] = []
+    shown: list[tuple[int, float]] = []
+    tags = np.array([is_tag(label) for label in labels])
+    for k in np.lexsort((-seen[:, 2], ~tags)).tolist():
+        alpha = faint if back[k] and not tags[k] else 0.0 if back[k] and not prepared.bare else 1.0
+        if alpha <= 0:
             continue
-        alpha = 2.0 * sight.look.hidden_alpha if back[k] else 1.0
+        box = label_box(float(seen[k, 0]), float(seen[k, 1]), labels[k], sight.look, sight.scale)
+        if not tags[k] and any(box.intersects(other) for other in taken):
+            continue
+        taken.append(box)
+        shown.append((k, alpha))
+    for k, alpha in reversed(shown):
         draw_label(painter, float(seen[k, 0]), float(seen[k, 1]), labels[k], sight.look, sight.scale, alpha)
 
 
