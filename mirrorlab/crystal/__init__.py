@@ -38,6 +38,12 @@ _WHERE = {
     "lattices_of": "lattices",
     "align": "lattices",
     "axes_from_constants": "lattices",
+    # cells and measurements
+    "Cell": "cell",
+    "parse_cell": "cell",
+    "planes_of": "planes",
+    "parse_planes": "planes",
+    "lattice_symmetry": "lattice_mirrors",
 }
 """Public name → module of this package."""
 
