@@ -27,6 +27,14 @@ _HOMES: dict[str, str] = {
     "count_images": "images",
     "edge_views": "sectors",
     "two_mirror_rule": "images",
+    # tolerance
+    "Intent": "tolerance",
+    "SeamChances": "montecarlo",
+    "Tolerance": "tolerance",
+    "intent_of": "tolerance",
+    "return_error": "returns",
+    "seam_chances": "montecarlo",
+    "tolerance_of": "tolerance",
     # what the eye sees
     "Lights": "scene",
     "PATTERNS": "pattern",

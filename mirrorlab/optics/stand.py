@@ -25,6 +25,10 @@ DEFAULT_MIRROR = "first-surface aluminium"
 WIDE_FIELD = math.radians(55)
 """Radians across the shorter side of a view: about what one takes in through an eyepiece."""
 
+SIMPLE = 60
+"""Largest denominator of a closing fraction that typed decimals are taken to mean. 51.43° means 2π/7; that 59.5°
+is near 37π/112 is chance, and mirrors at 59.5° shall stand at 59.5°."""
+
 WIDEST_FIELD = math.radians(100)
 """A wider flat picture pulls its rims apart beyond what one takes for a view."""
 
@@ -45,11 +49,18 @@ def to_radians(angle: AngleLike, field: str) -> float:
     if isinstance(angle, Fraction):
         return float(angle) * math.pi
     if isinstance(angle, Angle):
-        return angle.radians
+        return standing_angle(angle)
     try:
-        return parse_angle(angle).radians
+        return standing_angle(parse_angle(angle))
     except ValueError as error:
         raise AssemblyError(str(error), field) from error
+
+
+def standing_angle(angle: Angle) -> float:
+    """Return the angle in radians that mirrors stand at: a simple closing fraction, else the typed value."""
+    if angle.fraction is not None and angle.fraction.denominator <= SIMPLE:
+        return float(angle.fraction) * math.pi
+    return math.radians(angle.degrees)
 
 
 def as_given(kind: str, **values: Any) -> dict[str, object]:

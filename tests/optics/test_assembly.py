@@ -106,6 +106,13 @@ def test_arrangement_and_assembly_share_a_frame(angles: list[str], dimensions: d
     assert np.allclose(filled @ assembly.axes.T, assembly.normals, atol=1e-7)
 
 
+def test_decimals_stand_as_typed_unless_they_mean_a_simple_fraction() -> None:
+    degrees = [
+        math.degrees(optics.wedge(text, 100, 50).dihedrals[0, 1]) for text in ("59.5", "51.43", "36.0")
+    ]
+    assert degrees == pytest.approx([59.5, 360 / 7, 36], abs=1e-9)
+
+
 def test_dimensions_make_the_assembly_again() -> None:
     spec = optics.MirrorSpec("second", 0.8, (0.9, 1.0, 0.9))
     for assembly in (
