@@ -112,6 +112,15 @@ SHAPES = {
 }
 
 
+# The order says which pane runs past which: it matters to butted joints only.
+WAYS = [
+    (JointKind.MITRED, Order.ROUND),
+    (JointKind.BUTTED, Order.ROUND),
+    (JointKind.BUTTED, Order.FIRST),
+    (JointKind.SQUARE, Order.ROUND),
+]
+
+
 @pytest.mark.parametrize("name", SHAPES)
 def test_flat_shape_is_the_shape_in_space(name):
     assembly = SHAPES[name]()
@@ -123,9 +132,8 @@ def test_flat_shape_is_the_shape_in_space(name):
         assert np.isclose(flat.corner_angles.sum(), (len(flat.outline) - 2) * np.pi)
 
 
-@pytest.mark.parametrize("kind", JointKind)
+@pytest.mark.parametrize(("kind", "order"), WAYS)
 @pytest.mark.parametrize("surface", Surface)
-@pytest.mark.parametrize("order", Order)
 @pytest.mark.parametrize("name", SHAPES)
 def test_folded_panes_return_the_dihedral_angles(name, kind, surface, order):
     flat = flatten_panels(SHAPES[name]())
@@ -179,9 +187,8 @@ def _overlap(one, other):
     return float(np.min(np.max(one @ directions.T, axis=0) - np.min(other @ directions.T, axis=0)))
 
 
-@pytest.mark.parametrize("kind", JointKind)
+@pytest.mark.parametrize(("kind", "order"), WAYS)
 @pytest.mark.parametrize("surface", Surface)
-@pytest.mark.parametrize("order", Order)
 @pytest.mark.parametrize("name", SHAPES)
 def test_no_two_panes_stand_in_each_other_and_joints_touch(name, kind, surface, order):
     flat = flatten_panels(SHAPES[name]())
