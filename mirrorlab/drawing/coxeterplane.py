@@ -18,8 +18,8 @@ Array = NDArray[np.float64]
 MOST_IMAGES = 6000
 """Most images drawn: E8's 240 and B6's 46,080 alike become a disc beyond it."""
 
-MOST_EDGES = 4000
-"""Most edges drawn between an image and its neighbours across the chamber's walls."""
+MOST_EDGES = 2500
+"""Most edges drawn between an image and its neighbours across the chamber's walls; more make a grey disc."""
 
 REAL = 1e-6
 """An eigenvalue with a smaller imaginary part turns no plane; the least true one is sin(2π/h) with h ≤ 720."""
@@ -108,6 +108,8 @@ def _edges(group: ReflectionGroup, orbit: Orbit, places: Array, notes: list[str]
     for gap in gaps:
         near |= np.abs(apart - gap) < 1e-7 * size
     i, j = np.nonzero(np.triu(near, 1))
+    if len(i) > MOST_EDGES:
+        notes.append("edges are left out: there are too many")
     if not 0 < len(i) <= MOST_EDGES:
         return ()
     ends = np.stack([places[i], places[j]], axis=1).reshape(-1, 2)

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from mirrorlab.drawing.camera import Camera
 from mirrorlab.drawing.hiding import hidden, ray_lengths
 from mirrorlab.drawing.model import Key, Role
-from mirrorlab.drawing.prepared import Prepared
+from mirrorlab.drawing.prepared import DOT_ROLES, Prepared
 
 Array = NDArray[np.float64]
 
@@ -53,12 +53,9 @@ def _pick_point(p: Prepared, camera: Camera, x: float, y: float, width: float, h
     if not len(near):
         return None
     # A seed or image beats a net's or an axis' mark at the same place; then the nearest, then the frontmost.
-    first = np.array([p.drawing.points[int(p.point_block[i])].role not in _DOTS for i in near])
+    first = np.array([p.drawing.points[int(p.point_block[i])].role not in DOT_ROLES for i in near])
     best = near[np.lexsort((-seen[near, 2], np.round(apart[near]), first))[0]]
     return Hit(p.point_keys[int(best)], positions[best])
-
-
-_DOTS = frozenset({Role.SEED, Role.IMAGE_EVEN, Role.IMAGE_ODD})
 
 
 def _pick_line(p: Prepared, camera: Camera, x: float, y: float, width: float, height: float) -> Hit | None:

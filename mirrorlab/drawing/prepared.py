@@ -21,6 +21,12 @@ BALL_ROLES = frozenset({Role.CHAMBER_EVEN, Role.CHAMBER_ODD, Role.REGION, Role.N
 SHEER_ROLES = frozenset({Role.TYPED_MIRROR, Role.GENERATED_MIRROR, Role.PANEL, Role.FLAGGED})
 """Roles whose faces let things behind them show, seen from either side."""
 
+ONE_PLACE = 1e-6
+"""Images nearer than this part of the picture are seen as one."""
+
+DOT_ROLES = frozenset({Role.SEED, Role.IMAGE_EVEN, Role.IMAGE_ODD})
+"""Roles of the seed and its images."""
+
 ON_BALL = 1e-6
 """Vertices this near to length 1 lie on the unit sphere: far above rounding, far below a detail."""
 
@@ -172,6 +178,20 @@ class Prepared:
     def point_keys(self) -> tuple[Key, ...]:
         """Key of each point."""
         return tuple(key for p in self.drawing.points for key in p.keys)
+
+    @cached_property
+    def spacing(self) -> float:
+        """How far images stand from one another: a low quarter of some images' distances to their second nearest.
+
+        The nearest may lie as close as one likes, where a seed comes near to a wall. Infinite for up to two.
+        """
+        chosen = np.array([p.role in DOT_ROLES for p in self.drawing.points], dtype=bool)
+        places = self.point_positions[chosen[self.point_block]] if len(chosen) else np.zeros((0, 3))
+        if len(places) < 3:
+            return float("inf")
+        apart = np.linalg.norm(places[: len(places) : max(1, len(places) // 30)][:, None] - places, axis=2)
+        apart[apart < ONE_PLACE * apart.max()] = np.inf  # itself, and what a projection laid upon it
+        return float(np.percentile(np.partition(apart, 1, axis=1)[:, 1], 25))
 
     @cached_property
     def segments(self) -> tuple[Array, Array, Ints]:

@@ -15,14 +15,8 @@ from mirrorlab.drawing.model import Role
 AXIS_SIZE = 1.1
 """Radius of an axis' mark, in the size of an image's mark."""
 
-CROWD = 90
-"""Marks of one role that stand well apart at full size; more become smaller, so that they stay apart."""
-
 RING = 1.5
 """A mark of a point below the plane of a stereogram is a ring that a dot above it leaves in sight."""
-
-LEAST_MARK = 0.42
-"""Smallest size of a mark, as a part of its full size: still filled or hollow to the eye."""
 
 
 def tint(name: str, alpha: float = 1.0) -> QColor:
@@ -47,8 +41,6 @@ def draw_marks(
         Pixels for one of the look's pixels.
     """
     ink = _mark_tint(look, role)
-    if len(places) > CROWD:
-        scale *= max(LEAST_MARK, (CROWD / len(places)) ** 0.5)
     if role is not Role.SEED and symbol in ("+", "o", ""):
         hollow = symbol == "o" or (not symbol and role is Role.IMAGE_ODD)
         _dots(

@@ -28,7 +28,7 @@ from mirrorlab.drawing.hiding import LINE_LIFT, dimmed, dimmed_alpha, hidden
 from mirrorlab.drawing.look import Look, face_tint, line_style, rgb
 from mirrorlab.drawing.model import Key, Line, Role
 from mirrorlab.drawing.ordering import cut_loop
-from mirrorlab.drawing.prepared import SHEER_ROLES, Patch, Prepared
+from mirrorlab.drawing.prepared import DOT_ROLES, SHEER_ROLES, Patch, Prepared
 from mirrorlab.drawing.shading import HALFWAY, ball_shade, ball_sheen, mixed, plane_shade
 from mirrorlab.drawing.strokes import Strokes, strokes
 from mirrorlab.files.picture_labels import draw_label, is_tag, label_box
@@ -353,6 +353,7 @@ def _paint_points(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
     inside = (seen[:, 0] > -margin) & (seen[:, 0] < sight.width + margin)
     inside &= (seen[:, 1] > -margin) & (seen[:, 1] < sight.height + margin)
     blocks, block_of = prepared.drawing.points, prepared.point_block
+    crowd = _crowding(prepared, sight)
     order = sorted(range(len(blocks)), key=lambda k: blocks[k].role is Role.SEED)
     for ghost in (False,) if prepared.has_ball else (True, False):
         painter.setOpacity(dimmed_alpha(prepared, look) if ghost else 1.0)
@@ -362,8 +363,19 @@ def _paint_points(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
             which = which[np.argsort(seen[which, 2], kind="stable")]
             if not ghost and (sight.selection or sight.hover is not None):
                 _ring_chosen(painter, prepared, sight, seen, which)
-            draw_marks(painter, seen[which, :2], block.role, block.symbol, look, sight.scale)
+            size = sight.scale * (crowd if block.role in DOT_ROLES and block.role is not Role.SEED else 1.0)
+            draw_marks(painter, seen[which, :2], block.role, block.symbol, look, size)
     painter.setOpacity(1.0)
+
+
+LEAST_MARK = 0.42
+"""Smallest size of a mark where images crowd, as a part of its full size: still filled or hollow to the eye."""
+
+
+def _crowding(prepared: Prepared, sight: Sight) -> float:
+    """How much smaller marks are drawn so that neighbouring images stay apart."""
+    room = prepared.spacing * sight.camera.pixels_per_unit(sight.width, sight.height)
+    return float(np.clip(room / (1.25 * sight.look.mark_size * sight.scale), LEAST_MARK, 1.0))
 
 
 def _ring_chosen(painter: QPainter, prepared: Prepared, sight: Sight, seen: Array, which: Array) -> None:
