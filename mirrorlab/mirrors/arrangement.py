@@ -15,14 +15,11 @@ from mirrorlab.angles import Angle, AngleError, AngleSettings, parse_angle
 from mirrorlab.mirrors.closure import HALF, Fractions
 from mirrorlab.mirrors.families import TOP_RANK, family_angles, parse_family
 from mirrorlab.mirrors.finding import Finding
-from mirrorlab.mirrors.normals import ArrangementError, normals_from_gram, settle, unit_rows
+from mirrorlab.mirrors.normals import LETTERS, ArrangementError, normals_from_gram, settle, unit_rows
 from mirrorlab.mirrors.orbit import MOST_IMAGES, Orbit, OrbitError, make_orbit
 from mirrorlab.mirrors.walk import Progress
 
 Array = NDArray[np.float64]
-
-LETTERS = "abcdefghijklmno"
-"""Names of the typed mirrors; p onwards is kept for walls that were not typed."""
 
 NORMAL_TOLERANCE = 1e-9
 """Radians within which the angle between two given normals is taken to be a closing fraction. Double
@@ -127,7 +124,7 @@ class Arrangement:
         Parameters
         ----------
         normals : array_like, shape (n, d)
-            One row a mirror, of any length but zero; 1 ≤ d ≤ 8, 1 ≤ n ≤ 15. They may be dependent.
+            One row a mirror, of any length but zero; 1 ≤ d ≤ 8, 1 ≤ n ≤ 41. They may be dependent.
         settings : AngleSettings
         tolerance : float
             Radians within which an angle is taken to be a closing fraction; 1e-6 suits six typed decimals. The
@@ -136,8 +133,8 @@ class Arrangement:
         Raises
         ------
         ArrangementError
-            A wrong shape, a normal that is zero or not finite, the same mirror twice, or a tolerance that is not
-            above 0 and at most `MOST_TOLERANCE`.
+            A wrong shape, a normal that is zero or not finite, the same mirror twice, angles that were read but do
+            not belong together, or a tolerance that is not above 0 and at most `MOST_TOLERANCE`.
         """
         if not 0 < tolerance <= MOST_TOLERANCE:
             msg = f"tolerance {tolerance}: radians above 0, up to {MOST_TOLERANCE}"
@@ -224,7 +221,7 @@ class Arrangement:
         Raises
         ------
         TooLarge
-            More than 100,000 mirrors through one line.
+            Normals that make more than 100,000 mirrors through one line.
         """
         return self._finding
 

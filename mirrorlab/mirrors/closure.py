@@ -23,7 +23,7 @@ from numpy.typing import NDArray
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.families import LARGEST_PAIR_ORDER, MOST_MIRRORS
 from mirrorlab.mirrors.generation import generate_roots
-from mirrorlab.mirrors.group import TooLarge, connected
+from mirrorlab.mirrors.group import connected
 from mirrorlab.mirrors.witness import Witness, close_pair, closest, too_close
 
 Array = NDArray[np.float64]
@@ -55,6 +55,8 @@ class Part:
         Which bound is broken, in words, when not finite.
     witness : tuple or None
         Two generated mirrors that stand too close, as (word, word, degrees).
+    fan : int
+        Number of mirrors through one line where they are too many to write out (`roots` is None then), else 0.
     """
 
     members: tuple[int, ...]
@@ -65,6 +67,7 @@ class Part:
     broken: str = ""
     bound: str = ""
     witness: Witness | None = None
+    fan: int = 0
 
     @property
     def singular(self) -> bool:
@@ -94,11 +97,6 @@ def decide_part(
         None when there are none (then only definiteness is decided).
     letters : str
         Letters of the typed mirrors, for words.
-
-    Raises
-    ------
-    TooLarge
-        More than `MOST_THROUGH_A_LINE` mirrors through one line.
     """
     inner_gram = gram[np.ix_(members, members)]
     inner = [[fractions[i][j] for j in members] for i in members]
@@ -119,8 +117,7 @@ def decide_part(
     if rank == 2:
         m = math.lcm(*(f.denominator for row in known for f in row))
         if m > MOST_THROUGH_A_LINE:
-            where = f"mirrors through one line, at multiples of 180°/{m:,}"
-            raise TooLarge(where, m, 2 * m * 8 * normals.shape[1], MOST_THROUGH_A_LINE, "")
+            return Part(own, 2, True, True, bound=f"mirrors through one line at multiples of 180°/{m}", fan=m)
         return Part(
             own, 2, True, True, _star(mine, m), bound=f"mirrors through one line at multiples of 180°/{m}"
         )

@@ -1,6 +1,7 @@
 """How many chambers of the group lie in the region between the typed mirrors.
 
-All chambers are alike, so the count is the group's order times the share of all space that the region takes."""
+All chambers are alike, so the count is the group's order times the share of all space that the region takes.
+"""
 
 from __future__ import annotations
 

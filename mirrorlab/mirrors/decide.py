@@ -11,12 +11,12 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from mirrorlab.mirrors.chamber import corner_points, generic_point, region_frame, typed_walls
-from mirrorlab.mirrors.closure import Array, Fractions, Part, decide_part, split
+from mirrorlab.mirrors.closure import MOST_THROUGH_A_LINE, Array, Fractions, Part, decide_part, split
 from mirrorlab.mirrors.counting import chambers_in_region
 from mirrorlab.mirrors.exact import definiteness
 from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABLE, Finding, gather_evidence
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
-from mirrorlab.mirrors.group import ReflectionGroup, build_group
+from mirrorlab.mirrors.group import ReflectionGroup, TooLarge, build_group
 from mirrorlab.mirrors.spelling import spell_walls
 from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
@@ -26,7 +26,13 @@ if TYPE_CHECKING:
 
 
 def buildable(gram: Array, fractions: Fractions) -> int | None:
-    """Rank of the Gram matrix, part by part, or None when no planes have these angles."""
+    """Rank of the Gram matrix, part by part, or None when no planes have these angles.
+
+    Parameters
+    ----------
+    gram : ndarray, shape (n, n)
+    fractions : n by n list of Fraction or None
+    """
     rank = 0
     for members in split(fractions):
         inner = [[fractions[i][j] for j in members] for i in members]
@@ -38,7 +44,13 @@ def buildable(gram: Array, fractions: Fractions) -> int | None:
 
 
 def decide(arrangement: Arrangement) -> Finding:
-    """What an arrangement does, with evidence."""
+    """What an arrangement does, with evidence.
+
+    Raises
+    ------
+    TooLarge
+        Normals that make more than `MOST_THROUGH_A_LINE` mirrors through one line.
+    """
     fractions, gram, normals = arrangement.fractions, arrangement.gram, arrangement.normals
     letters = "".join(arrangement.letters)
     parts = tuple(decide_part(members, gram, fractions, normals, letters) for members in split(fractions))
@@ -76,14 +88,19 @@ def decide(arrangement: Arrangement) -> Finding:
     if normals is None or not all(part.semidefinite for part in parts):
         return finish(UNBUILDABLE, crystallographic=None)
     dependent = any(part.singular for part in parts)
+    tube_like = dependent and not arrangement.given_normals
+    fan = max(part.fan for part in parts)
+    if tube_like and (fan or not all(part.finite for part in parts)):
+        return finish(TUBE, tube=describe_tube(list(parts), fractions, normals, cycles, None))
     if not all(part.finite for part in parts):
-        if dependent and not arrangement.given_normals:
-            return finish(TUBE, tube=describe_tube(list(parts), fractions, normals, cycles, None))
         return finish(OPEN)
+    if fan:
+        where = f"mirrors through one line, at multiples of 180°/{fan:,}"
+        raise TooLarge(where, fan, 2 * fan * 8 * normals.shape[1], MOST_THROUGH_A_LINE, "")
     pieces = [part.roots for part in parts if part.roots is not None]
     frame = region_frame(normals, dependent)
     group = build_group(pieces, generic_point(np.concatenate(pieces), frame), normals, arrangement.letters)
-    if dependent and not arrangement.given_normals:
+    if tube_like:
         tube = describe_tube(list(parts), fractions, normals, cycles, group)
         return finish(TUBE, crystallographic=tube.tiling in ("once", "subdivided"), tube=tube)
     between = None if dependent else _between(parts, fractions, normals)

@@ -118,9 +118,11 @@ def coefficient_signs(matrix: list[list[Fraction]]) -> tuple[int, ...]:
 def definiteness(gram: NDArray[np.float64], fractions: list[list[Fraction | None]]) -> tuple[int, bool]:
     """Rank of a Gram matrix, and whether it is positive semidefinite.
 
-    Where an angle has no closing fraction the decision is made on the double-precision eigenvalues with
-    `CERTAIN` as the limit; otherwise it is exact.
+    Where an angle between three mirrors or more has no closing fraction the decision is made on the
+    double-precision eigenvalues with `CERTAIN` as the limit; otherwise it is exact.
     """
+    if len(gram) == 2:
+        return (1 if gram[0, 1] == -1 else 2), True
     known = [[f for f in row if f is not None] for row in fractions]
     readable = all(len(row) == len(gram) for row in known)
     if readable and len(gram) == 3:

@@ -12,7 +12,8 @@ from fractions import Fraction
 import numpy as np
 from numpy.typing import NDArray
 
-LETTERS = "abcdefghijklmnopqrstuvwxyz"
+LETTERS = "abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ"
+"""One for each mirror of a part, in its order; `mirrorlab.mirrors.witness` puts the typed letters in their place."""
 
 
 class Ring:
@@ -87,14 +88,14 @@ def generate_roots(
             found.append(root)
             fresh.append(word)
 
-    for root, letter in zip(gram2, LETTERS, strict=False):
+    for root, letter in zip(gram2, LETTERS[:n], strict=True):
         meet(root, f":{letter}")
     while fresh and len(found) <= most:
         words, fresh = fresh, []
         stack = np.stack(found[-len(words) :])
         images = stack[:, None] - ring.times(stack[:, :, None, :], gram2[None])
         for row, word in zip(images, words, strict=True):
-            for image, letter in zip(row, LETTERS, strict=False):
+            for image, letter in zip(row, LETTERS[:n], strict=True):
                 meet(image, letter + word)
     complete = not fresh and len(found) <= most
     heights = ring.real(np.stack(found)) / 2

@@ -12,19 +12,22 @@ from mirrorlab.mirrors.families import TOP_RANK
 
 Array = NDArray[np.float64]
 
-MOST_NORMALS = 15
-"""As many as H3 has mirrors; letters after o are kept for walls that were not typed."""
+LETTERS = "abcdefghijklmnoABCDEFGHIJKLMNOPQRSTUVWXYZ"
+"""Names of the typed mirrors, one sign each so that words stay readable; p to z is kept for walls not typed."""
 
-FLAT = 1e-10
-"""A pivot below this counts as zero when normals are made from a Gram matrix: the square root of it, 1e-5, is
-far above the rounding of the pivot and far below any mirror angle a person can type."""
+MOST_NORMALS = len(LETTERS)
+
+FLAT = 1e-12
+"""A pivot below this counts as zero when normals are made from a Gram matrix: it is above the rounding of a pivot
+(about 1e-14 after an angle of half a degree), and its square root, 1e-6, below any mirror angle worth typing."""
 
 AGREED = 1e-14
 """Products of unit normals that agree with their angles to this are left as they are."""
 
-TURNS = 100.0
-"""Settling may move a normal by so many times the misfit of the products; beyond, the angles that were read do
-not belong together and the normals stay as given."""
+TOGETHER = 0.05
+"""Normals that need a turn x to have the angles that were read, where the products are off by y, are at odds with them
+when x² is above this part of y. A misread lean of x out of a plane changes products by x²/2 only; a rounding error
+turns them by about its own size."""
 
 
 class ArrangementError(ValueError):
@@ -49,7 +52,7 @@ def normals_from_gram(gram: Array, rank: int) -> Array:
 def settle(normals: Array, gram: Array, fractions: Fractions) -> Array:
     """Normals turned as little as can be, to have the angles that were read from them.
 
-    Left as they are when an angle was not read, when they agree to the last digits, or when no such turn is near.
+    Left as they are when an angle was not read, or when they agree to the last digits.
 
     Parameters
     ----------
@@ -58,6 +61,11 @@ def settle(normals: Array, gram: Array, fractions: Fractions) -> Array:
     gram : ndarray, shape (n, n)
         Their products by the angles that were read.
     fractions : n by n list of Fraction or None
+
+    Raises
+    ------
+    ArrangementError
+        The angles that were read do not belong together.
     """
     from mirrorlab.mirrors.decide import buildable
 
@@ -65,12 +73,17 @@ def settle(normals: Array, gram: Array, fractions: Fractions) -> Array:
     if off < AGREED or any(f is None for row in fractions for f in row):
         return normals
     rank = buildable(gram, fractions)
-    if rank is None or rank > normals.shape[1]:
-        return normals
-    exact = normals_from_gram(gram, rank)
-    u, _, vt = np.linalg.svd(exact.T @ normals, full_matrices=False)
-    turned = np.asarray(exact @ u @ vt, dtype=np.float64)
-    return turned if float(np.abs(turned - normals).max()) < TURNS * off else normals
+    if rank is not None and rank <= normals.shape[1]:
+        exact = normals_from_gram(gram, rank)
+        u, _, vt = np.linalg.svd(exact.T @ normals, full_matrices=False)
+        turned = np.asarray(exact @ u @ vt, dtype=np.float64)
+        if float(np.abs(turned - normals).max()) ** 2 < TOGETHER * off:
+            return turned
+    msg = (
+        f"{len(normals)} normals: each angle is within the tolerance of a closing fraction, but no mirrors have all "
+        "these angles at once; give more digits or a smaller tolerance"
+    )
+    raise ArrangementError(msg)
 
 
 def unit_rows(normals: ArrayLike) -> Array:

@@ -42,7 +42,7 @@ class Tube:
         Chambers between the mirrors when they tile and the region is bounded.
     moved_families, moved_order, moved_point_group
         The finite group that the same planes make when each is moved to pass through one line or point;
-        None when that one is open too.
+        None when that one is open too, or has more mirrors than are written out.
     moved : ReflectionGroup or None
         That group.
     """

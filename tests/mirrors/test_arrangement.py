@@ -143,7 +143,7 @@ def test_normals_of_any_length_and_their_frame():
         (None, "shape|no table"),
         ([[]], "shape"),
         (np.eye(9), "shape"),
-        (np.ones((16, 3)), "shape"),
+        (np.ones((42, 3)), "shape"),
         ([[0, 0, 0], [1, 0, 0]], "normal 1 of 2"),
         ([[1, 0, 0], [0, math.nan, 0]], "normal 2 of 2"),
         ([[1, 0, 0], [0, math.inf, 0]], "normal 2 of 2"),
@@ -153,6 +153,18 @@ def test_normals_of_any_length_and_their_frame():
 def test_normals_that_make_no_mirrors(normals, match):
     with pytest.raises(ArrangementError, match=match):
         Arrangement.from_normals(normals)
+
+
+def test_many_mirrors_of_one_cut():
+    """All fifteen mirrors of H3 and all twenty-four of F4, given at once."""
+    for name, letters in (("H3", "abcdefghijklmno"), ("F4", "abcdefghijklmnoABCDEFGHI")):
+        whole = Arrangement.from_family(name).finding().group
+        arrangement = Arrangement.from_normals(whole.mirrors)
+        finding = arrangement.finding()
+        assert "".join(arrangement.letters) == letters
+        assert finding.families == (name,)
+        assert finding.mirror_count == len(whole.mirrors)
+        assert set(finding.group.letters) <= set(letters)
 
 
 def test_tolerance_of_given_normals():

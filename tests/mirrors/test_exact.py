@@ -13,6 +13,7 @@ import sympy
 from hypothesis import given
 from hypothesis import strategies as st
 
+from mirrorlab.mirrors import Arrangement
 from mirrorlab.mirrors.exact import coefficient_signs, cosine_scaled, definiteness, triangle_rank
 
 PAIRS = (1, 3, 6, 10, 15, 21, 28)
@@ -188,6 +189,15 @@ def test_definiteness_without_a_fraction_goes_by_eigenvalues():
     assert definiteness(square, inner) == (3, True)
     bent = np.full((3, 3), -0.9) + 1.9 * np.eye(3)
     assert definiteness(bent, [[None] * 3] * 3)[1] is False
+
+
+@pytest.mark.parametrize("degrees", ["0.0010000001", "0.4123(1)", "179.9990001"])
+def test_two_mirrors_that_are_nearly_parallel_are_not_parallel(degrees):
+    finding = Arrangement.from_angles([degrees]).finding()
+    assert (finding.kind, finding.rank) == ("open", 2)
+    normals = Arrangement.from_angles([degrees]).normals
+    assert np.allclose(np.linalg.norm(normals, axis=1), 1, atol=1e-12)
+    assert definiteness(np.array([[1.0, -1.0], [-1.0, 1.0]]), [[F(1), F(0)], [F(0), F(1)]]) == (1, True)
 
 
 def test_definiteness_of_more_than_eight_mirrors():

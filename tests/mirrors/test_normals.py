@@ -7,7 +7,7 @@ from fractions import Fraction as F
 import numpy as np
 import pytest
 
-from mirrorlab.mirrors import Arrangement
+from mirrorlab.mirrors import Arrangement, ArrangementError
 from mirrorlab.mirrors.normals import normals_from_gram, settle
 
 
@@ -45,10 +45,31 @@ def test_clean_normals_stay_as_they_are():
     assert settle(given, given @ given.T, [[F(1), F(1, 2)], [F(1, 2), F(1)]]) is given
 
 
-def test_angles_that_do_not_belong_together_leave_normals_as_given():
-    given = np.eye(3)
+def test_angles_that_do_not_belong_together():
     table = [[F(1), F(1, 3), F(1, 3)], [F(1, 3), F(1), F(1, 4)], [F(1, 3), F(1, 4), F(1)]]
     gram = -np.cos(np.pi * np.array(table, dtype=float))
-    assert settle(given, gram, table) is given
-    unread = [[F(1), None], [None, F(1)]]
-    assert settle(given[:2], np.array([[1.0, 0.1], [0.1, 1.0]]), unread) is not None
+    with pytest.raises(ArrangementError, match="no mirrors have all these angles at once"):
+        settle(np.eye(3), gram, table)
+
+
+@pytest.mark.parametrize("lean", [2e-5, 1e-5])
+def test_planes_that_lean_a_little_out_of_a_line_are_not_taken_for_a_fan(lean):
+    given = [[1, 0, 0], [-0.5, 3**0.5 / 2, 0], [0.5, 3**0.5 / 2, lean]]
+    with pytest.raises(ArrangementError, match="give more digits or a smaller tolerance"):
+        Arrangement.from_normals(given)
+    assert Arrangement.from_normals(given, tolerance=1e-12).finding().kind == "open"
+
+
+def test_an_unread_angle_leaves_normals_as_given():
+    given = np.array([[1.0, 0], [np.cos(1.0), np.sin(1.0)]])
+    assert settle(given, given @ given.T + 1e-10, [[F(1), None], [None, F(1)]]) is given
+
+
+@pytest.mark.parametrize("m", [7, 90, 360])
+def test_settling_narrow_wedges(m):
+    exact = Arrangement.from_angles([F(1, m), "90", "90"])
+    rng = np.random.default_rng(m)
+    rough = exact.normals + 2e-10 * rng.normal(size=(3, 3))
+    arrangement = Arrangement.from_normals(rough)
+    assert arrangement.finding().order == 4 * m
+    assert np.abs(arrangement.normals @ arrangement.normals.T - exact.gram).max() < 1e-14

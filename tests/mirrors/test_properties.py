@@ -236,6 +236,7 @@ def test_flat_sets_of_large_denominators_are_decided_in_time(size):
     from mirrorlab.angles import AngleSettings
 
     start = time.process_time()
-    with pytest.raises(TooLarge, match="mirrors through one line"):
-        Arrangement.from_angles(angles, AngleSettings(max_denominator=100_000)).finding()
+    finding = Arrangement.from_angles(angles, AngleSettings(max_denominator=100_000)).finding()
+    assert (finding.kind, finding.tube.tiling, finding.tube.moved) == ("tube", "overlap", None)
+    assert finding.sentence
     assert time.process_time() - start < LONG
