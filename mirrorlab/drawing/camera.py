@@ -15,8 +15,14 @@ Array = NDArray[np.float64]
 FIELD = 26.0
 """Angle of view in degrees: near enough to show depth, far enough that a ball stays round."""
 
-MARGIN = 1.06
+MARGIN = 1.01
 """Room around the drawing, as a factor."""
+
+ROOM = 15.0
+"""Pixels left free at each edge: half of a letter's tag, whose middle may lie at the edge of the drawing."""
+
+MOST_ROOM = 0.12
+"""Most of a small picture's side that may be left free at each edge."""
 
 OFF_CENTRE = 0.08
 """A drawing whose middle lies this near to the origin, as a part of its size, is turned about the origin."""
@@ -44,6 +50,8 @@ class Camera:
         Shift of the target from the middle, in half short sides of the picture; x to the right, y upwards.
     field : float
         Angle of view in degrees; 0 for a parallel view.
+    room : float
+        Pixels left free at each edge at zoom 1.
     """
 
     azimuth: float = -60.0
@@ -53,6 +61,7 @@ class Camera:
     zoom: float = 1.0
     pan: tuple[float, float] = (0.0, 0.0)
     field: float = FIELD
+    room: float = ROOM
 
     @property
     def radius(self) -> float:
@@ -79,7 +88,8 @@ class Camera:
 
     def _scale(self, width: float, height: float) -> float:
         """Pixels a length at the target's distance takes (perspective: at distance 1 from the eye)."""
-        fit = min(0.5 * width / self.extent[0], 0.5 * height / self.extent[1]) * self.zoom
+        room = min(self.room, MOST_ROOM * width, MOST_ROOM * height)
+        fit = min((0.5 * width - room) / self.extent[0], (0.5 * height - room) / self.extent[1]) * self.zoom
         if self.field <= 0:
             return fit
         # A sphere is seen a little larger than its equator: fit its outline, not its equator.

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import os
+import sys
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -85,18 +87,18 @@ def save_picture(
     ensure_application()
     prepared = Prepared(drawing)
     scale = max(SMALLEST_SCALE, min(width, height) / NOMINAL_SIDE)
-    sight = Sight(camera or home_camera(drawing), width, height, look, scale)
+    seen = camera or home_camera(drawing)
+    sight = Sight(replace(seen, room=seen.room * scale), width, height, look, scale)
     make = {".png": _png, ".svg": _svg, ".pdf": _pdf}[ending]
     return write_whole(target, make(prepared, sight, ground))
 
 
 def ensure_application() -> None:
-    """Have a Qt application: fonts need one. Without a screen it is Qt's offscreen platform."""
+    """Have a Qt application: fonts need one. It needs no screen, and one that does not answer would end the process."""
     if QGuiApplication.instance() is not None:
         return
-    if not (os.environ.get("DISPLAY") or os.environ.get("WAYLAND_DISPLAY")) and os.name == "posix":
-        os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
-    ensure_application.kept = QGuiApplication([])  # type: ignore[attr-defined]
+    screenless = ["-platform", "offscreen"] if sys.platform.startswith("linux") else []
+    ensure_application.kept = QGuiApplication(["mirrorlab", *screenless])  # type: ignore[attr-defined]
 
 
 def paint_image(

@@ -53,7 +53,7 @@ def test_matrices_agree_with_project(azimuth, elevation, size, field, zoom, pan)
 
 @given(ANGLE, TILT)
 def test_all_of_a_ball_fits(azimuth: float, elevation: float):
-    camera = Camera(azimuth, elevation, extent=(1.0, 1.0))
+    camera = Camera(azimuth, elevation, extent=(1.0, 1.0), room=0.0)
     rng = np.random.default_rng(1)
     points = rng.normal(size=(4000, 3))
     points /= np.linalg.norm(points, axis=1, keepdims=True)
@@ -104,7 +104,7 @@ def test_home_of_a_flat_drawing_looks_straight_on_and_fits():
     seen = camera.project(line.points, 400, 300)
     assert (seen[:, 0] >= 0).all()
     assert (seen[:, 0] <= 400).all()
-    assert seen[1, 0] - seen[0, 0] > 360, "the longer side nearly fills the width"
+    assert 355 < seen[1, 0] - seen[0, 0] <= 370, "the longer side fills the width, but for room at the edges"
     assert seen[2, 1] < seen[1, 1], "y is up"
     assert seen[1, 0] > seen[0, 0], "x is to the right"
 

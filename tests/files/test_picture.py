@@ -7,6 +7,7 @@ import re
 import subprocess
 import sys
 import zlib
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -20,7 +21,13 @@ from mirrorlab.drawing.camera import home_camera
 from mirrorlab.drawing.look import DARK_LOOK, LIGHT_LOOK, LookError, rgb
 from mirrorlab.drawing.model import Drawing, Role
 from mirrorlab.drawing.space import space_drawing
-from mirrorlab.files.picture import PictureError, ensure_application, paint_image, save_picture
+from mirrorlab.files.picture import (
+    SMALLEST_SCALE,
+    PictureError,
+    ensure_application,
+    paint_image,
+    save_picture,
+)
 from mirrorlab.files.whole import FileError
 
 
@@ -50,6 +57,7 @@ def test_what_is_where_in_a_png(drawing: Drawing, tmp_path: Path, look):
     data = pixels(image)
     assert near(data[2, 2], look.ground, 0.01)
     camera = home_camera(drawing)
+    camera = replace(camera, room=camera.room * SMALLEST_SCALE)
     seed = next(p for p in drawing.points if p.role is Role.SEED).positions[0]
     x, y, _ = camera.project(seed, *size).round().astype(int)
     assert near(data[y, x], look.seed, 0.02)
