@@ -114,6 +114,8 @@ class FindingMark(QWidget):
 
     def set_kind(self, kind: str) -> None:
         """Show the mark of another kind."""
+        if kind == self._kind:
+            return
         self._kind = kind
         self.setAccessibleName(kind)
         self.update()
@@ -142,6 +144,8 @@ class ReadingMark(QWidget):
 
     def set_mark(self, mark: str) -> None:
         """Show another mark."""
+        if mark == self._mark and self.toolTip():
+            return
         self._mark = mark
         self.setToolTip(mark)
         self.setAccessibleName(mark)
@@ -172,8 +176,9 @@ class LetterDisc(QWidget):
 
     def set_chosen(self, chosen: bool) -> None:
         """Show the mirror as picked."""
-        self.chosen = chosen
-        self.update()
+        if chosen != self.chosen:
+            self.chosen = chosen
+            self.update()
 
     def paintEvent(self, event: QPaintEvent) -> None:
         theme = theming().theme

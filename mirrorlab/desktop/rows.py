@@ -119,6 +119,17 @@ class RowsModel(QAbstractTableModel):
         """Which of the rows as given stands at this place of the table."""
         return row if self._order is None else int(self._order[row])
 
+    def text_at(self, row: int, column: int) -> str:
+        """What stands in a cell."""
+        value = self.values(column)[self.source_row(row)]
+        show = self._columns[column].show
+        return show(value) if show else plain(value)
+
+    def alignment_at(self, column: int) -> int:
+        """Texts stand at the left, numbers at the right."""
+        side = Qt.AlignmentFlag.AlignLeft if self._columns[column].text else Qt.AlignmentFlag.AlignRight
+        return int(side | Qt.AlignmentFlag.AlignVCenter)
+
     def key_of(self, row: int) -> Key | None:
         """What the row at this place stands for."""
         if self._keys is None or not 0 <= row < self._count:
@@ -147,13 +158,10 @@ class RowsModel(QAbstractTableModel):
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         if not index.isValid():
             return None
-        column = self._columns[index.column()]
         if role == Qt.ItemDataRole.DisplayRole:
-            value = self.values(index.column())[self.source_row(index.row())]
-            return column.show(value) if column.show else plain(value)
+            return self.text_at(index.row(), index.column())
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            side = Qt.AlignmentFlag.AlignLeft if column.text else Qt.AlignmentFlag.AlignRight
-            return side | Qt.AlignmentFlag.AlignVCenter
+            return self.alignment_at(index.column())
         if role == KEY_ROLE:
             return self.key_of(index.row())
         if role == SORT_ROLE:
@@ -171,8 +179,7 @@ class RowsModel(QAbstractTableModel):
         if role == Qt.ItemDataRole.ToolTipRole:
             return column.hint or None
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            side = Qt.AlignmentFlag.AlignLeft if column.text else Qt.AlignmentFlag.AlignRight
-            return side | Qt.AlignmentFlag.AlignVCenter
+            return self.alignment_at(section)
         return None
 
     def sort(self, column: int, order: Qt.SortOrder = Qt.SortOrder.AscendingOrder) -> None:

@@ -8,7 +8,10 @@ from mirrorlab.desktop.evidence import SUGGESTIONS_JOB
 from mirrorlab.desktop.parts import Elided, button, label
 from mirrorlab.desktop.work import Work
 
-QUIET_JOBS = frozenset({SUGGESTIONS_JOB})
+LIBRARIES_JOB = "libraries"
+"""Name of the job that loads a bench's libraries."""
+
+QUIET_JOBS = frozenset({SUGGESTIONS_JOB, LIBRARIES_JOB})
 """Jobs that take a second at most and say so where their result will stand."""
 
 REST = "Type an angle; drag the seed; point at an image or a chamber to read its word."

@@ -130,7 +130,10 @@ class SymbolText(QWidget):
 
     def set_runs(self, runs: Iterable[Run]) -> None:
         """Show another symbol; nothing at all hides the widget."""
-        self._runs = tuple(runs)
+        wanted = tuple(runs)
+        if wanted == self._runs and wanted:
+            return
+        self._runs = wanted
         self.setVisible(bool(self._runs))
         self.setAccessibleName(as_spoken(self._runs))
         self.updateGeometry()

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QSettings, QSize, Qt
+from PySide6.QtCore import QCoreApplication, QEvent, QSettings, QSize, Qt
 from PySide6.QtGui import QCloseEvent, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QMainWindow, QSplitter, QVBoxLayout, QWidget
 
@@ -99,6 +99,8 @@ class Window(QMainWindow):
         self.filing.says.connect(self.status.say)
         self.filing.failed.connect(self.notice.warn)
         self.document.name_changed.connect(self._show_title)
+        for signal in (self.document.arrangement_changed, self.document.seed_changed):
+            signal.connect(self._settle)
         self.document.undo_stack.cleanChanged.connect(self._show_title)
 
     def _welcome(self, bench: Bench) -> None:
@@ -106,6 +108,10 @@ class Window(QMainWindow):
         bench.picture_wanted.connect(self.stage.show_picture)
         if isinstance(bench, PointsBench):
             bench.export_wanted.connect(self.filing.export)
+
+    def _settle(self) -> None:
+        """Lay out what changed before it is painted: else most of the window is painted twice at a keystroke."""
+        QCoreApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest.value)
 
     def _fold(self, folded: bool) -> None:
         if folded:
