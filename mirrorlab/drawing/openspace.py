@@ -46,20 +46,33 @@ def first_images(normals: Array, seed: Array, count: int) -> tuple[Array, Ints, 
     depth : ndarray of int, shape (N,)
     parent : ndarray of int, shape (N,)
     """
-    points, depth, parent = [seed], [0], [0]
-    seen = {tuple(np.round(seed / SAME).astype(np.int64).tolist())}
-    at = 0
-    while at < len(points) and len(points) < count:
-        for normal in normals:
-            image = points[at] - 2 * (points[at] @ normal) * normal
-            mark = tuple(np.round(image / SAME).astype(np.int64).tolist())
-            if mark not in seen and len(points) < count:
+    points, depth, parent = [seed[None]], [np.zeros(1, dtype=np.int64)], [np.zeros(1, dtype=np.int64)]
+    seen = {_mark(seed)}
+    total, first = 1, 0
+    while total < count and len(points[-1]):
+        # All images of one depth at once, each in every mirror, in the order in which a person would write them.
+        heights = points[-1] @ normals.T
+        images = (points[-1][:, None] - 2 * heights[..., None] * normals).reshape(-1, len(seed))
+        kept = []
+        for k, mark in enumerate(_marks(images)):
+            if mark not in seen and total + len(kept) < count:
                 seen.add(mark)
-                points.append(image)
-                depth.append(depth[at] + 1)
-                parent.append(at)
-        at += 1
-    return np.array(points), np.array(depth), np.array(parent)
+                kept.append(k)
+        which = np.array(kept, dtype=np.int64)
+        parent.append(first + which // len(normals))
+        depth.append(np.full(len(kept), len(points)))
+        first, total = total, total + len(kept)
+        points.append(images[which])
+    return np.concatenate(points), np.concatenate(depth), np.concatenate(parent)
+
+
+def _mark(point: Array) -> tuple[int, ...]:
+    return _marks(point[None])[0]
+
+
+def _marks(points: Array) -> list[tuple[int, ...]]:
+    """Numbers by which two images are known to be one."""
+    return [tuple(row) for row in np.round(points / SAME).astype(np.int64).tolist()]
 
 
 def open_drawing(arrangement: Arrangement, finding: Finding, options: SpaceOptions) -> Drawing:

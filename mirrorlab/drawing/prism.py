@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 import numpy as np
@@ -22,7 +23,7 @@ FAR = 60.0
 """A region within this half side is bounded; none of three mirrors with angles of a degree or more is larger."""
 
 SIDES = 96
-"""Sides of the round window through which images that tile are seen."""
+"""Straight pieces of the rim of the round window through which images that tile are seen."""
 
 STRIP = 2.0
 """Half length of a region that has no end of its own, e.g. between two parallel mirrors."""
@@ -188,17 +189,42 @@ def _cells(outline: Array, moves: Moves, bounded: bool) -> tuple[tuple[Faces, ..
 
 def _within_window(loop: Array) -> Array:
     """The part of a convex loop that is seen through the round window."""
-    if (np.linalg.norm(loop, axis=1) <= WINDOW * np.cos(np.pi / SIDES)).all():
+    if (np.einsum("ij,ij->i", loop, loop) <= WINDOW**2).all():
         return loop
-    t = 2 * np.pi * np.arange(SIDES) / SIDES
-    sides = np.stack([np.cos(t), np.sin(t)], axis=1)
-    room = WINDOW * np.cos(np.pi / SIDES)
-    # Of the sides that cut the loop, only those near it matter, so few cuts are made.
-    for side in sides[(loop @ sides.T > room).any(axis=0)]:
-        loop = cut_loop(loop, room - loop @ side)
-        if len(loop) < 3:
-            break
-    return loop
+    corners = loop.tolist()
+    area = sum(p[0] * q[1] - p[1] * q[0] for p, q in zip(corners, corners[1:] + corners[:1], strict=True))
+    points: list[tuple[float, float]] = []
+    leaves: list[bool] = []
+    for (px, py), (qx, qy) in zip(corners, corners[1:] + corners[:1], strict=True):
+        dx, dy = qx - px, qy - py
+        a, b, c = dx * dx + dy * dy, px * dx + py * dy, px * px + py * py - WINDOW**2
+        root = b * b - a * c
+        if root <= 0:
+            continue
+        t0, t1 = max(0.0, (-b - math.sqrt(root)) / a), min(1.0, (-b + math.sqrt(root)) / a)
+        if t0 >= t1:
+            continue
+        points += [(px + t0 * dx, py + t0 * dy), (px + t1 * dx, py + t1 * dy)]
+        leaves += [False, t1 < 1.0]
+    if not points:
+        return loop[:0]
+    seen: list[tuple[float, float]] = []
+    for k, point in enumerate(points):
+        seen.append(point)
+        if leaves[k]:
+            seen += _along_rim(point, points[(k + 1) % len(points)], area > 0)
+    result = np.array(seen)
+    return result[np.linalg.norm(result - np.roll(result, 1, axis=0), axis=1) > 1e-9]
+
+
+def _along_rim(start: tuple[float, float], end: tuple[float, float], left: bool) -> list[tuple[float, float]]:
+    """Points between two of the window's rim, to the left or to the right about its middle."""
+    low = math.atan2(start[1], start[0])
+    turn = (math.atan2(end[1], end[0]) - low) % (2 * math.pi)
+    turn = turn if left else turn - 2 * math.pi
+    count = int(abs(turn) * SIDES / (2 * math.pi))
+    angles = [low + turn * (k + 1) / (count + 1) for k in range(count)]
+    return [(WINDOW * math.cos(t), WINDOW * math.sin(t)) for t in angles]
 
 
 def _overlap(
