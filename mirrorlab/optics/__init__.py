@@ -42,6 +42,7 @@ _HOMES: dict[str, str] = {
     "TraceCancelled": "tracer",
     "make_scene": "scene",
     "preview_size": "tracer",
+    "spot_at_heights": "scene",
     "trace": "tracer",
     "warm_up": "tracer",
     "with_ball": "scene",

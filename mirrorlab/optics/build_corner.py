@@ -88,7 +88,9 @@ def corner(
         inner = axes @ np.linalg.solve(normals, np.ones(3))
         inner = inner / inner[2] * 0.45 * deep
         clear = float((normals @ axes.T @ inner).min())
-        place = ObjectPlace(inner, np.array([1.0, 0, 0]), np.array([0, 1.0, 0]), clear, clear, "ball", True)
+        place = ObjectPlace(
+            inner, np.array([1.0, 0, 0]), np.array([0, 1.0, 0]), 1.3 * clear, 1.3 * clear, "ball", True
+        )
         ball = float(np.linalg.norm(inner)) + clear
     eye = centre * deep
     field = field_for(ball, float(np.linalg.norm(eye)))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
 
 import numpy as np
@@ -162,6 +163,30 @@ def with_card(assembly: Assembly, point: Array | None = None, size: float | None
         inside=True,
     )
     return assembly.with_place(place)
+
+
+def spot_at_heights(assembly: Assembly, heights: Sequence[float]) -> Array:
+    """Return the point with these distances from the mirrors, in millimetres, shape (3,).
+
+    In a wedge or tube the first two heights say where it is in the cross-section, and it is put on the object's
+    level, or a third of the way up.
+
+    Raises
+    ------
+    AssemblyError
+        Another number of heights than mirrors, or one that is not over zero.
+    """
+    values = np.array(heights, dtype=np.float64)
+    if values.shape != (len(assembly.panels),) or not np.isfinite(values).all() or values.min() <= 0:
+        msg = f"heights {list(heights)}: give {len(assembly.panels)}, each over zero, in mm"
+        raise AssemblyError(msg, "heights")
+    if np.linalg.matrix_rank(assembly.normals, tol=1e-9) == 3:
+        return np.asarray(np.linalg.solve(assembly.normals[:3], values[:3] + assembly.offsets[:3]))
+    low = min(float(panel.outline[:, 2].min()) for panel in assembly.panels)
+    high = max(float(panel.outline[:, 2].max()) for panel in assembly.panels)
+    flat = np.linalg.solve(assembly.normals[:2, :2], values[:2] + assembly.offsets[:2])
+    level = assembly.place.centre[2] if assembly.place.inside else low + (high - low) / 3
+    return np.array([flat[0], flat[1], level])
 
 
 def _between(assembly: Assembly, point: Array) -> Array:
