@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import argparse
 import importlib
+import io
 import os
 import re
 import sys
@@ -35,17 +36,39 @@ class Parser(argparse.ArgumentParser):
 def main(argv: Sequence[str] | None = None) -> int:
     """Run the command line; returns the exit status."""
     words = [_held(word) for word in (sys.argv[1:] if argv is None else argv)]
+    _print_anywhere()
     try:
-        return _run(words)
-    except BrokenPipeError:  # the reader of a pipe left: nothing more to say, and no traceback at exit
+        status = _run(words)
+        if sys.stdout is not None:
+            sys.stdout.flush()  # a reader that left is met here, not when the interpreter ends
+    except BrokenPipeError:
         os.dup2(os.open(os.devnull, os.O_WRONLY), 1)
         return 0
     except KeyboardInterrupt:
-        print("mirrorlab: stopped", file=sys.stderr)
+        print("\nmirrorlab: stopped", file=sys.stderr)
         return INTERRUPTED
+    except MemoryError:
+        print("mirrorlab: more memory is needed than there is", file=sys.stderr)
+        return BAD_INPUT
+    except ImportError as error:
+        if ".so" not in str(error):
+            raise
+        from mirrorlab.commands.screen import BASE
+
+        packages = " ".join(sorted(BASE.values()))
+        print(f"mirrorlab: Qt cannot be loaded ({error}); on Debian: apt install {packages}", file=sys.stderr)
+        return BAD_INPUT
     except (ValueError, OSError) as error:
         print(f"mirrorlab: {' '.join(str(error).split())}", file=sys.stderr)
         return BAD_INPUT
+    return status
+
+
+def _print_anywhere() -> None:
+    """Let a terminal or file that has no π or ² get a stand-in for it, rather than end the answer half-way."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, io.TextIOWrapper) and stream.errors == "strict":
+            stream.reconfigure(errors="backslashreplace")
 
 
 def _held(word: str) -> str:
@@ -78,14 +101,24 @@ def _run(words: list[str]) -> int:
 
 
 def open_window(path: str | None) -> int:
-    """Open the window; without a screen, say why and print the first sample instead."""
+    """Open the window; where none can open, say why and print the file's or the first sample's answer instead."""
     from mirrorlab.commands.screen import why_no_window
 
+    if path is not None and not os.path.exists(path):
+        names = ", ".join(verb.name for verb in VERBS)
+        msg = f'"{path}" is neither a file nor a verb; verbs are {names}'
+        raise ValueError(msg)
     reason = why_no_window()
     if reason is None:
-        from mirrorlab.desktop.app import run
+        try:
+            from mirrorlab.desktop.app import run
+        except ImportError as error:  # a library that Qt needs and the look beforehand did not know
+            reason = f"Qt cannot be loaded ({error})"
+        else:
+            from mirrorlab.commands.interrupt import interrupts, quit_window
 
-        return run(path)
+            with interrupts(quit_window):
+                return run(path)
     from mirrorlab.commands.fallback import print_instead
 
     return print_instead(path, reason)

@@ -8,10 +8,16 @@ import sys
 from pathlib import Path
 from typing import Any
 
-from mirrorlab.commands.output import UsageError, add_mirrors, arrangement_of, numbers
+from mirrorlab.commands.output import (
+    UsageError,
+    add_mirrors,
+    add_seed,
+    arrangement_and_seed,
+    seed_of,
+)
 from mirrorlab.drawing.model import Drawing
+from mirrorlab.mirrors import Arrangement, Finding, Orbit
 
-PICTURES = ("space", "flat", "stereogram", "chamber", "plane")
 MESHES = (".glb", ".stl", ".obj")
 
 EXAMPLES = """examples:
@@ -35,11 +41,12 @@ def add_draw(subparsers: Any) -> None:
     )
     add_mirrors(parser)
     parser.add_argument("--out", required=True, metavar="F", help="the file to write")
-    parser.add_argument("--picture", choices=PICTURES, help="which picture; by default space, or plane above rank 3")
-    parser.add_argument("--heights", type=numbers, metavar="1,2,3", help="seed by its distances from the mirrors")
-    parser.add_argument("--place", metavar="NAME", help="seed by a named place")
-    parser.add_argument("--size", default="1200x1200", metavar="WxH", help="pixels")
-    parser.add_argument("--look", choices=("light", "dark"), default="light")
+    parser.add_argument(
+        "--picture", choices=tuple(MAKERS), help="which picture; by default space, or plane above rank 3"
+    )
+    add_seed(parser)
+    parser.add_argument("--size", default="1200x1200", metavar="WxH", help="pixels (1200x1200)")
+    parser.add_argument("--look", choices=("light", "dark"), default="light", help="tints (light)")
     parser.set_defaults(run=run)
 
 
@@ -58,33 +65,69 @@ def run(args: argparse.Namespace) -> int:
         from mirrorlab.files.picture import save_picture
 
         written = save_picture(drawing, args.out, (int(match[1]), int(match[2])), args.look)
+    for note in drawing.notes:
+        print(note, file=sys.stderr)
     print(f"wrote {written}", file=sys.stderr)
     return 0
 
 
 def drawing_of(args: argparse.Namespace) -> Drawing:
-    """The drawing that the words ask for."""
-    arrangement = arrangement_of(args)
+    """The drawing that the words ask for.
+
+    Raises
+    ------
+    UsageError
+        There is no such picture of these mirrors.
+    """
+    arrangement, kept = arrangement_and_seed(args)
     finding = arrangement.finding()
-    orbit = None
-    if args.heights is not None or args.place is not None:
-        orbit = arrangement.orbit(heights=args.heights, place=args.place)
+    seed = seed_of(args, kept)
+    asked = seed_of(
+        args, {}
+    )  # a seed asked for where nothing closes is refused; one that a file keeps is passed over
+    orbit = arrangement.orbit(**seed) if asked or (seed and finding.group is not None) else None
     picture = args.picture or ("plane" if finding.rank > 3 and finding.group is not None else "space")
-    if picture == "plane":
-        from mirrorlab.drawing.coxeterplane import coxeter_plane_drawing
+    if picture == "flat" and finding.rank > 2:
+        msg = (
+            f"rank {finding.rank} has no flat view; that is of mirrors through one line. Take --picture space"
+        )
+        raise UsageError(msg)
+    drawing = MAKERS[picture](arrangement, finding, orbit)
+    if not (drawing.faces or drawing.lines or drawing.points):
+        msg = f"nothing to draw: {' '.join(drawing.notes) or drawing.title}"
+        raise UsageError(msg)
+    return drawing
 
-        return coxeter_plane_drawing(arrangement, finding, orbit)
-    if picture == "chamber":
-        from mirrorlab.drawing.chambermap import chamber_map
 
-        return chamber_map(arrangement, finding, orbit)
-    if picture == "stereogram":
-        from mirrorlab.drawing.stereogram import arrangement_stereogram
+def _space(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
+    from mirrorlab.drawing.space import space_drawing
 
-        return arrangement_stereogram(arrangement, finding, orbit)
+    return space_drawing(arrangement, finding, orbit)
+
+
+def _flat(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
     from mirrorlab.drawing.space import SpaceOptions, space_drawing
 
-    return space_drawing(arrangement, finding, orbit, SpaceOptions(flat=picture == "flat"))
+    return space_drawing(arrangement, finding, orbit, SpaceOptions(flat=True))
 
 
+def _stereogram(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
+    from mirrorlab.drawing.stereogram import arrangement_stereogram
+
+    return arrangement_stereogram(arrangement, finding, orbit)
+
+
+def _chamber(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
+    from mirrorlab.drawing.chambermap import chamber_drawing
+
+    return chamber_drawing(arrangement, finding, orbit)
+
+
+def _plane(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
+    from mirrorlab.drawing.coxeterplane import coxeter_drawing
+
+    return coxeter_drawing(arrangement, finding, orbit)
+
+
+MAKERS = {"space": _space, "flat": _flat, "stereogram": _stereogram, "chamber": _chamber, "plane": _plane}
 ADD = {"draw": add_draw}

@@ -6,9 +6,19 @@ import argparse
 import sys
 from typing import Any
 
-from mirrorlab.commands.output import add_mirrors, arrangement_of, numbers, print_json, print_table
+from mirrorlab.commands.output import (
+    UsageError,
+    add_mirrors,
+    add_seed,
+    arrangement_and_seed,
+    numbers,
+    print_json,
+    print_table,
+    seed_of,
+)
 from mirrorlab.mirrors import Finding, Orbit
 from mirrorlab.mirrors.orbit import MOST_IMAGES
+from mirrorlab.mirrors.walk import Progress
 
 SHOWN = 24
 """Images printed when no file is asked for; all of them go into a file or JSON."""
@@ -32,16 +42,11 @@ def add_orbit(subparsers: Any) -> None:
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
     add_mirrors(parser)
-    seed = parser.add_mutually_exclusive_group(required=True)
-    seed.add_argument(
-        "--heights", type=numbers, metavar="1,2,3", help="distances of the seed from a, b, c, …"
-    )
-    seed.add_argument("--point", type=numbers, metavar="x,y,z", help="coordinates of the seed")
-    seed.add_argument(
-        "--place", metavar="NAME", help='a named place: centre, "wall a", "edge ab", "corner bc"'
-    )
+    add_seed(parser)
     parser.add_argument("--rotations", action="store_true", help="only images of the rotation subgroup")
-    parser.add_argument("--limit", type=int, default=MOST_IMAGES, help="refuse more images than this")
+    parser.add_argument(
+        "--limit", type=int, default=MOST_IMAGES, metavar="N", help="refuse more images (2,000,000)"
+    )
     parser.add_argument("--csv", metavar="F", help="write all images to a CSV file, with its metadata file")
     parser.add_argument("--npy", metavar="F", help="write the coordinates to a NumPy file")
     parser.add_argument(
@@ -56,13 +61,15 @@ def add_orbit(subparsers: Any) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Make the images; print or write them."""
-    arrangement = arrangement_of(args)
+    arrangement, kept = arrangement_and_seed(args)
+    seed = seed_of(args, kept)
+    if not seed:
+        msg = "say where the seed is: --heights, --point or --place"
+        raise UsageError(msg)
     finding = arrangement.finding()
     orbit = arrangement.orbit(
-        heights=args.heights,
-        point=args.point,
-        place=args.place,
-        rotations=args.rotations,
+        **seed,
+        rotations=args.rotations or (args.file is not None and bool(kept.get("rotations"))),
         limit=args.limit,
         progress=_progress(),
     )
@@ -82,13 +89,14 @@ def run(args: argparse.Namespace) -> int:
     if args.json:
         print_json(orbit_dict(orbit, finding))
     else:
-        print_orbit(orbit, finding, 0 if written else SHOWN)
+        print(f"{finding.sentence}\n")
+        print_orbit(orbit, 0 if written else SHOWN)
     for path in written:
         print(f"wrote {path}", file=sys.stderr)
     return 0
 
 
-def _progress():  # type: ignore[no-untyped-def]
+def _progress() -> Progress | None:
     """Progress on standard error when a person watches and the orbit is long."""
     if not sys.stderr.isatty():
         return None
@@ -116,13 +124,15 @@ def orbit_dict(orbit: Orbit, finding: Finding) -> dict[str, Any]:
     }
 
 
-def print_orbit(orbit: Orbit, finding: Finding, shown: int) -> None:
+def print_orbit(orbit: Orbit, shown: int) -> None:
     """The orbit for a person, with at most `shown` images."""
     from mirrorlab.files.orbit_table import coordinate_names
 
-    print(finding.sentence)
-    print(f"\n{len(orbit):,} images; stabiliser {orbit.stabiliser} of order {orbit.stabiliser_order}")
+    site = orbit.stabiliser_symbol
+    symbol = f" ({site.hermann_mauguin})" if site is not None and orbit.stabiliser != "1" else ""
+    print(f"{len(orbit):,} images; stabiliser {orbit.stabiliser}{symbol} of order {orbit.stabiliser_order}")
     print(f"frame: {orbit.frame}")
+    print("seed: " + "  ".join(f"{round(value, 12) + 0.0:.6g}" for value in orbit.seed))
     if orbit.folded:
         times = f"{orbit.folded} reflection{'s' if orbit.folded > 1 else ''}"
         print(f"the seed lay outside the chamber; {times} brought it in")
@@ -131,10 +141,11 @@ def print_orbit(orbit: Orbit, finding: Finding, shown: int) -> None:
     if not shown:
         return
     names = coordinate_names(orbit.points.shape[1])
+    words = orbit.words()
     rows = [("image", *names, "parity", "depth", "word")]
     for k in range(min(shown, len(orbit))):
-        coordinates = [f"{value + 0.0:+.6f}" for value in orbit.points[k]]
-        rows.append((str(k + 1), *coordinates, str(orbit.parity[k]), str(orbit.depth[k]), orbit.words()[k]))
+        coordinates = [f"{round(value, 6) + 0.0:.6f}" for value in orbit.points[k]]
+        rows.append((str(k + 1), *coordinates, str(orbit.parity[k]), str(orbit.depth[k]), words[k]))
     print()
     print_table(rows)
     if len(orbit) > shown:

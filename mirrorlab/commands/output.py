@@ -4,12 +4,15 @@ from __future__ import annotations
 
 import argparse
 import json
+import re
 import sys
 from collections.abc import Mapping, Sequence
 from typing import Any
 
 from mirrorlab.angles import AngleSettings, split_angles
 from mirrorlab.mirrors import Arrangement
+
+SEED_WAYS = ("heights", "point", "place")
 
 
 class UsageError(ValueError):
@@ -32,52 +35,113 @@ def numbers(text: str) -> list[float]:
 
 def add_mirrors(parser: argparse.ArgumentParser) -> None:
     """Add the ways to say which mirrors are meant."""
-    parser.add_argument("angles", nargs="*", metavar="ANGLE", help="angles pair by pair: 12, 13, …, 23, …")
+    parser.add_argument("angles", nargs="*", metavar="ANGLE", help="angles pair by pair: ab, ac, …, bc, …")
     parser.add_argument("--family", metavar="NAME", help="walls of a named group: E7, A1xI2(5)")
     parser.add_argument("--file", metavar="FILE", help="an arrangement file")
     parser.add_argument(
         "--normals", metavar="x,y,z", nargs="+", type=numbers, help="mirrors through one point"
     )
     parser.add_argument(
-        "--max-denominator", type=int, default=360, metavar="M", help="largest m of a fraction k/m"
+        "--max-denominator",
+        type=int,
+        default=360,
+        metavar="M",
+        help="largest m of a closing fraction k/m (360)",
     )
-    parser.add_argument("--sigmas", type=float, default=3.0, help="width of a measured angle's band")
+    parser.add_argument(
+        "--sigmas",
+        type=float,
+        default=3.0,
+        metavar="S",
+        help="band of a measured angle, in standard uncertainties (3)",
+    )
+
+
+def add_seed(parser: argparse.ArgumentParser) -> None:
+    """Add the ways to say where the seed is."""
+    seed = parser.add_mutually_exclusive_group()
+    seed.add_argument(
+        "--heights", type=numbers, metavar="1,2,3", help="seed by its distances from a, b, c, …"
+    )
+    seed.add_argument("--point", type=numbers, metavar="x,y,z", help="seed by its coordinates")
+    seed.add_argument(
+        "--place", metavar="NAME", help='seed at a named place: centre, "wall a", "edge ab", "corner bc"'
+    )
 
 
 def arrangement_of(args: argparse.Namespace) -> Arrangement:
     """The mirrors that the words say."""
+    return arrangement_and_seed(args)[0]
+
+
+def arrangement_and_seed(args: argparse.Namespace) -> tuple[Arrangement, Mapping[str, Any]]:
+    """The mirrors that the words say, and the seed that an arrangement file keeps with them."""
     settings = AngleSettings(args.max_denominator, args.sigmas)
     angles = [part for word in args.angles for part in split_angles(plain(word))]
     ways = [bool(angles), args.family is not None, args.file is not None, args.normals is not None]
     if sum(ways) != 1:
         msg = "give the mirrors in one way: angles, --family, --file or --normals"
         raise UsageError(msg)
-    if args.family is not None:
-        return Arrangement.from_family(args.family, settings)
     if args.file is not None:
         from mirrorlab.files.sheet_file import load_sheet
 
-        return load_sheet(args.file).arrangement
+        sheet = load_sheet(args.file)
+        return sheet.arrangement, sheet.seed
+    if args.family is not None:
+        return Arrangement.from_family(args.family, settings), {}
     if args.normals is not None:
         widths = {len(row) for row in args.normals}
         if len(widths) != 1:
             msg = f"normals with {sorted(widths)} coordinates; all need as many"
             raise UsageError(msg)
-        return Arrangement.from_normals(args.normals, settings)
-    return Arrangement.from_angles(angles, settings)
+        return Arrangement.from_normals(args.normals, settings), {}
+    return Arrangement.from_angles(angles, settings), {}
+
+
+def seed_of(args: argparse.Namespace, kept: Mapping[str, Any]) -> dict[str, Any]:
+    """Where the seed is: as the words say, else as the file keeps it, else empty."""
+    given = {key: getattr(args, key) for key in SEED_WAYS if getattr(args, key) is not None}
+    return given or {key: kept[key] for key in SEED_WAYS if kept.get(key) is not None}
 
 
 def print_json(value: Mapping[str, Any]) -> None:
     """Print plain JSON."""
-    json.dump(value, sys.stdout, indent=2, ensure_ascii=False)
+    encoding = (getattr(sys.stdout, "encoding", None) or "utf-8").lower().replace("-", "")
+    json.dump(value, sys.stdout, indent=2, ensure_ascii=encoding != "utf8")
     sys.stdout.write("\n")
 
 
 def print_table(rows: Sequence[Sequence[str]], indent: str = "  ") -> None:
-    """Print rows of text in aligned columns."""
+    """Print rows of text in aligned columns; a column of numbers stands under each other by its decimal points.
+
+    Whether a column holds numbers is seen below its first row, which may be the heads.
+    """
     if not rows:
         return
-    widths = [max(len(row[k]) for row in rows) for k in range(len(rows[0]))]
-    for row in rows:
-        line = "  ".join(cell.ljust(width) for cell, width in zip(row, widths, strict=True))
-        print(indent + line.rstrip())
+    columns = [_aligned([row[k] for row in rows]) for k in range(len(rows[0]))]
+    for cells in zip(*columns, strict=True):
+        print(indent + "  ".join(cells).rstrip())
+
+
+_NUMBER = re.compile(r"[+\-−]?[\d,]*(\.\d*)?(e[+-]?\d+)?°?\Z")
+
+
+def _aligned(cells: list[str]) -> list[str]:
+    below = [cell for cell in cells[1:] if cell]
+    if not below or not all(map(_is_number, below)):
+        width = max(map(len, cells))
+        return [cell.ljust(width) for cell in cells]
+    numeric = [*cells[1:], *([cells[0]] if _is_number(cells[0]) else [])]
+    most = max(map(_after_point, numeric))
+    padded = [cell + " " * (most - _after_point(cell)) if cell in numeric else cell for cell in cells]
+    width = max(map(len, padded))
+    return [cell.rjust(width) for cell in padded]
+
+
+def _is_number(cell: str) -> bool:
+    return _NUMBER.match(cell) is not None and any(c.isdigit() for c in cell)
+
+
+def _after_point(cell: str) -> int:
+    """Characters from the decimal point on."""
+    return len(cell) - cell.find(".") if "." in cell else 0
