@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import math
+from functools import lru_cache
 
 from PySide6.QtCore import QPointF, QRectF, Qt
-from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPainterPath, QPen
+from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPainterPath, QPainterPathStroker, QPen
 
 from mirrorlab.drawing.look import Look, label_tint
 from mirrorlab.drawing.model import Label, Role
@@ -18,11 +19,20 @@ TEXT_SIZE = 0.92
 """Height of other writing, in label sizes."""
 
 
+RIM = 3.2
+"""Width of the band of ground about other writing, in the look's pixels."""
+
+
 def label_font(look: Look, size: float, italic: bool = False) -> QFont:
     """The font of labels, `size` in pixels."""
+    return _font(look.label_fonts, max(1, round(size)), italic)
+
+
+@lru_cache(maxsize=64)
+def _font(families: tuple[str, ...], size: int, italic: bool) -> QFont:
     font = QFont()
-    font.setFamilies(list(look.label_fonts))
-    font.setPixelSize(max(1, round(size)))
+    font.setFamilies(list(families))
+    font.setPixelSize(size)
     font.setItalic(italic)
     font.setStyleHint(QFont.StyleHint.Serif)
     return font
@@ -38,9 +48,31 @@ def label_box(x: float, y: float, label: Label, look: Look, scale: float = 1.0) 
     if is_tag(label):
         radius = TAG_RADIUS * look.label_size * TAG_SIZE * scale
         return QRectF(x - radius, y - radius, 2 * radius, 2 * radius)
-    font = label_font(look, look.label_size * TEXT_SIZE * scale)
-    box = QFontMetricsF(font).tightBoundingRect(label.text)
+    box = _text_box(label.text, look.label_fonts, max(1, round(look.label_size * TEXT_SIZE * scale)))
     return QRectF(x - 0.5 * box.width(), y - 0.5 * box.height(), box.width(), box.height())
+
+
+@lru_cache(maxsize=512)
+def _text_box(text: str, families: tuple[str, ...], size: int) -> QRectF:
+    return QFontMetricsF(_font(families, size, False)).tightBoundingRect(text)
+
+
+@lru_cache(maxsize=512)
+def _outline(text: str, families: tuple[str, ...], size: int, italic: bool, rim: float) -> QPainterPath:
+    """Outline of a text about the origin, or, with a rim, of the band around it. Making them takes longest."""
+    font = _font(families, size, italic)
+    metrics = QFontMetricsF(font)
+    box = metrics.tightBoundingRect(text) if italic else metrics.boundingRect(text)
+    path = QPainterPath()
+    path.addText(-box.center(), font, text)
+    if not rim:
+        return path
+    stroker = QPainterPathStroker()
+    stroker.setWidth(rim)
+    stroker.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
+    band = stroker.createStroke(path)
+    band.setFillRule(Qt.FillRule.WindingFill)
+    return band
 
 
 def draw_label(
@@ -49,32 +81,26 @@ def draw_label(
     """Draw a label with its middle at a pixel. Text is drawn as outlines: a file needs no font to show it."""
     tag = is_tag(label)
     size = look.label_size * scale * (TAG_SIZE if tag else TEXT_SIZE)
-    font = label_font(look, size, italic=tag)
-    metrics = QFontMetricsF(font)
-    path = QPainterPath()
-    box = metrics.tightBoundingRect(label.text) if tag else metrics.boundingRect(label.text)
-    path.addText(QPointF(x, y) - box.center(), font, label.text)
+    pixels = max(1, round(size))
     ink = tint(label_tint(look, label.role, label.index), alpha)
+    painter.save()
+    painter.translate(x, y)
+    painter.setPen(Qt.PenStyle.NoPen)
     if tag:
         radius = TAG_RADIUS * size
-        painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(tint(look.ground, alpha))
-        painter.drawEllipse(QPointF(x, y), radius, radius)
+        painter.drawEllipse(QPointF(0, 0), radius, radius)
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.setPen(_ring_pen(look, label, ink, radius, scale))
-        painter.drawEllipse(QPointF(x, y), radius, radius)
+        painter.drawEllipse(QPointF(0, 0), radius, radius)
         painter.setPen(Qt.PenStyle.NoPen)
-        painter.setBrush(tint(look.ink, alpha))
-        painter.drawPath(path)
-        return
-    rim = QPen(tint(look.ground, 0.86 * alpha), 3.2 * scale)
-    rim.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
-    painter.setPen(rim)
-    painter.setBrush(Qt.BrushStyle.NoBrush)
-    painter.drawPath(path)
-    painter.setPen(Qt.PenStyle.NoPen)
+        ink = tint(look.ink, alpha)
+    else:
+        painter.setBrush(tint(look.ground, 0.86 * alpha))
+        painter.drawPath(_outline(label.text, look.label_fonts, pixels, False, RIM * scale))
     painter.setBrush(ink)
-    painter.drawPath(path)
+    painter.drawPath(_outline(label.text, look.label_fonts, pixels, tag, 0.0))
+    painter.restore()
 
 
 def _ring_pen(look: Look, label: Label, ink: QColor, radius: float, scale: float) -> QPen:
