@@ -24,16 +24,17 @@ from mirrorlab.drawing.space import space_drawing
 from mirrorlab.files.picture import (
     SMALLEST_SCALE,
     PictureError,
-    ensure_application,
     paint_image,
     save_picture,
 )
 from mirrorlab.files.whole import FileError
 
+pytestmark = pytest.mark.usefixtures("qapp")
+"""The application of all tests: a second one cannot be made later in the same process."""
+
 
 @pytest.fixture(scope="module")
 def drawing() -> Drawing:
-    ensure_application()
     arrangement = ml.Arrangement.from_angles(["90", "60", "45"])
     return space_drawing(arrangement, arrangement.finding(), arrangement.orbit(heights=[1, 0.6, 0.4]))
 
