@@ -84,6 +84,8 @@ class Bench(QWidget):
         Asks the stage to show the picture of that name.
     says(str)
         A sentence for the status line.
+    file_wanted()
+        The user wants to open a file.
     """
 
     title = ""
@@ -92,6 +94,7 @@ class Bench(QWidget):
     pictures_changed = Signal()
     picture_wanted = Signal(str)
     says = Signal(str)
+    file_wanted = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -126,6 +129,17 @@ class Bench(QWidget):
         model = self.table_model()
         if model is not None:
             write_csv(path, model)
+
+    def open_file(self, path: Path) -> str:
+        """Take in a file of this trade, as one step; returns what was done, in a sentence.
+
+        Raises
+        ------
+        ValueError
+            What is wrong with the file; nothing has changed then.
+        """
+        msg = f"the {self.title} bench opens no such file"
+        raise ValueError(msg)
 
     def pictures(self) -> dict[str, PictureMaker]:
         """The pictures this bench offers to the stage, by the name shown in the chooser."""
@@ -181,12 +195,15 @@ class BenchSlot:
         Names of the pictures it will offer, so that they can be chosen before the bench is loaded.
     about : str
         What it is for, as the tab's hint.
+    opens : tuple of str
+        Suffixes of the files it takes in through `Bench.open_file`.
     """
 
     title: str
     place: str
     pictures: tuple[str, ...] = ()
     about: str = ""
+    opens: tuple[str, ...] = ()
 
     def build(self, document: Document, parent: QWidget | None = None) -> Bench:
         """Import and build the bench."""
@@ -204,6 +221,7 @@ BENCHES: tuple[BenchSlot, ...] = (
         "mirrorlab.desktop.crystal:CrystalBench",
         pictures=("Stereogram", "Form"),
         about="Point groups, positions, forms, planes and comparison",
+        opens=(".cif", ".csv"),
     ),
     BenchSlot(
         "Glass",

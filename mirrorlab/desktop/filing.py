@@ -16,7 +16,10 @@ if TYPE_CHECKING:
 MOST_RECENT = 8
 KEPT_NAME = "unsaved.mirrorlab.json"
 SHEETS = "Arrangements (*.json)"
-OPENABLE = "Arrangements and crystal files (*.json *.cif);;Arrangements (*.json);;All files (*)"
+OPENABLE = (
+    "Arrangements, crystal files and lists (*.json *.cif *.csv);;Arrangements (*.json);;"
+    "Crystal files (*.cif);;Lists of points (*.csv);;All files (*)"
+)
 EXPORTS = {
     "csv": ("images.csv", "Images as CSV (*.csv)"),
     "npy": ("images.npy", "Coordinates as NumPy array (*.npy)"),
@@ -57,13 +60,28 @@ class Filing(QObject):
         """Open a file as a step that can be undone. A wrong file changes nothing and says why."""
         from mirrorlab.desktop.sheets import read_sheet
 
+        for slot in self._window.benches.slots:
+            if path.suffix.lower() in slot.opens:
+                return self._open_on_bench(path, slot.title)
         try:
             read_sheet(path, self._document)
         except (ValueError, OSError) as error:
-            self.failed.emit(f"{path.name} was not opened: {error}")
+            self.failed.emit(f"{path.name} was not opened: {_reason(error, path)}")
             return False
         self._remember(path)
         self.says.emit(f"Opened {path}.")
+        return True
+
+    def _open_on_bench(self, path: Path, title: str) -> bool:
+        benches = self._window.benches
+        try:
+            said = benches.bench(title).open_file(path)
+        except (ValueError, OSError) as error:
+            self.failed.emit(f"{path.name} was not opened: {_reason(error, path)}")
+            return False
+        benches.show_index([slot.title for slot in benches.slots].index(title))
+        self._remember(path)
+        self.says.emit(said)
         return True
 
     def save(self) -> bool:
@@ -87,7 +105,7 @@ class Filing(QObject):
         try:
             write_sheet(path, self._document)
         except (ValueError, OSError) as error:
-            self.failed.emit(f"{path.name} was not saved: {error}")
+            self.failed.emit(f"{path.name} was not saved: {_reason(error, path)}")
             return False
         self._document.saved_as(path)
         self._remember(path)
@@ -129,7 +147,7 @@ class Filing(QObject):
         try:
             work()  # type: ignore[operator]
         except (ValueError, OSError) as error:
-            self.failed.emit(f"{path.name} was not written: {error}")
+            self.failed.emit(f"{path.name} was not written: {_reason(error, path)}")
             return False
         self.says.emit(f"Wrote {path}.")
         return True
@@ -205,6 +223,11 @@ class Filing(QObject):
             return
         self.kept_path.unlink(missing_ok=True)
         self.says.emit("Brought back the unsaved changes of the last session.")
+
+
+def _reason(error: Exception, path: Path) -> str:
+    """The error's message without the path that the sentence has named already."""
+    return str(error).removeprefix(f"{path}: ")
 
 
 def _file_name(name: str) -> str:

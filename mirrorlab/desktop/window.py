@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QCoreApplication, QEvent, QSettings, QSize, Qt
-from PySide6.QtGui import QCloseEvent, QResizeEvent
+from pathlib import Path
+
+from PySide6.QtCore import QCoreApplication, QEvent, QMimeData, QSettings, QSize, Qt
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QMainWindow, QSplitter, QVBoxLayout, QWidget
 
 from mirrorlab.desktop.actions import Actions
@@ -57,6 +59,7 @@ class Window(QMainWindow):
         self.stage.left.refresh()  # an OpenGL view that comes into a window in sight makes it flash
         self._show_title()
         self.resize(FIRST_SIZE)
+        self.setAcceptDrops(True)
 
     def _lay_out(self) -> None:
         upper = QWidget()
@@ -106,6 +109,7 @@ class Window(QMainWindow):
     def _welcome(self, bench: Bench) -> None:
         bench.says.connect(self.status.say)
         bench.picture_wanted.connect(self.stage.show_picture)
+        bench.file_wanted.connect(self.filing.open)
         if isinstance(bench, PointsBench):
             bench.export_wanted.connect(self.filing.export)
 
@@ -129,6 +133,18 @@ class Window(QMainWindow):
         self.benches.fit(self.width())
         self.mirrors.fit()
 
+    def dragEnterEvent(self, event: QDragEnterEvent) -> None:
+        """Take a file that is dragged from outside."""
+        if _file_of(event.mimeData()) is not None:
+            event.acceptProposedAction()
+
+    def dropEvent(self, event: QDropEvent) -> None:
+        """Open it."""
+        path = _file_of(event.mimeData())
+        if path is not None:
+            event.acceptProposedAction()
+            self.filing.open_path(path)
+
     def closeEvent(self, event: QCloseEvent) -> None:
         """Keep unsaved changes for the next start, and end all work."""
         self.filing.keep_unsaved()
@@ -136,3 +152,9 @@ class Window(QMainWindow):
         self.settings.setValue("geometry", self.saveGeometry())
         self.actions_.help.close()
         super().closeEvent(event)
+
+
+def _file_of(data: QMimeData) -> Path | None:
+    """The one file that is dragged, None where it is none or several."""
+    files = [url.toLocalFile() for url in data.urls() if url.isLocalFile()]
+    return Path(files[0]) if len(files) == 1 else None

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from functools import lru_cache
 
 import numpy as np
@@ -67,12 +68,27 @@ def _generated(document: Document, index: int) -> str:
     return f"Generated mirror {index + 1} of {len(group.mirrors)}, normal {coordinates(group.mirrors[index])}"
 
 
+def _crystal(kind: str) -> Callable[[Document, int], str]:
+    """Parts of the crystallographer's pictures, told by their own package, which is loaded with the first of them."""
+
+    def tell(document: Document, index: int) -> str:
+        from mirrorlab.desktop.crystal.crystal_words import TELLERS
+
+        return TELLERS[kind](document, index)
+
+    return tell
+
+
 _TELLERS = {
     "image": _image,
     "seed": lambda document, _: _image(document, 0),
     "chamber": _chamber,
     "mirror": _mirror,
     "generated": _generated,
+    "face": _crystal("face"),
+    "axis": _crystal("axis"),
+    "equivalent": _crystal("equivalent"),
+    "group mirror": _crystal("group mirror"),
 }
 
 

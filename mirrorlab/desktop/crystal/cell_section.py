@@ -2,16 +2,18 @@
 
 from __future__ import annotations
 
+import re
 from functools import lru_cache
 from typing import TYPE_CHECKING
 
 import numpy as np
-from PySide6.QtCore import QSignalBlocker, Signal
+from PySide6.QtCore import QSignalBlocker
 from PySide6.QtWidgets import QComboBox, QDoubleSpinBox, QGridLayout, QHBoxLayout, QWidget
 
 from mirrorlab.crystal.indices import parse_indices
 from mirrorlab.crystal.operations import CrystalError
-from mirrorlab.desktop.crystal.crystal_parts import FactRows, LineField, TypedList
+from mirrorlab.desktop.bench_parts import FactRows, LineField
+from mirrorlab.desktop.crystal.crystal_parts import TypedList
 from mirrorlab.desktop.crystal.crystal_state import CONSTANTS, EMPTY
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import typed_cell
@@ -34,17 +36,10 @@ LARGEST_OBLIQUITY = 10.0
 
 
 class CellSection(Section):
-    """The cell and its planes.
-
-    Signals
-    -------
-    file_wanted()
-        The user wants to open a CIF file.
-    """
+    """The cell and its planes."""
 
     name = "Cell"
     about = "Cell constants or a CIF file, lattice planes, and which of them are mirrors"
-    file_wanted = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(document, parent)
@@ -230,9 +225,10 @@ class CellSection(Section):
 
     def _typed_cell(self) -> None:
         texts = tuple(field.text().strip() for field in self.fields)
-        parts = [part for text in texts for part in text.replace(";", " ").split()]
-        if len(parts) == len(CONSTANTS) and any(" " in text for text in texts):
-            texts = tuple(part.rstrip(",") for part in parts)  # a whole cell pasted into one field
+        for text, before in zip(texts, self.state.constants, strict=True):
+            parts = re.split(r"[;,\s]+", text)
+            if len(parts) == len(CONSTANTS) and len(text) > len(before) + 1:
+                texts = tuple(parts)  # a whole cell was pasted into one field
         self.change("cell", self.gesture, constants=texts, cell_name="")
 
     def _use(self, which) -> None:  # type: ignore[no-untyped-def]

@@ -10,9 +10,10 @@ from PySide6.QtCore import QSignalBlocker, Signal
 from PySide6.QtWidgets import QCheckBox, QHBoxLayout, QVBoxLayout, QWidget
 
 from mirrorlab.desktop.bench import Bench, PictureMaker
+from mirrorlab.desktop.bench_parts import Chips
 from mirrorlab.desktop.crystal import crystal_pictures, libraries
 from mirrorlab.desktop.crystal.cell_section import CellSection
-from mirrorlab.desktop.crystal.crystal_parts import Chips
+from mirrorlab.desktop.crystal.crystal_files import take_cif
 from mirrorlab.desktop.crystal.crystal_state import crystal_state
 from mirrorlab.desktop.crystal.forms_section import FormsSection
 from mirrorlab.desktop.crystal.group_section import GroupSection
@@ -52,6 +53,7 @@ class CrystalBench(Bench):
             one.rows_changed.connect(lambda s=one: self._rows_of(s))
             one.picture_wanted.connect(self.picture_wanted)
             one.says.connect(self.says)
+            one.file_wanted.connect(self.file_wanted)
         self.net = StereogramSettings(document)
         self.net.picture_wanted.connect(self.picture_wanted)
         column = QVBoxLayout(self.body)
@@ -97,6 +99,13 @@ class CrystalBench(Bench):
     def _rows_of(self, section: Section) -> None:
         if section is self.section and self.isVisible():
             self.rows_changed.emit()
+
+    def open_file(self, path: Path) -> str:
+        from mirrorlab.crystal.cif import read_cif
+
+        said = take_cif(self.document, read_cif(path))
+        self.show_named("Cell")
+        return said
 
     def table_model(self) -> RowsModel:
         return self.section.model

@@ -14,7 +14,8 @@ from mirrorlab.crystal.indices import parse_form
 from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.crystal.pointgroups import NamedGroup
 from mirrorlab.crystal.symbols import typographic
-from mirrorlab.desktop.crystal.crystal_parts import FactRows, TypedList
+from mirrorlab.desktop.bench_parts import FactRows
+from mirrorlab.desktop.crystal.crystal_parts import TypedList
 from mirrorlab.desktop.crystal.libraries import LOADING, loaded
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import Working, cell_basis, solid_of

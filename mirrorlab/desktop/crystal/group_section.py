@@ -14,7 +14,8 @@ from mirrorlab.crystal.operations import CrystalError, Operation
 from mirrorlab.crystal.symbols import typographic
 from mirrorlab.desktop import symbols
 from mirrorlab.desktop.angle_text import plainly_typed
-from mirrorlab.desktop.crystal.crystal_parts import Choice, FactRows, LineField
+from mirrorlab.desktop.bench_parts import FactRows, LineField
+from mirrorlab.desktop.crystal.crystal_parts import Choice
 from mirrorlab.desktop.crystal.crystal_pictures import axis_directions, mirror_keys
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import SAME_PLACE, Working, candidates, simple_mirrors

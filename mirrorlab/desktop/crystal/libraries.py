@@ -7,9 +7,9 @@ import sys
 from collections.abc import Callable
 
 from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.status import LIBRARIES_JOB as JOB
 
 LOADING = "Getting ready for forms …"
-JOB = "forms"
 NEEDED = ("scipy.spatial", "gemmi")
 
 

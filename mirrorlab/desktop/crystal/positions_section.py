@@ -12,7 +12,7 @@ from PySide6.QtCore import QSignalBlocker
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QWidget
 
 from mirrorlab.crystal.symbols import typographic
-from mirrorlab.desktop.crystal.crystal_parts import FactRows
+from mirrorlab.desktop.bench_parts import FactRows
 from mirrorlab.desktop.crystal.crystal_pictures import image_keys, seed_in_setting
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import Working, alignment, cell_basis

@@ -1,0 +1,40 @@
+"""Files of the crystallographer's trade, taken into the document as one step."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+from mirrorlab.crystal.symbols import typographic
+from mirrorlab.desktop.crystal.crystal_state import crystal_state
+from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
+
+if TYPE_CHECKING:
+    from mirrorlab.crystal.cif import CrystalFile
+
+
+def take_cif(document: Document, file: CrystalFile) -> str:
+    """Take cell, working group and mirrors from a CIF file; says what was taken.
+
+    The mirrors on the sheet stay when those of the file do not fit the triangle.
+    """
+    state = replace(
+        crystal_state(document),
+        group=file.setting or file.point_group,
+        faces=(),
+        constants=file.cell_texts,
+        centring=file.cell.centring,
+        cell_name=file.block,
+        planes=(),
+    )
+    mirrors = file.arrangement
+    taken = mirrors is not None and FEWEST_MIRRORS <= mirrors.size <= MOST_MIRRORS
+    if taken:
+        document.put_sheet(mirrors, file.block, crystal=state)
+    else:
+        document.set_crystal(state, f"open {file.source}")
+    group = f", point group {typographic(state.group)}" if state.group else ", no symmetry stated"
+    space = f", space group {file.space_group}" if file.space_group else ""
+    mirrored = "" if taken else "; its mirrors are too few for the triangle, so the sheet keeps its own"
+    notes = "".join(f" Note: {note}." for note in file.notes)
+    return f"Opened {file.source}: cell of {file.block}{group}{space}{mirrored}.{notes}"
