@@ -41,11 +41,13 @@ class _Buffer:
 
     def __init__(self, kind: QOpenGLBuffer.Type) -> None:
         self._buffer = QOpenGLBuffer(kind)
-        self._waiting: NDArray[Any] | None = None
+        self._data: NDArray[Any] = np.zeros(0, dtype=np.uint8)
+        self._sent = True
         self.count = 0
 
     def put(self, data: NDArray[Any]) -> None:
-        self._waiting = np.ascontiguousarray(data)
+        self._data = np.ascontiguousarray(data)
+        self._sent = False
         self.count = data.size
 
     def bind(self) -> None:
@@ -53,13 +55,13 @@ class _Buffer:
             self._buffer.create()
             self._buffer.setUsagePattern(QOpenGLBuffer.UsagePattern.DynamicDraw)
         self._buffer.bind()
-        if self._waiting is not None:
-            size = self._waiting.nbytes
+        if not self._sent:
+            size = self._data.nbytes
             if self._buffer.size() != size:
-                self._buffer.allocate(self._waiting.tobytes(), size)
+                self._buffer.allocate(self._data.tobytes(), size)
             elif size:
-                self._buffer.write(0, self._waiting.tobytes(), size)
-            self._waiting = None
+                self._buffer.write(0, self._data.tobytes(), size)
+            self._sent = True
 
     def release(self) -> None:
         self._buffer.release()
@@ -67,6 +69,7 @@ class _Buffer:
     def destroy(self) -> None:
         if self._buffer.isCreated():
             self._buffer.destroy()
+        self._sent = False
 
 
 class _Program:
@@ -148,8 +151,13 @@ class DrawingItem(GLGraphicsItem):
         self._face_program = _Program(glsl.FACE_VERTEX, glsl.FACE_FRAGMENT, FACE_FIELDS)
         self._line_program = _Program(glsl.LINE_VERTEX, glsl.LINE_FRAGMENT, LINE_FIELDS)
 
+    @property
+    def forgotten(self) -> bool:
+        """Whether there are no programs: before the first context, and after one has gone."""
+        return self._face_program is None
+
     def forget_context(self) -> None:
-        """Give back what lies on the card; the context must be current."""
+        """Give back what lies on the card, to be sent again to the next; the context must be current."""
         for buffer in (self._face_data, self._solid, self._sheer, self._line_data, self._line_index):
             buffer.destroy()
         for program in (self._face_program, self._line_program):

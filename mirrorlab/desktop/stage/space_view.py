@@ -50,6 +50,8 @@ class SpaceView(Handling, GLViewWidget):
         # The card forgets everything when the widget moves to another window.
         self.context().aboutToBeDestroyed.connect(self._forget)
         super().initializeGL()
+        if self._item.forgotten:
+            self._item.initialize()
 
     def _forget(self) -> None:
         self.makeCurrent()

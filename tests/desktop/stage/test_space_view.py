@@ -9,7 +9,7 @@ import numpy as np
 import pytest
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QImage
-from PySide6.QtWidgets import QWidget
+from PySide6.QtWidgets import QVBoxLayout, QWidget
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop.stage import make_view
@@ -103,6 +103,21 @@ def test_another_drawing_takes_the_same_buffers(shown: Shown, ball: Drawing):
     assert view.items == [item]
     view.set_drawing(ball)
     np.testing.assert_allclose(array_of(view.grabFramebuffer()), first, atol=0.01)
+
+
+@pytest.mark.gl
+def test_a_view_that_moves_to_another_window_keeps_its_picture(qtbot: QtBot, shown: Shown, ball: Drawing):
+    view = space_view(ball, shown)
+    before = array_of(view.grabFramebuffer())
+    other = QWidget()
+    layout = QVBoxLayout(other)
+    layout.setContentsMargins(0, 0, 0, 0)
+    shown(other, (420, 400))
+    layout.addWidget(view)
+    with qtbot.waitExposed(view):
+        view.show()
+    qtbot.waitUntil(lambda: view.size() == other.size())
+    np.testing.assert_allclose(array_of(view.grabFramebuffer()), before, atol=0.02)
 
 
 @pytest.mark.gl
