@@ -140,7 +140,7 @@ _INSIDE = re.compile(
     r"|(?<=[°ºdg'′’mn])\s+(?=\d+(?:[.,]\d+)?\s*['′’m\"″”s])",
     re.IGNORECASE,
 )
-_TIDY = {**str.maketrans("−–′’″”º˚·×", "--''\"\"°°**"), ord("π"): "pi"}
+_TIDY: dict[int, int | str] = {**str.maketrans("−–′’″”º˚·×", "--''\"\"°°**"), ord("π"): "pi"}
 
 
 def parse_angle(given: str | int | float | Fraction, settings: AngleSettings = AngleSettings()) -> Angle:

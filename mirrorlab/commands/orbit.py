@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import argparse
 import sys
+from pathlib import Path
 from typing import Any
 
 from mirrorlab.commands.output import (
@@ -77,7 +78,7 @@ def run(args: argparse.Namespace) -> int:
         from mirrorlab.commands.crystal_orbit import print_in_cell
 
         return print_in_cell(args, finding, orbit)
-    written = []
+    written: list[Path] = []
     if args.csv:
         from mirrorlab.files.orbit_table import write_orbit
 

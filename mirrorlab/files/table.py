@@ -23,6 +23,8 @@ import numpy as np
 
 from mirrorlab.files.whole import make_together
 
+PLAIN = (str, int)
+
 
 @dataclass(frozen=True, slots=True)
 class Column:
@@ -84,9 +86,7 @@ def _write_rows(stream: TextIO, columns: Sequence[Column], rows: Iterable[Sequen
     # the writer writes plain numbers and texts as wanted; the call of `_cell` would take as long as the rest
     writer.writerows(
         [
-            value
-            if (kind := type(value)) is str or kind is int or (kind is float and math.isfinite(value))
-            else _cell(value)
+            value if type(value) in PLAIN or (type(value) is float and math.isfinite(value)) else _cell(value)
             for value in row
         ]
         for row in rows

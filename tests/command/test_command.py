@@ -5,6 +5,7 @@ from __future__ import annotations
 import csv
 import json
 import os
+import shlex
 import signal
 import subprocess
 import sys
@@ -206,3 +207,18 @@ def test_an_interrupt_of_a_long_orbit_leaves_no_file(tmp_path: Path) -> None:
     assert running.returncode == 130
     assert b"Traceback" not in err
     assert list(tmp_path.iterdir()) == []
+
+
+@pytest.mark.parametrize("verb", ["check", "orbit", "draw"])
+def test_the_examples_in_the_help_run(
+    answer: Answer, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, verb: str
+) -> None:
+    monkeypatch.chdir(tmp_path)
+    _, text, _ = answer(verb, "--help")
+    examples = [
+        line.split(None, 1)[1] for line in text.splitlines() if line.startswith(f"  mirrorlab {verb} ")
+    ]
+    assert len(examples) >= 4
+    for example in examples:
+        status, _, err = answer(*shlex.split(example))
+        assert status == 0, f"{example}: {err}"
