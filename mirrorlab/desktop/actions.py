@@ -115,6 +115,7 @@ class Actions(QObject):
             made = QToolButton()  # not the action's own button: that one would widen with the step's name
             made.setText(text)
             made.setEnabled(False)
+            made.setFocusPolicy(Qt.FocusPolicy.NoFocus)
             set_kind(made, "corner")
             made.clicked.connect(doing)
             can.connect(made.setEnabled)
@@ -123,6 +124,7 @@ class Actions(QObject):
         self.lamp = QToolButton()
         self.lamp.setToolTip("Light or dark (Ctrl+L)")
         self.lamp.clicked.connect(self._switch_theme)
+        self.lamp.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         set_kind(self.lamp, "corner")
         row.addWidget(self.lamp)
         self._name_lamp()

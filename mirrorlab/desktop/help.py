@@ -4,7 +4,15 @@ from __future__ import annotations
 
 from PySide6.QtCore import QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QPaintEvent
-from PySide6.QtWidgets import QDialog, QGridLayout, QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QDialog,
+    QGridLayout,
+    QHBoxLayout,
+    QScrollArea,
+    QSizePolicy,
+    QVBoxLayout,
+    QWidget,
+)
 
 from mirrorlab.desktop.marks import (
     FINDING_TINTS,
@@ -88,6 +96,8 @@ class Help(QDialog):
         self.setModal(False)
         body = QWidget()
         left, right = QVBoxLayout(), QVBoxLayout()
+        left.setSpacing(6)
+        right.setSpacing(6)
         self._list(left, "Keys", KEYS)
         left.addStretch(1)
         self._list(right, "Ways to write an angle", ANGLES)
@@ -105,7 +115,7 @@ class Help(QDialog):
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.addWidget(area)
-        self.resize(900, 560)
+        self.resize(920, 640)
 
     def open(self) -> None:
         """Show the page, in front."""
@@ -114,7 +124,9 @@ class Help(QDialog):
 
     @staticmethod
     def _grid(column: QVBoxLayout, heading: str) -> QGridLayout:
-        column.addWidget(label(heading, "title"))
+        title = label(heading, "title")
+        title.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
+        column.addWidget(title)
         grid = QGridLayout()
         grid.setHorizontalSpacing(16)
         grid.setVerticalSpacing(4)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from PySide6.QtCore import QSignalBlocker, Qt
+from PySide6.QtCore import QCoreApplication, QEvent, QSignalBlocker, Qt
 from PySide6.QtWidgets import (
     QComboBox,
     QDoubleSpinBox,
@@ -54,6 +54,7 @@ class MirrorsPanel(QFrame):
         self.settings_button.toggled.connect(self.settings.setVisible)
         self.settings.hide()
         self._lay_out()
+        self.ways.grown.connect(self._reveal)
         self.add.clicked.connect(document.add_mirror)
         self.remove.clicked.connect(lambda: document.remove_mirror(self._to_remove()))
         for signal in (document.arrangement_changed, document.selection_changed, document.name_changed):
@@ -80,7 +81,7 @@ class MirrorsPanel(QFrame):
         column.addWidget(label("Other ways in", "small"))
         column.addWidget(self.ways)
         column.addStretch(1)
-        area = QScrollArea()
+        self.area = area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
         area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
@@ -105,6 +106,12 @@ class MirrorsPanel(QFrame):
         inside = max(self.triangle.wanted_width(), self.ways.minimumSizeHint().width())
         width = max(theming().theme.spacing.triangle_width, inside + 2 * MARGIN + SCROLL_BAR)
         self.setFixedWidth(max(width, min(MOST_WIDE, round(self.window().width() * FAIR_PART))))
+
+    def _reveal(self) -> None:
+        """Scroll to the foot of the panel, where something was opened."""
+        QCoreApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest.value)
+        bar = self.area.verticalScrollBar()
+        bar.setValue(bar.maximum())
 
     def _to_remove(self) -> int:
         key = self.document.selection

@@ -27,6 +27,28 @@ from mirrorlab.desktop.words import describe
 from mirrorlab.drawing.model import Drawing
 
 
+class Nothing(QWidget):
+    """What stands on the stage where there is no picture: what it would be, and why there is none."""
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.title = label("", "large")
+        self.reason = label("", "muted", wrap=True)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(48, 24, 48, 24)
+        column.setSpacing(6)
+        column.addStretch(1)
+        for part in (self.title, self.reason):
+            part.setAlignment(Qt.AlignmentFlag.AlignHCenter)
+            column.addWidget(part)
+        column.addStretch(1)
+
+    def say(self, title: str, reason: str) -> None:
+        """Show a title and a reason."""
+        self.title.setText(title)
+        self.reason.setText(reason)
+
+
 class Pane(QFrame):
     """One picture with its chooser.
 
@@ -56,9 +78,7 @@ class Pane(QFrame):
         self.chooser.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
         self.chooser.setAccessibleName("picture")
         self.note = Elided("", "small")
-        self.empty = label("", "muted", wrap=True)
-        self.empty.setAlignment(Qt.AlignmentFlag.AlignCenter)
-        self.empty.setMargin(40)
+        self.empty = Nothing()
         self.stack = QStackedWidget()
         self.stack.addWidget(self.empty)
         self.head = QHBoxLayout()
@@ -109,7 +129,7 @@ class Pane(QFrame):
         try:
             picture = self._widgets.get(name) or self.shelf.take(name)
         except NoPicture as reason:
-            self._show_empty(str(reason))
+            self._show_empty(name, str(reason))
             return
         if isinstance(picture, QWidget):
             self._show_widget(name, picture)
@@ -124,10 +144,10 @@ class Pane(QFrame):
                 self.chooser.addItems(names)
             self.chooser.setCurrentText(name)
 
-    def _show_empty(self, reason: str) -> None:
+    def _show_empty(self, title: str, reason: str) -> None:
         self.drawing = None
         self.note.setText("")
-        self.empty.setText(reason)
+        self.empty.say(title, reason)
         self.stack.setCurrentWidget(self.empty)
 
     def _show_widget(self, name: str, widget: QWidget) -> None:
@@ -140,7 +160,7 @@ class Pane(QFrame):
 
     def _show_drawing(self, drawing: Drawing) -> None:
         if not (drawing.faces or drawing.lines or drawing.points):
-            self._show_empty(". ".join((drawing.title, *drawing.notes)))
+            self._show_empty(drawing.title, "\n".join(drawing.notes))
             return
         self.drawing = drawing
         if self.view is None:

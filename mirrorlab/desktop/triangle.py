@@ -115,6 +115,7 @@ class Triangle(QWidget):
     def _type(self, pair: int, text: str) -> None:
         cell = self.cells[pair]
         cell.forget_error()
+        self.current = pair
         try:
             if text == self.document.arrangement.angles[pair].text:
                 self.refresh()

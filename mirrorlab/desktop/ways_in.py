@@ -23,9 +23,12 @@ class WaysIn(QWidget):
     -------
     file_wanted()
         The user wants to open a file.
+    grown()
+        More of it stands below than before.
     """
 
     file_wanted = Signal()
+    grown = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -42,6 +45,8 @@ class WaysIn(QWidget):
             opener.setCheckable(True)
         self.family = FamilyEntry(document)
         self.normals = NormalsEntry(document)
+        self.family.grown.connect(self.grown)
+        self.normals.grown.connect(self.grown)
         self.family.hide()
         self.normals.hide()
         self.family_button.toggled.connect(lambda on: self._open(self.family_button, on))
@@ -63,6 +68,7 @@ class WaysIn(QWidget):
         entry = self.family if opener is self.family_button else self.normals
         other = self.normals_button if opener is self.family_button else self.family_button
         entry.setVisible(on)
+        self.grown.emit()
         if on:
             other.setChecked(False)
             entry.take_focus()
@@ -76,7 +82,9 @@ def fill_samples(menu: QMenu, document: Document) -> None:
 
 
 class FamilyEntry(QWidget):
-    """A field for the name of a family; Enter takes it."""
+    """A field for the name of a family; Enter takes it. `grown` tells that an error stands below it."""
+
+    grown = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -123,10 +131,14 @@ class FamilyEntry(QWidget):
         self.error.setText(message)
         self.error.setVisible(bool(message))
         set_wrong(self.field, bool(message))
+        if message:
+            self.grown.emit()
 
 
 class NormalsEntry(QWidget):
-    """A field for normals, one row a mirror."""
+    """A field for normals, one row a mirror. `grown` tells that an error stands below it."""
+
+    grown = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -171,6 +183,8 @@ class NormalsEntry(QWidget):
         self.error.setText(message)
         self.error.setVisible(bool(message))
         set_wrong(self.field, bool(message))
+        if message:
+            self.grown.emit()
 
 
 def read_rows(text: str) -> list[list[float]]:

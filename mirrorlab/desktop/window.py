@@ -59,6 +59,7 @@ class Window(QMainWindow):
         self.stage.left.refresh()  # an OpenGL view that comes into a window in sight makes it flash
         self._show_title()
         self.resize(FIRST_SIZE)
+        self.mirrors.triangle.cells[0].edit.setFocus()
         self.setAcceptDrops(True)
 
     def _lay_out(self) -> None:
