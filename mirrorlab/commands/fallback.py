@@ -20,7 +20,7 @@ def print_instead(path: str | None, reason: str) -> int:
     Returns 0 for the sample, `NO_WINDOW` for a file.
     """
     if path is not None and Path(path).suffix.lower() == ".cif":
-        msg = f"no window opened: {reason}. The verbs read a CIF file without one: mirrorlab cell {path}"
+        msg = f"no window opened: {reason}. Verbs read a CIF file without one: see mirrorlab cell --help"
         raise OSError(msg)
     print_sheet(load_sheet(path) if path is not None else samples()[0])
     sys.stdout.flush()

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import contextlib
 import csv
+import io
 import json
 import os
 import shlex
@@ -15,6 +17,8 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from mirrorlab import command
 from mirrorlab.commands import VERBS
@@ -222,3 +226,24 @@ def test_the_examples_in_the_help_run(
     for example in examples:
         status, _, err = answer(*shlex.split(example))
         assert status == 0, f"{example}: {err}"
+
+
+WORDS = st.sampled_from(
+    ["90", "60", "45", "59.9(2)", "2pi/5", "0", "6o", "-5", "180", "", " ", "--family", "H3", "A1xI2(7)", "Z9",
+     "--normals", "1,0,0", "0,1,0", "1,1", "nan,0,0", "--heights", "1,2,3", "1e300,1,1", "--point", "--place",
+     "centre", "wall a", "edge zz", "--rotations", "--json", "--evidence", "--limit", "--sigmas", "--file", "x"]
+)  # fmt: skip
+
+
+@given(st.sampled_from(["check", "orbit"]), st.lists(WORDS, max_size=7))
+@settings(deadline=None, max_examples=150)
+def test_any_words_are_answered_or_refused_in_one_line(verb: str, words: list[str]) -> None:
+    out, err = io.StringIO(), io.StringIO()
+    with contextlib.redirect_stdout(out), contextlib.redirect_stderr(err):
+        try:
+            status = command.main([verb, *words])
+        except SystemExit as leave:
+            status = int(leave.code or 0)
+    assert status in (0, 2)
+    assert bool(out.getvalue()) == (status == 0)
+    assert err.getvalue().count("\n") == (0 if status == 0 else 1)

@@ -111,7 +111,7 @@ def test_a_file_whose_images_are_too_many_still_has_its_finding(
 
 
 def test_a_crystal_file_is_sent_to_the_verb_that_reads_it() -> None:
-    with pytest.raises(OSError, match=r"mirrorlab cell .*quartz-like\.cif"):
+    with pytest.raises(OSError, match="mirrorlab cell"):
         print_instead("quartz-like.cif", "a reason")
 
 
