@@ -37,7 +37,6 @@ class BenchSection(QWidget):
     picture_wanted = Signal(str)
     says = Signal(str)
     file_wanted = Signal()
-    file_wanted = Signal()
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)

@@ -13,8 +13,10 @@ from mirrorlab.desktop.bench import Bench, PictureMaker
 from mirrorlab.desktop.bench_parts import Chips
 from mirrorlab.desktop.crystal import crystal_pictures, libraries
 from mirrorlab.desktop.crystal.cell_section import CellSection
-from mirrorlab.desktop.crystal.crystal_files import take_cif
-from mirrorlab.desktop.crystal.crystal_state import crystal_state
+from mirrorlab.desktop.crystal.compare_section import CompareSection
+from mirrorlab.desktop.crystal.crystal_files import take_cif, take_list
+from mirrorlab.desktop.crystal.crystal_state import NETS, crystal_state
+from mirrorlab.desktop.crystal.fit_section import FitSection
 from mirrorlab.desktop.crystal.forms_section import FormsSection
 from mirrorlab.desktop.crystal.group_section import GroupSection
 from mirrorlab.desktop.crystal.positions_section import PositionsSection
@@ -22,8 +24,6 @@ from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, label, rule
 from mirrorlab.desktop.rows import RowsModel
-
-NETS = ("wulff", "schmidt")
 
 
 class CrystalBench(Bench):
@@ -39,11 +39,13 @@ class CrystalBench(Bench):
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(document, parent)
-        made = (
+        made: tuple[Section, ...] = (
             GroupSection(document),
             PositionsSection(document),
             FormsSection(document),
             CellSection(document),
+            FitSection(document),
+            CompareSection(document),
         )
         self.sections: dict[str, Section] = {section.name: section for section in made}
         self.chips = Chips([one.name for one in made], [one.about for one in made])
@@ -101,6 +103,12 @@ class CrystalBench(Bench):
             self.rows_changed.emit()
 
     def open_file(self, path: Path) -> str:
+        if path.suffix.lower() == ".csv":
+            from mirrorlab.crystal.point_lists import read_points
+
+            said = take_list(self.document, read_points(path), path)
+            self.show_named("Compare")
+            return said
         from mirrorlab.crystal.cif import read_cif
 
         said = take_cif(self.document, read_cif(path))

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from pathlib import Path
 from typing import TYPE_CHECKING
 
 from mirrorlab.crystal.symbols import typographic
@@ -11,6 +12,7 @@ from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.cif import CrystalFile
+    from mirrorlab.crystal.point_lists import PointList
 
 
 def take_cif(document: Document, file: CrystalFile) -> str:
@@ -38,3 +40,13 @@ def take_cif(document: Document, file: CrystalFile) -> str:
     mirrored = "" if taken else "; its mirrors are too few for the triangle, so the sheet keeps its own"
     notes = "".join(f" Note: {note}." for note in file.notes)
     return f"Opened {file.source}: cell of {file.block}{group}{space}{mirrored}.{notes}"
+
+
+def take_list(document: Document, points: PointList, path: Path) -> str:
+    """Take a list of points to compare; says how many rows were read and which were not."""
+    text = path.read_text(encoding="utf-8-sig", errors="replace")
+    state = replace(crystal_state(document), list_text=text, list_name=path.name)
+    document.set_crystal(state, f"open {path.name}")
+    count, bad = len(points.labels), len(points.unreadable)
+    left = f"; {bad} row{'s' if bad != 1 else ''} cannot be read, see the bench" if bad else ""
+    return f"Opened {path.name}: {count} {points.what}{left}."

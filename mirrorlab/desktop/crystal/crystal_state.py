@@ -13,8 +13,8 @@ CONSTANTS = ("a", "b", "c", "α", "β", "γ")
 STANDARD_TOLERANCE = 3.0
 """Degrees of obliquity within which lattice mirrors are looked for; also what `lattice_mirrors` starts from."""
 
-COMPARE_TOLERANCE = 0.1
-"""Largest deviation of a matched point, in the unit of the list, until another is typed; common practice."""
+NETS = ("wulff", "schmidt")
+ORIENTATIONS = ("given", "refined", "searched")
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,10 +45,18 @@ class CrystalState:
         Images are written as fractions of the typed cell instead of unit axes.
     list_text, list_name : str
         The list of points or poles to compare, as CSV, and the file it came from.
-    list_tolerance : float
-        Largest deviation of a matched point.
-    refine : bool
-        The list is turned to fit the group best.
+    list_tolerance : str
+        Largest deviation of a matched point, as typed; "" takes it from the list.
+    orientation : str
+        How the list is turned: "given", "refined" or "searched".
+    as_poles : bool
+        Only the directions of its points count.
+    list_in_cell : bool
+        Its coordinates are fractions of the typed cell.
+    fit_sigma : str
+        Uncertainty in degrees of measured angles without one, as typed.
+    fit_texts : tuple of str
+        The measured angles, kept when a fitted arrangement took their place in the triangle.
     """
 
     group: str = ""
@@ -64,8 +72,12 @@ class CrystalState:
     in_cell: bool = False
     list_text: str = ""
     list_name: str = ""
-    list_tolerance: float = COMPARE_TOLERANCE
-    refine: bool = True
+    list_tolerance: str = ""
+    orientation: str = "refined"
+    as_poles: bool = False
+    list_in_cell: bool = False
+    fit_sigma: str = ""
+    fit_texts: tuple[str, ...] = ()
 
     @property
     def has_cell(self) -> bool:
@@ -108,6 +120,7 @@ def from_mapping(plain: Mapping[str, Any]) -> CrystalState:
         kept[one.name] = found
     if len(kept["constants"]) != len(CONSTANTS):
         kept["constants"] = EMPTY.constants
-    if kept["net"] not in ("wulff", "schmidt"):
-        kept["net"] = EMPTY.net
+    for name, accepted in (("net", NETS), ("orientation", ORIENTATIONS)):
+        if kept[name] not in accepted:
+            kept[name] = getattr(EMPTY, name)
     return CrystalState(**kept)
