@@ -17,6 +17,7 @@ from mirrorlab.drawing.model import Drawing
 from mirrorlab.drawing.prepared import Prepared
 from mirrorlab.files.picture_marks import tint
 from mirrorlab.files.picture_paint import Sight, paint_drawing
+from mirrorlab.files.picture_sight import painting
 from mirrorlab.files.whole import FileError, write_whole
 
 FORMATS = (".png", ".svg", ".pdf")
@@ -107,9 +108,8 @@ def paint_image(
     """Paint a drawing into an image with the look's pixels."""
     image = QImage(width, height, QImage.Format.Format_ARGB32_Premultiplied)
     image.fill(tint(look.ground))
-    painter = QPainter(image)
-    paint_drawing(painter, Prepared(drawing), Sight(camera or home_camera(drawing), width, height, look))
-    painter.end()
+    with painting(image) as painter:
+        paint_drawing(painter, Prepared(drawing), Sight(camera or home_camera(drawing), width, height, look))
     return image
 
 
@@ -125,9 +125,8 @@ def _png(prepared: Prepared, sight: Sight, ground: bool) -> bytes:
     dots = round(96 * sight.scale / 0.0254)
     image.setDotsPerMeterX(dots)
     image.setDotsPerMeterY(dots)
-    painter = QPainter(image)
-    _paint(painter, prepared, sight, ground)
-    painter.end()
+    with painting(image) as painter:
+        _paint(painter, prepared, sight, ground)
     image.setText("Title", prepared.drawing.title)
     image.setText("Frame", prepared.drawing.frame)
     buffer, data = _buffer()
@@ -149,9 +148,8 @@ def _svg(prepared: Prepared, sight: Sight, ground: bool) -> bytes:
     generator.setViewBox(QRectF(0, 0, sight.width, sight.height))
     generator.setTitle(prepared.drawing.title)
     generator.setDescription(" · ".join(t for t in (prepared.drawing.frame, *prepared.drawing.notes) if t))
-    painter = QPainter(generator)
-    _paint(painter, prepared, sight, ground)
-    painter.end()
+    with painting(generator) as painter:
+        _paint(painter, prepared, sight, ground)
     buffer.close()
     return bytes(data.data())
 
@@ -167,10 +165,9 @@ def _pdf(prepared: Prepared, sight: Sight, ground: bool) -> bytes:
     )
     writer.setPageMargins(QMarginsF(0, 0, 0, 0))
     writer.setResolution(1200)
-    painter = QPainter(writer)
-    painter.scale(1200 / 96, 1200 / 96)
-    _paint(painter, prepared, sight, ground)
-    painter.end()
+    with painting(writer) as painter:
+        painter.scale(1200 / 96, 1200 / 96)
+        _paint(painter, prepared, sight, ground)
     buffer.close()
     return bytes(data.data())
 

@@ -161,6 +161,22 @@ def test_an_old_file_is_replaced_whole(drawing: Drawing, tmp_path: Path):
     assert [p.name for p in tmp_path.iterdir()] == ["p.png"]
 
 
+@pytest.mark.parametrize("ending", [".png", ".svg", ".pdf"])
+def test_an_error_while_painting_is_only_an_error(
+    drawing: Drawing, tmp_path: Path, ending: str, monkeypatch: pytest.MonkeyPatch
+):
+    """A painter left open on a device that goes would take the process along."""
+
+    def fail(*_: object) -> None:
+        msg = "on purpose"
+        raise ArithmeticError(msg)
+
+    monkeypatch.setattr("mirrorlab.files.picture_paint.paint_over", fail)
+    with pytest.raises(ArithmeticError, match="on purpose"):
+        save_picture(drawing, tmp_path / f"p{ending}", (100, 100))
+    assert not list(tmp_path.iterdir())
+
+
 def test_every_kind_of_drawing_is_painted():
     """No kind of part raises, and each leaves ink."""
     for what in (["60"], ["60", "60", "60"], ["90", "60", "50"], ["90", "60", "72"]):

@@ -5,13 +5,14 @@ from __future__ import annotations
 from typing import Any
 
 from PySide6.QtCore import Signal
-from PySide6.QtGui import QPainter, QPaintEvent
+from PySide6.QtGui import QPaintEvent
 from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.stage.handling import Handling
 from mirrorlab.drawing.look import LIGHT_LOOK
 from mirrorlab.files.picture_marks import tint
 from mirrorlab.files.picture_paint import paint_drawing
+from mirrorlab.files.picture_sight import painting
 
 
 class PainterView(Handling, QWidget):
@@ -33,8 +34,7 @@ class PainterView(Handling, QWidget):
         self.update()
 
     def paintEvent(self, event: QPaintEvent) -> None:
-        painter = QPainter(self)
-        painter.fillRect(self.rect(), tint(self._look.ground))
-        paint_drawing(painter, self._prepared, self.sight(), self.cut_strokes())
-        self.paint_extras(painter)
-        painter.end()
+        with painting(self) as painter:
+            painter.fillRect(self.rect(), tint(self._look.ground))
+            paint_drawing(painter, self._prepared, self.sight(), self.cut_strokes())
+            self.paint_extras(painter)

@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 from pyqtgraph.opengl import GLViewWidget
 from PySide6.QtCore import QSize, Signal
-from PySide6.QtGui import QImage, QMatrix4x4, QPainter
+from PySide6.QtGui import QImage, QMatrix4x4
 from PySide6.QtOpenGL import QOpenGLPaintDevice
 from PySide6.QtWidgets import QWidget
 
@@ -15,7 +15,8 @@ from mirrorlab.desktop.stage.gl_item import DrawingItem
 from mirrorlab.desktop.stage.gl_setup import card, surface_format
 from mirrorlab.desktop.stage.handling import Handling
 from mirrorlab.drawing.look import LIGHT_LOOK
-from mirrorlab.files.picture_paint import paint_over
+from mirrorlab.files.picture_over import paint_over
+from mirrorlab.files.picture_sight import painting
 
 
 class SpaceView(Handling, GLViewWidget):
@@ -71,9 +72,9 @@ class SpaceView(Handling, GLViewWidget):
         dots = self.devicePixelRatioF()
         device = QOpenGLPaintDevice(QSize(self.deviceWidth(), self.deviceHeight()))
         device.setDevicePixelRatio(dots)
-        painter = QPainter(device)
-        painter.drawImage(0, 0, self._over(dots))
-        painter.end()
+        over = self._over(dots)
+        with painting(device) as painter:
+            painter.drawImage(0, 0, over)
 
     def _over(self, dots: float) -> QImage:
         """What lies over the faces, painted by the processor: OpenGL's own painter has no smooth edges."""
@@ -83,10 +84,9 @@ class SpaceView(Handling, GLViewWidget):
         image = self._over_image
         image.setDevicePixelRatio(dots)
         image.fill(0)
-        painter = QPainter(image)
-        paint_over(painter, self._prepared, self.sight())
-        self.paint_extras(painter)
-        painter.end()
+        with painting(image) as painter:
+            paint_over(painter, self._prepared, self.sight())
+            self.paint_extras(painter)
         return image
 
     def has_picture(self) -> bool:
