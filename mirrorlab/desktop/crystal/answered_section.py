@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Hashable
+from functools import partial
 from typing import Any
 
 from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.document import Document
+
+STOPPED = "Stopped. Open this section again to start anew."
 
 
 class AnsweredSection(Section):
@@ -37,35 +40,33 @@ class AnsweredSection(Section):
         """Have a question answered, unless it is the one asked last."""
         if question == self._question:
             return
+        done, failed = partial(self._answered, question), partial(self._failed, question)
+        self.document.work.start(self.job, lambda _: work(), done, failed)
         self._question = question
         self.answer, self.problem = None, ""
-        self.document.work.start(self.job, lambda _: work(), self._answered, self._failed)
 
     def drop(self, problem: str = "") -> None:
         """Ask nothing, and say why."""
-        self._question = None
         self.document.work.cancel(self.job)
+        self._question = None
         self.answer, self.problem = None, problem
-
-    @property
-    def waiting(self) -> bool:
-        """Whether the answer is on its way."""
-        return self.job in self.document.work.running()
 
     def show_answer(self) -> None:
         """Bring widgets and rows in step with the answer."""
 
-    def _answered(self, answer: Any) -> None:
-        self.answer = answer
+    def _answered(self, question: Hashable, answer: Any) -> None:
+        self._question, self.answer, self.problem = question, answer, ""
         self.show_answer()
 
-    def _failed(self, error: Exception) -> None:
+    def _failed(self, question: Hashable, error: Exception) -> None:
         if not isinstance(error, ValueError):
             raise error
-        self.problem = str(error)
+        self._question, self.problem = question, str(error)
         self.show_answer()
 
     def _ended(self, name: str) -> None:
-        """A job that was stopped may be asked for again."""
-        if name == self.job and self.answer is None and not self.problem:
-            self.problem = ""
+        """Unless its answer follows at once, the job was stopped, and may be asked for again."""
+        if name == self.job:
+            self._question, self.problem = None, STOPPED
+            if self.isVisible():
+                self.show_answer()

@@ -29,7 +29,7 @@ if TYPE_CHECKING:
 
 OPERATIONS, POINTS, UNREAD = range(3)
 COMPARING = "Comparing …"
-SHOWN_LINES = 3
+SHOWN_LINES, MOST_NAMED = 3, 6
 
 
 class CompareSection(AnsweredSection):
@@ -54,7 +54,7 @@ class CompareSection(AnsweredSection):
         )
         self.tolerance = LineField()
         self.tolerance.setPlaceholderText("from the list")
-        self.tolerance.setFixedWidth(104)
+        self.tolerance.setFixedWidth(96)
         self.tolerance.setAccessibleName("largest deviation")
         self.unit = label("", "muted")
         self.tolerance_error = label("", "wrong", wrap=True)
@@ -156,7 +156,7 @@ class CompareSection(AnsweredSection):
         if self.tolerance.text().strip() != state.list_tolerance:
             self.tolerance.setText(state.list_tolerance)
         directions = state.as_poles or (read is not None and read.directions)
-        self.unit.setText("degrees" if directions else "in the list's unit")
+        self.unit.setText("degrees" if directions else "in its unit")
         self.rows.button(UNREAD).setEnabled(bool(bad))
         if not bad and self.rows.current == UNREAD:
             self.rows.choose(OPERATIONS)
@@ -196,7 +196,9 @@ class CompareSection(AnsweredSection):
                     Column("reason", [one.reason for one in bad], text=True),
                 ]
             )
-            self.title, self.note = f"{len(bad)} lines not read", f"of {points.source}"
+            count = len(bad)
+            self.title = f"{count} line{'s' if count != 1 else ''} not read"
+            self.note = f"of {points.source}"
         elif found is None:
             self.model.set_columns(())
             self.title, self.note = "No comparison", self.problem or COMPARING
@@ -268,6 +270,10 @@ def _facts(found: Comparison) -> dict[str, str]:
     }
 
 
+def _named(labels: tuple[str, ...]) -> str:
+    return ", ".join(labels) if len(labels) <= MOST_NAMED else f"{len(labels)} points"
+
+
 def operation_columns(found: Comparison) -> list[Column]:
     """The table of operations with their deviations."""
     rows = found.operations
@@ -280,7 +286,7 @@ def operation_columns(found: Comparison) -> list[Column]:
         Column("at", [one.worst for one in rows], hint="the point of the largest deviation", text=True),
         Column(
             "unmatched",
-            [", ".join(one.unmatched) for one in rows],
+            [_named(one.unmatched) for one in rows],
             hint="points without a partner",
             text=True,
         ),

@@ -66,7 +66,6 @@ class CrystalBench(Bench):
         for one in made:
             column.addWidget(one)
         column.addSpacing(4)
-        column.addWidget(rule())
         column.addWidget(self.net)
         column.addStretch(1)
         self.chips.chosen.connect(self.show_section)
@@ -156,6 +155,7 @@ class StereogramSettings(QWidget):
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(6)
+        column.addWidget(rule())
         column.addWidget(label("Stereogram", "heading"))
         row = QHBoxLayout()
         row.setSpacing(8)

@@ -9,7 +9,6 @@ from typing import TYPE_CHECKING
 import numpy as np
 from PySide6.QtWidgets import QHBoxLayout, QVBoxLayout, QWidget
 
-from mirrorlab.crystal.symbols import typographic
 from mirrorlab.desktop.angle_text import plainly_typed
 from mirrorlab.desktop.bench_parts import LineField
 from mirrorlab.desktop.crystal.answered_section import AnsweredSection
@@ -95,7 +94,9 @@ class FitSection(AnsweredSection):
         pairs = self.document.arrangement.pair_names
         replaced = texts == state.fit_texts and not self._in_triangle(texts)
         typed = "  ".join(f"{name}\u00a0{text}" for name, text in zip(pairs, texts, strict=True))
-        self.measured.setText(f"Measured were {typed}" if replaced else "Those of the triangle, such as 59.8(3).")
+        self.measured.setText(
+            f"Measured were {typed}" if replaced else "Those of the triangle, such as 59.8(3)."
+        )
         self.back.setVisible(replaced)
         if self.sigma.text().strip() != state.fit_sigma:
             self.sigma.setText(state.fit_sigma)
@@ -214,17 +215,21 @@ def _told(found: Fit) -> str:
 
 
 def _probability(value: float) -> str:
-    return f"{value:.2f}" if value >= 0.005 else f"{value:.0e}" if value > 0 else "0"
+    return f"= {value:.2f}" if value >= 0.01 else f"= {value:.3f}" if value >= 0.001 else "< 0.001"
 
 
 def _pulls(one: FitCandidate, pairs: list[str]) -> str:
     pulls = [
-        f"{pair} {'exact' if pull is None else f'{pull:+.1f}σ'}{' (180° − θ)' if other else ''}"
+        f"{pair}\u00a0{'exact' if pull is None else f'{pull:+.1f}σ'}{' (180° − θ)' if other else ''}"
         for pair, pull, other in zip(pairs, one.pulls, one.supplements, strict=True)
     ]
     shown = "  ".join(pulls[:6]) + (" …" if len(pulls) > 6 else "")
     misfit = f"; misfit {one.misfit}" if one.misfit else ""
-    return f"χ² {one.chi_squared:.3g}   {shown}{misfit}".replace("-", "−")
+    return f"χ² {_tidy(one.chi_squared)}   {shown}{misfit}".replace("-", "−")
+
+
+def _tidy(chi_squared: float) -> str:
+    return f"{chi_squared:.3g}" if chi_squared < 1000 else f"{chi_squared:,.0f}"
 
 
 def candidate_columns(found: Fit) -> list[Column]:
@@ -232,10 +237,14 @@ def candidate_columns(found: Fit) -> list[Column]:
     rows = found.candidates
     columns = [
         Column("rank", np.arange(1, len(rows) + 1)),
-        Column("group", [typographic(one.symbol) for one in rows], text=True),
+        Column("group", [one.symbol for one in rows], text=True),
         Column("angles", [one.angle_text for one in rows], text=True),
-        Column("χ²", np.array([one.chi_squared for one in rows]), lambda v: f"{v:.4g}"),
-        Column("probability", np.array([one.probability for one in rows]), lambda v: f"{v:.3g}"),
+        Column("χ²", np.array([one.chi_squared for one in rows]), _tidy),
+        Column(
+            "probability",
+            np.array([one.probability for one in rows]),
+            lambda v: _probability(v).removeprefix("= "),
+        ),
         Column("misfit", [one.misfit or "" for one in rows], text=True),
     ]
     for k, measured in enumerate(found.measured):

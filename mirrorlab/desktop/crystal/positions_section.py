@@ -231,7 +231,7 @@ def position_columns(positions: tuple[Position, ...]) -> list[Column]:
 
     return [
         Column("multiplicity", np.array([row.multiplicity for row in positions])),
-        Column("site symmetry", [typographic(row.site_symmetry) for row in positions], text=True),
+        Column("site symmetry", [row.site_symmetry for row in positions], text=True),
         Column("order", np.array([row.site_order for row in positions]), hint="of the site symmetry"),
         Column("place", [row.place for row in positions], text=True),
         Column("coordinates", [coordinates(row) for row in positions], text=True),

@@ -23,8 +23,12 @@ FULL = CrystalState(
     in_cell=True,
     list_text="label,x,y,z\nA,1,0,0\n",
     list_name="poles.csv",
-    list_tolerance=0.25,
-    refine=False,
+    list_tolerance="0.25",
+    orientation="searched",
+    as_poles=True,
+    list_in_cell=True,
+    fit_sigma="0.3",
+    fit_texts=("59.8(3)",),
 )
 
 
@@ -42,7 +46,8 @@ def test_plain_json_and_back():
         ({"constants": ["4", "4"]}, "constants"),
         ({"tolerance": "wide"}, "tolerance"),
         ({"tolerance": True}, "tolerance"),
-        ({"refine": 1}, "refine"),
+        ({"as_poles": 1}, "as_poles"),
+        ({"orientation": "sideways"}, "orientation"),
         ({"group": 7}, "group"),
     ],
 )
