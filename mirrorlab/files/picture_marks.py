@@ -27,7 +27,13 @@ def tint(name: str, alpha: float = 1.0) -> QColor:
 
 
 def draw_marks(
-    painter: QPainter, places: NDArray[np.float64], role: Role, symbol: str, look: Look, scale: float = 1.0
+    painter: QPainter,
+    places: NDArray[np.float64],
+    role: Role,
+    symbol: str,
+    look: Look,
+    scale: float = 1.0,
+    turns: NDArray[np.float64] | None = None,
 ) -> None:
     """Draw the marks of points of one role.
 
@@ -39,6 +45,8 @@ def draw_marks(
         Of an axis: "2", "3", "-3" …; of a point in a stereogram: "+" above the plane, "o" below it.
     scale : float
         Pixels for one of the look's pixels.
+    turns : ndarray, shape (N,), optional
+        By how many degrees, clockwise, the two-cornered mark of a twofold axis is turned from upright.
     """
     ink = _mark_tint(look, role)
     if role is not Role.SEED and symbol in ("+", "o", ""):
@@ -52,9 +60,15 @@ def draw_marks(
             scale * _relative_size(role) * (RING if symbol == "o" else 1.0),
         )
         return
-    for x, y in places.tolist():
+    for k, (x, y) in enumerate(places.tolist()):
         if role is Role.SEED:
             _seed(painter, QPointF(x, y), look, scale)
+        elif turns is not None and symbol == "2":
+            painter.save()
+            painter.translate(x, y)
+            painter.rotate(float(turns[k]))
+            _axis(painter, QPointF(0, 0), symbol, ink, look, scale)
+            painter.restore()
         else:
             _axis(painter, QPointF(x, y), symbol, ink, look, scale)
 

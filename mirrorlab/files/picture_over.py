@@ -61,8 +61,14 @@ def _paint_points(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
             if not ghost and (sight.selection or sight.hover is not None):
                 _ring_chosen(painter, prepared, sight, seen, which)
             size = sight.scale * (crowd if block.role in DOT_ROLES and block.role is not Role.SEED else 1.0)
-            draw_marks(painter, seen[which, :2], block.role, block.symbol, look, size)
+            turns = _along_axes(positions[which]) if prepared.drawing.flat else None
+            draw_marks(painter, seen[which, :2], block.role, block.symbol, look, size, turns)
     painter.setOpacity(1.0)
+
+
+def _along_axes(positions: Array) -> Array:
+    """By how many degrees, clockwise from upright, the axes through these places of a stereogram are seen to run."""
+    return np.asarray(np.degrees(np.arctan2(positions[:, 0], positions[:, 1])))
 
 
 LEAST_MARK = 0.42
