@@ -196,7 +196,7 @@ def kernel_arguments(assembly: Assembly, scene: Scene, camera: Camera) -> tuple[
         (body.kinds, mirrors, window_planes(assembly, body)),
         (_tuples(products), _tuples(slants), _tuples(losses), np.float32(scene.joint)),
         (shape, *size, *_floats(np.array(_fit(place.width, place.height, texture.aspect)))),
-        (texture.texels, texture.starts, texture.widths, texture.heights),
+        (texture.texels.reshape(-1), texture.starts, texture.widths, texture.heights),
         lights[:5],
         srgb_bytes(),
         np.float32(FAINTEST),
