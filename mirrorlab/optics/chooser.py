@@ -112,6 +112,7 @@ def choices(
     largest: int = 12,
     kinds: Sequence[str] = ("wedge", "corner", "tube"),
     whole: bool = False,
+    progress: Callable[[int, int], object] | None = None,
 ) -> tuple[Choice, ...]:
     """Every closing assembly for one opening.
 
@@ -128,6 +129,8 @@ def choices(
     kinds : sequence of str
     whole : bool
         Only those with one chamber between the mirrors, whose images fit together for every eye.
+    progress : callable, optional
+        Called with (done, total); a return of False ends the listing there.
 
     Raises
     ------
@@ -146,11 +149,13 @@ def choices(
         raise ClosingError(msg)
     found = closing_assemblies(largest)
     bounces = min(DEEPEST, int(math.log(FAINTEST) / math.log(reflectance) + 1e-9))
-    return tuple(
-        sized(closing, opening, length or 2 * opening, bounces)
-        for closing in found
-        if closing.kind in kinds and (closing.chambers == 1 or not whole)
-    )
+    wanted = [c for c in found if c.kind in kinds and (c.chambers == 1 or not whole)]
+    made = []
+    for done, closing in enumerate(wanted):
+        if progress is not None and progress(done, len(wanted)) is False:
+            break
+        made.append(sized(closing, opening, length or 2 * opening, bounces))
+    return tuple(made)
 
 
 def nearest(found: Sequence[Choice], images: int, count: int = 6) -> tuple[Choice, ...]:

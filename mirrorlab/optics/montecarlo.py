@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -16,6 +17,10 @@ Array = NDArray[np.float64]
 SPREADS = ("normal", "uniform")
 MOST_DRAWS = 1_000_000
 BATCH = 20_000
+
+
+class SeamsStopped(Exception):
+    """The progress callback asked to stop."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -86,6 +91,7 @@ def seam_chances(
     seed: int = 1,
     distance: str | float = 1000.0,
     bins: int = 24,
+    progress: Callable[[int, int], object] | None = None,
 ) -> SeamChances:
     """Draw errors of all angles at random and return the seams.
 
@@ -98,6 +104,8 @@ def seam_chances(
         Assemblies, up to `MOST_DRAWS`.
     seed : int
         The same seed gives the same assemblies.
+    progress : callable, optional
+        Called with (drawn, draws); a return of False stops.
 
     Notes
     -----
@@ -108,6 +116,8 @@ def seam_chances(
     ------
     AssemblyError
         A size, spread or number that cannot be drawn.
+    SeamsStopped
+        `progress` returned False.
     """
     if spread not in SPREADS:
         msg = f"spread {spread!r}: must be 'normal' or 'uniform'"
@@ -123,6 +133,9 @@ def seam_chances(
     n = len(intent.pairs)
     parts = []
     for start in range(0, draws, BATCH):
+        if progress is not None and progress(start, draws) is False:
+            msg = f"stopped after {start:,} of {draws:,} assemblies"
+            raise SeamsStopped(msg)
         many = min(BATCH, draws - start)
         if spread == "normal":
             errors = rng.normal(0.0, math.radians(size), (many, n))
