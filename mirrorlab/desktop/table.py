@@ -125,6 +125,7 @@ class TablePanel(QFrame):
         self.save = button("Save as CSV", "quiet", "Save all rows as CSV")
         self.fold = button("Fold", "quiet", "Fold the table away (Ctrl+T)")
         self._titles: tuple[str, ...] = ()
+        self._widths: dict[tuple[str, ...], list[int]] = {}
         self._linking = False
         self._lay_out()
         self.copy.clicked.connect(self.copy_rows)
@@ -222,11 +223,14 @@ class TablePanel(QFrame):
         if titles == self._titles:
             return
         self._titles = titles
-        self.rows.resizeColumnsToContents()
         head = self.rows.horizontalHeader()
         head.setStretchLastSection(False)
-        for i in range(len(titles)):
-            head.resizeSection(i, min(MOST_WIDE, max(MOST_NARROW, head.sectionSize(i))))
+        if titles not in self._widths:  # measured once: asking every cell again takes longer than all the rest
+            self.rows.resizeColumnsToContents()
+            sizes = [head.sectionSize(i) for i in range(len(titles))]
+            self._widths[titles] = [min(MOST_WIDE, max(MOST_NARROW, size)) for size in sizes]
+        for i, width in enumerate(self._widths[titles]):
+            head.resizeSection(i, width)
         head.setStretchLastSection(True)
 
     def _picked(self) -> None:

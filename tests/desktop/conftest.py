@@ -89,6 +89,9 @@ def one_window(qapp: QApplication, tmp_path_factory: pytest.TempPathFactory) -> 
 def window(one_window: Window, settings: QSettings) -> Iterator[Window]:
     """The real window in sight, as it starts, with settings of this test alone."""
     one_window.settings = settings
+    if not one_window.isActiveWindow():
+        one_window.activateWindow()
+        assert QTest.qWaitForWindowActive(one_window, 10_000)
     yield one_window
     clear(one_window)
 
