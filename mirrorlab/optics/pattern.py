@@ -11,6 +11,9 @@ from numpy.typing import NDArray
 Array = NDArray[np.float64]
 Bytes = NDArray[np.uint8]
 
+SEED = 11
+"""Of the chance that sets and tints the shards: chosen by eye."""
+
 SIDE = 768
 """Pixels along a drawn card."""
 
@@ -74,14 +77,32 @@ def _cover(picture: Array, colour: Array | str, part: Array) -> Array:
     return picture + (shade - picture) * np.clip(part, 0, 1)[..., None]
 
 
-def _lead_and_cells(x: Array, y: Array, seeds: Array) -> tuple[NDArray[np.int64], Array]:
-    """Nearest seed of each pixel, and how far the pixel is from the border to the next one's cell."""
-    from scipy.spatial import cKDTree
+def _lead_and_cells(x: Array, y: Array, seeds: Array, step: float) -> tuple[NDArray[np.int32], Array]:
+    """Nearest seed of each pixel, and how far the pixel is from the border to the next one's cell.
 
-    away, order = cKDTree(seeds).query(np.column_stack([x.ravel(), y.ravel()]), k=2)
-    apart = np.linalg.norm(seeds[order[:, 0]] - seeds[order[:, 1]], axis=1)
-    border = (away[:, 1] ** 2 - away[:, 0] ** 2) / (2 * apart)
-    return order[:, 0].reshape(x.shape), border.reshape(x.shape)
+    `seeds` has shape (n, n, 2): seed (i, j) is near ``step`` times (j − n//2, i − n//2).
+    """
+    n = len(seeds)
+    spots = seeds.reshape(-1, 2).astype(np.float32)
+    row = np.clip(np.round(y / step).astype(np.int32) + n // 2, 2, n - 3)
+    column = np.clip(np.round(x / step).astype(np.int32) + n // 2, 2, n - 3)
+    middle, across, along = row * n + column, x.astype(np.float32), y.astype(np.float32)
+    best = np.full(x.shape, np.inf, dtype=np.float32)
+    second, cell, other = best.copy(), middle.copy(), middle.copy()
+    for i in range(-2, 3):
+        for j in range(-2, 3):
+            number = middle + (i * n + j)
+            square = (across - spots[number, 0]) ** 2 + (along - spots[number, 1]) ** 2
+            closer = square < best
+            between = (square < second) & ~closer
+            np.copyto(other, cell, where=closer)
+            np.copyto(second, best, where=closer)
+            np.copyto(cell, number, where=closer)
+            np.copyto(best, square, where=closer)
+            np.copyto(other, number, where=between)
+            np.copyto(second, square, where=between)
+    apart = np.linalg.norm(spots[cell] - spots[other], axis=-1)
+    return cell, ((second - best) / (2 * apart)).astype(np.float64)
 
 
 def shards() -> Array:
@@ -89,12 +110,16 @@ def shards() -> Array:
 
     No turn and no reflection takes it to itself, so every image tells which way it lies.
     """
-    rng = np.random.default_rng(1871)
+    rng = np.random.default_rng(SEED)
     x, y = _grid(SIDE, SIDE)
-    lattice = np.stack(np.meshgrid(np.arange(-5, 6), np.arange(-5, 6)), axis=-1).reshape(-1, 2) * 0.27
-    lattice[:, 0] += 0.135 * (np.round(lattice[:, 1] / 0.27) % 2)
-    seeds = lattice + rng.uniform(-0.12, 0.12, lattice.shape)
-    cell, border = _lead_and_cells(x, y, seeds)
+    step, places = 0.27, np.arange(-7, 8)
+    lattice = np.stack(np.meshgrid(places, places), axis=-1) * step
+    lattice[1::2, :, 0] += step / 2
+    lattice += rng.uniform(-0.12, 0.12, lattice.shape)
+    # A few rows at a time: what is worked on then stays in the processor's cache.
+    parts = [_lead_and_cells(x[k : k + 32], y[k : k + 32], lattice, step) for k in range(0, SIDE, 32)]
+    cell, border = (np.concatenate(part) for part in zip(*parts, strict=True))
+    seeds = lattice.reshape(-1, 2)
     drift = (seeds @ np.array([0.8, -0.45]) + 1.3) / 2.6 * (len(GLASS) - 1) + rng.normal(0, 1.7, len(seeds))
     tints = np.array([_rgb(GLASS[round(k) % len(GLASS)]) for k in drift])
     glow = rng.uniform(0.78, 1.08, len(seeds))
