@@ -169,6 +169,11 @@ class ReflectionGroup:
         if self.order > limit:
             what = f"elements of {'x'.join(self.families)}"
             raise TooLarge(what, self.order, self.order * d * d * 8, limit)
+        return self._elements
+
+    @cached_property
+    def _elements(self) -> tuple[Array, NDArray[np.int64]]:
+        d = self.dimension
         inside = self.corners.sum(axis=0) if self.rank else np.zeros(d)
         steps = walk(self.simple, inside, self.order)
         matrices = np.empty((self.order, d, d))
