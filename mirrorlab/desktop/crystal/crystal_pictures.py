@@ -15,7 +15,7 @@ from mirrorlab.desktop.crystal.crystal_state import CrystalState, crystal_state
 from mirrorlab.desktop.crystal.libraries import LOADING, loaded
 from mirrorlab.desktop.crystal.workings import SAME_PLACE, Working, alignment, solid_of, working_of
 from mirrorlab.desktop.document import Document
-from mirrorlab.drawing.model import Drawing, Key, Line, Points
+from mirrorlab.drawing.model import Drawing, Key, Label, Line, Points, Role
 
 if TYPE_CHECKING:
     from mirrorlab.drawing.stereogram import StereogramOptions
@@ -24,6 +24,10 @@ Array = NDArray[np.float64]
 
 SETTING_AXIS = "setting axis"
 """Kind of the keys of the axes x, y, z in the solid's picture, apart from those of symmetry axes."""
+
+
+LETTER_PART = 0.6
+"""How far along the rim the letter of a mirror stands that lies in the plane of the picture."""
 
 
 def stereogram(document: Document) -> Drawing:
@@ -115,6 +119,8 @@ def seed_in_setting(document: Document, work: Working) -> Array | None:
 
 def _linked(document: Document, work: Working, drawing: Drawing) -> Drawing:
     """The same picture with the keys of the picture in space, so that both share what is chosen."""
+    from mirrorlab.drawing.stereogram import LETTER_AT
+
     mirrors, images = mirror_keys(document, work), image_keys(document, work)
 
     def key_of(key: Key) -> Key:
@@ -122,9 +128,19 @@ def _linked(document: Document, work: Working, drawing: Drawing) -> Drawing:
             return mirrors[key[1]]
         return images.get(key[1], ("equivalent", key[1])) if key[0] == "image" else key
 
-    lines: list[Line] = [replace(line, key=key_of(line.key)) for line in drawing.lines]
+    lines: list[Line] = []
+    labels = list(drawing.labels)
+    for line in drawing.lines:
+        key = key_of(line.key)
+        if key[0] != "mirror":
+            lines.append(replace(line, key=key))
+            continue
+        lines.append(replace(line, key=key, role=Role.TYPED_MIRROR, index=key[1], weight=1.0))
+        spot = line.points[int(LETTER_PART * len(line.points)) if line.closed else 0]
+        letter = document.arrangement.letters[key[1]]
+        labels.append(Label(letter, LETTER_AT * spot, Role.TYPED_MIRROR, key, key[1]))
     points: list[Points] = [replace(one, keys=tuple(key_of(k) for k in one.keys)) for one in drawing.points]
-    return replace(drawing, lines=tuple(lines), points=tuple(points))
+    return replace(drawing, lines=tuple(lines), points=tuple(points), labels=tuple(labels))
 
 
 def mirror_keys(document: Document, work: Working) -> tuple[Key, ...]:

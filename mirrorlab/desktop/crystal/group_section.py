@@ -56,6 +56,7 @@ class GroupSection(Section):
         self.facts = FactRows()
         self.put = button("Use its mirrors", "tight", "Put the mirrors of this group into the triangle")
         self._listed: tuple[str, ...] = ()
+        self._shown: tuple[object, ...] = ()
         self._lay_out()
         self.field.returnPressed.connect(self._take)
         self.field.textEdited.connect(lambda _: self._say(""))
@@ -83,13 +84,20 @@ class GroupSection(Section):
     # -- showing -----------------------------------------------------------------------------------
 
     def refresh(self) -> None:
+        now = (self.document.finding, self.state.group, self.state.poles)
+        if now == self._shown:
+            return  # another seed is no reason to look for groups
+        self._shown = now
         work, why = self.working()
         self._show_candidates(work)
         self._say(why if self.state.group else "")
         if not self.field.hasFocus():
             self.field.setText("" if work is None or work.own else work.group.setting)
         self.facts.show_facts({} if work is None else facts_of(work))
-        self.put.setVisible(work is not None and not work.own and len(work.group.mirrors) > 1)
+        more = work is not None and (
+            work.rotation is None or len(work.group.mirrors) != self.document.finding.mirror_count
+        )
+        self.put.setVisible(more and work is not None and len(work.group.mirrors) > 1)
         self._show_rows(work, why)
 
     def _show_candidates(self, work: Working | None) -> None:
@@ -186,6 +194,8 @@ class GroupSection(Section):
         except CrystalError as error:
             self._say(str(error))
             return
+        self._say("")
+        self._shown = ()
         self.work_with(group.setting)
         self.refresh()
 

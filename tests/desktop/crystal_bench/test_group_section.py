@@ -7,6 +7,7 @@ from PySide6.QtTest import QTest
 
 from mirrorlab.desktop.crystal.crystal_state import crystal_state
 from mirrorlab.desktop.symbols import Run, hermann_mauguin
+from mirrorlab.drawing.model import Role
 from mirrorlab.mirrors import Arrangement
 
 
@@ -125,3 +126,26 @@ def test_overbars_stand_over_the_digits_they_belong_to():
     assert hermann_mauguin("-42m") == (Run("4", barred=True), Run("2"), Run("m", slanted=True))
     assert hermann_mauguin("-122m")[0] == Run("12", barred=True)
     assert [run.barred for run in hermann_mauguin("m-3-5")] == [False, True, True]
+
+
+def test_typed_mirrors_keep_letters_and_keys_in_another_working_group(window, section, put):
+    put(["90"])
+    group = section("Group")
+    group.work_with("-42m")
+    window.stage.left.choose("Stereogram")
+    drawing = window.stage.left.drawing
+    typed = [line for line in drawing.lines if line.role is Role.TYPED_MIRROR]
+    assert sorted(line.key for line in typed) == [("mirror", 0), ("mirror", 1)]
+    assert {one.text for one in drawing.labels} >= {"a", "b"}
+    images = {key for one in drawing.points for key in one.keys if key[0] == "image"}
+    assert images == {("image", k) for k in range(4)}
+    assert {key[0] for one in drawing.points for key in one.keys} >= {"image", "axis"}
+
+
+def test_mirrors_that_are_there_already_are_not_offered(section, put):
+    put(["60"])
+    group = section("Group")
+    group.work_with("-3m")
+    assert not group.put.isVisible()
+    group.work_with("6mm")
+    assert group.put.isVisible()
