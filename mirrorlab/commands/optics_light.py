@@ -176,7 +176,7 @@ def assembly_of(args: argparse.Namespace, arrangement: Arrangement) -> Assembly:
     """The assembly that the words say; usual dimensions where none were typed."""
     import numpy as np
 
-    from mirrorlab.optics.build import assembly_for, assembly_from
+    from mirrorlab.optics.build import assembly_for, with_angles
     from mirrorlab.optics.lengths import AssemblyError
 
     kind = kind_of(arrangement)
@@ -191,15 +191,7 @@ def assembly_of(args: argparse.Namespace, arrangement: Arrangement) -> Assembly:
         dimensions["look"] = args.look
     assembly = assembly_for(arrangement, **dimensions)
     if args.actual is not None:
-        given = dict(assembly.dimensions)
-        if kind == "wedge":
-            if len(args.actual) != 1:
-                msg = f"--actual: {len(args.actual)} angles for one edge"
-                raise UsageError(msg)
-            given["angle"] = args.actual[0]
-        else:
-            given["angles"] = args.actual
-        assembly = assembly_from(given)
+        assembly = with_angles(assembly, args.actual)
     if args.eye is not None or args.target is not None or getattr(args, "field", None) is not None:
         for name in ("eye", "target"):
             if getattr(args, name) is not None and len(getattr(args, name)) != 3:

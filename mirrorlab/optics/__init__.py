@@ -21,6 +21,7 @@ _HOMES: dict[str, str] = {
     "parse_length": "lengths",
     "tube": "build_tube",
     "wedge": "build_wedge",
+    "with_angles": "build",
     # images
     "Image": "images",
     "ImageCount": "images",

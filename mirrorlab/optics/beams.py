@@ -10,7 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from typing import TypeAlias
+from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
@@ -112,7 +112,7 @@ def beams_from(
     cones, counts = np.zeros((1, 0, 3)), np.zeros(1, dtype=np.int64)
     total, stopped = 1, ""
     for depth in range(1, most_bounces + 1):
-        new: list[tuple[Array, ...]] = []
+        new: list[tuple[Any, ...]] = []
         for panel in range(len(normals)):
             ask = last != panel
             bright = brightness * reflectances[panel] >= faintest
@@ -173,7 +173,8 @@ def beams_from(
             break
     columns = [np.concatenate([row[k] for row in rows]) for k in range(7)]
     parent, mirror, bounces = (column.astype(np.int64) for column in columns[:3])
-    return Beams(parent, mirror, bounces, *columns[3:], not stopped, stopped)
+    brightness, turns, shifts, width = columns[3:]
+    return Beams(parent, mirror, bounces, brightness, turns, shifts, width, not stopped, stopped)
 
 
 def _padded(outlines: list[Array]) -> Array:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from typing import TYPE_CHECKING, Any
 
 from mirrorlab.optics.assembly import Assembly
@@ -67,6 +67,29 @@ def assembly_from(dimensions: Mapping[str, Any]) -> Assembly:
             raise AssemblyError(msg, "kind") from error
         msg = f"{', '.join(strange)}: no dimension of a {kind}; it has {', '.join(sorted(known))}"
         raise AssemblyError(msg, strange[0]) from error
+
+
+def with_angles(assembly: Assembly, degrees: Sequence[float]) -> Assembly:
+    """Return an assembly of the same dimensions whose mirrors stand at other angles, to see what an error does.
+
+    Parameters
+    ----------
+    degrees : sequence of float
+        Exactly as given, in the order of the angles that made the assembly; one for a wedge.
+
+    Raises
+    ------
+    AssemblyError
+        Another number of angles (`field` is "actual"), or angles that cannot stand.
+    """
+    given = dict(assembly.dimensions)
+    typed = given.get("angles", [None])
+    count = len(typed) if isinstance(typed, list) else 1
+    if len(degrees) != count:
+        msg = f"{len(degrees)} actual angles for {count}: give as many as made the {assembly.kind}"
+        raise AssemblyError(msg, "actual")
+    actual: object = float(degrees[0]) if assembly.kind == "wedge" else [float(value) for value in degrees]
+    return assembly_from(given | {"angle" if assembly.kind == "wedge" else "angles": actual})
 
 
 def _mirror_from(value: Any) -> str | MirrorSpec:

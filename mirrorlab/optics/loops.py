@@ -20,6 +20,8 @@ from mirrorlab.optics.shapes import corner_normals
 
 Array = NDArray[np.float64]
 
+LETTERS = ("a", "b", "c")
+
 STEP = 1e-5
 """Radians by which an angle is changed to see how fast images turn: the rest is of its square, 1e-10."""
 
@@ -81,7 +83,7 @@ def corner_loops(angles: tuple[float, float, float]) -> Loops:
     every, chosen = np.concatenate(forms), np.concatenate(pairs)
     _, first = np.unique(np.round(every.reshape(-1, 9), 4), axis=0, return_index=True)
     first = np.array([k for k in first if np.abs(every[k]).max() > 1e-6], dtype=np.int64)
-    words = tuple((beams.word(int(i), "abc"), beams.word(int(j), "abc")) for i, j in chosen[first])
+    words = tuple((beams.word(int(i), LETTERS), beams.word(int(j), LETTERS)) for i, j in chosen[first])
     return Loops(words, every[first])
 
 
@@ -135,7 +137,7 @@ def parted(
         chords = np.linalg.norm(those[:, None] - those[None], axis=(2, 3)) / (2 * math.sqrt(2.0))
         i, j = np.unravel_index(int(chords.argmax()), chords.shape)
         if chords[i, j] > best[0]:
-            best = (float(chords[i, j]), beams.word(group[i], "abc"), beams.word(group[j], "abc"))
+            best = (float(chords[i, j]), beams.word(group[i], LETTERS), beams.word(group[j], LETTERS))
     return _size(best[0]), best[1], best[2]
 
 

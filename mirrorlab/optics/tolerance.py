@@ -250,7 +250,7 @@ def _seamless(kind: str, degrees: list[float]) -> tuple[Fraction, ...] | None:
     if kind == "corner":
         return None
     if kind == "wedge":
-        tried = [(max(2, round(180 / degrees[0])),)]
+        tried: list[tuple[int, ...]] = [(max(2, round(180 / degrees[0])),)]
     elif len(degrees) == 4:
         tried = [(2, 2, 2, 2)]
     else:

@@ -145,7 +145,7 @@ def test_view_of_a_persons_own_picture(capsys: pytest.CaptureFixture[str], tmp_p
         (["images", "90", "60"], "angles"),
         (["images", "60", "--point", "500,0,0"], "behind mirror"),
         (["images", "60", "--faintest", "2"], "faintest"),
-        (["images", "60", "--actual", "60,61"], "one edge"),
+        (["images", "60", "--actual", "60,61"], "2 actual angles for 1"),
         (["tolerance", "90", "90", "90", "--actual", "90"], "give ab, ac, bc"),
         (["tolerance", "60", "--actual", "90"], "more than 10°"),
         (["tolerance", "60", "--distance", "0"], "distance"),

@@ -179,3 +179,14 @@ def test_the_error_names_the_dimension(field: str, make) -> None:
     with pytest.raises(optics.AssemblyError) as caught:
         make()
     assert caught.value.field == field
+
+
+def test_other_angles_keep_the_dimensions() -> None:
+    corner = optics.with_angles(optics.corner(["90", "60", "45"], 120, truncated=20), [90, 60.5, 45])
+    assert math.degrees(corner.dihedrals[0, 2]) == pytest.approx(60.5)
+    assert corner.mouth[0, 2] == pytest.approx(120)
+    wedge = optics.with_angles(optics.wedge("60", 200, 50, look="into"), [61])
+    assert math.degrees(wedge.dihedrals[0, 1]) == pytest.approx(61)
+    with pytest.raises(optics.AssemblyError) as caught:
+        optics.with_angles(wedge, [60, 61])
+    assert caught.value.field == "actual"
