@@ -149,7 +149,7 @@ def triangle_rank(a: Fraction, b: Fraction, c: Fraction) -> tuple[int, bool]:
     sign = -math.prod(_cosine_sign(x) for x in (s, s - a, s - b, s - c))
     if sign:
         return 3, sign > 0
-    return (2 if a or b or c else 1), True
+    return 2, True  # never 1: three mirrors parallel to one another cannot all face one another
 
 
 def _cosine_sign(fraction: Fraction) -> int:

@@ -24,7 +24,7 @@ MOST_IMAGES = 2_000_000
 """Largest orbit made unless the caller asks for more; three coordinates take about 100 MB then."""
 
 MOST_EXPONENT = 1000
-"""Seeds reach up to 2 to this power: sums of eight of their coordinates then stay finite."""
+"""Seeds reach from 2 to minus this power up to 2 to this power: images then stay finite and keep their digits."""
 
 MOST_LETTERS = 200_000_000
 """Most letters that all words of an orbit may have; two million images have about 60 each at most."""
@@ -149,7 +149,8 @@ def make_orbit(
     Raises
     ------
     OrbitError
-        A seed of another dimension, one that is not finite, or one beyond 2^`MOST_EXPONENT`.
+        A seed of another dimension, one that is not finite, or one out of the reach of
+        `MOST_EXPONENT`.
     TooLarge
         More than `limit` images; the message says how many and the memory.
     OrbitCancelled
@@ -161,8 +162,9 @@ def make_orbit(
         raise OrbitError(msg)
     # Work near 1: squares of very large or small coordinates would overflow or vanish. A power of 2 loses no digit.
     exponent = int(np.frexp(np.abs(seed).max(initial=0.0))[1])
-    if exponent > MOST_EXPONENT:
-        msg = f"seed {seed.tolist()}: coordinates up to {2.0**MOST_EXPONENT:.0e}, so that images stay finite numbers"
+    if abs(exponent) > MOST_EXPONENT:
+        reach = f"{2.0**-MOST_EXPONENT:.0e} and {2.0**MOST_EXPONENT:.0e}"
+        msg = f"seed {seed.tolist()}: the largest coordinate must be 0 or between {reach}, so that images can be told"
         raise OrbitError(msg)
     folded, count = group.fold(np.ldexp(seed, -exponent)[None, :])
     place, walls, moved = snap(group, folded[0])

@@ -125,9 +125,11 @@ def test_size_of_the_seed_does_not_matter(scale):
     assert np.allclose(orbit.points / scale, unit.points, rtol=1e-9, atol=1e-12)
 
 
-def test_a_seed_too_far_out_is_refused():
-    with pytest.raises(OrbitError, match="so that images stay finite"):
-        Arrangement.from_angles(["90", "60", "45"]).orbit(point=[1e305, 1, 1])
+@pytest.mark.parametrize("far", [1e305, -1e308, 1e-305, 5e-324])
+def test_a_seed_out_of_reach_is_refused(far):
+    with pytest.raises(OrbitError, match="so that images can be told"):
+        Arrangement.from_angles(["90", "60", "45"]).orbit(point=[far, 0, 0])
+    assert len(Arrangement.from_angles(["90", "60", "45"]).orbit(point=[1e-320, 0.5, 1.5])) == 24
 
 
 def test_a_seed_outside_is_folded_in_and_says_so():
