@@ -44,6 +44,13 @@ _WHERE = {
     "planes_of": "planes",
     "parse_planes": "planes",
     "lattice_symmetry": "lattice_mirrors",
+    "read_cif": "cif",
+    "parse_cif": "cif",
+    "CrystalFile": "cif",
+    "fit_angles": "fit",
+    "compare_points": "compare",
+    "read_points": "point_lists",
+    "parse_points": "point_lists",
 }
 """Public name → module of this package."""
 

@@ -121,11 +121,16 @@ def ideal_normals(symmetry: Symmetry) -> Array:
     """
     basis = symmetry.cell.primitive_basis @ symmetry.reduced
     _, ideal = ideal_metric(symmetry, basis.T @ basis)
-    own = np.linalg.cholesky(ideal).T
-    left, _, right = np.linalg.svd(basis @ np.linalg.inv(own))
-    turned = left @ right @ own
+    turned = nearest_basis(basis, ideal)
     rows = np.array([m.primitive_plane for m in symmetry.mirrors]).reshape(-1, 3) @ np.linalg.inv(turned)
     return np.asarray(rows / np.linalg.norm(rows, axis=1, keepdims=True))
+
+
+def nearest_basis(basis: Array, metric: Array) -> Array:
+    """Axes (columns) with the products `metric`, turned to lie on those of `basis` as well as they can."""
+    own = np.linalg.cholesky(metric).T
+    left, _, right = np.linalg.svd(basis @ np.linalg.inv(own))
+    return np.asarray(left @ right @ own)
 
 
 def _clean(constants: tuple[float, ...]) -> tuple[float, ...]:

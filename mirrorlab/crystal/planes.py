@@ -234,7 +234,7 @@ def planes_of(
     ----------
     cell : Cell
     planes : sequence of (h, k, l)
-        Up to 15, no two parallel; a common divisor is taken out.
+        No two parallel; a common divisor is taken out.
     most_index : int
         Largest twin index of the rows that are looked for.
     most_obliquity : float

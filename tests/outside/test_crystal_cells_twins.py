@@ -11,6 +11,7 @@ from mirrorlab.crystal.cell import Cell, parse_cell
 from mirrorlab.crystal.indices import IndicesError
 from mirrorlab.crystal.normal_rows import exact_row, normal_rows, row_on, rows_near
 from mirrorlab.crystal.planes import PlanesError, lattice_plane, parse_planes, planes_of
+from mirrorlab.mirrors.normals import MOST_NORMALS
 
 RNG = np.random.default_rng(21)
 CUBIC = (5.0, 5.0, 5.0, 90, 90, 90)
@@ -254,7 +255,7 @@ def test_planes_make_an_arrangement():
         ([(1, 0, 0), (1, 1, 0), (-2, 0, 0)], {}, "planes 1 and 3, (100) and (-100)"),
         ([(1, 0, 0)], {"most_index": 0}, "largest twin index 0"),
         ([(1, 0, 0)], {"most_obliquity": 90.0}, "largest obliquity 90"),
-        ([(k, 1, 0) for k in range(16)], {}, "16 planes"),
+        ([(k, 1, 0) for k in range(MOST_NORMALS + 1)], {}, f"{MOST_NORMALS + 1} planes"),
         ([(1.5, 0, 0)], {}, "whole numbers"),
     ],
 )
