@@ -241,7 +241,7 @@ def pack(work: Any, alive: Any, home: Any, sums: Any) -> Any:
                 gather(work, alive, home, sums)
                 alive -= np.uintp(1)
             if alive > k:
-                for i in range(np.uintp(23)):
+                for i in range(np.uintp(25)):
                     work[ROW * i + k] = work[ROW * i + alive]
                 for c in range(COLOURS):
                     work[TOTAL[0] + ROW * c + k] = work[TOTAL[0] + ROW * c + alive]
@@ -251,14 +251,6 @@ def pack(work: Any, alive: Any, home: Any, sums: Any) -> Any:
     for k in range(alive, whole_eights(alive)):
         hold(work, k)
     return alive
-
-
-@compiled
-def still(work: Any, alive: Any) -> None:
-    """Make the rays that have ended stand still until their packet is packed again."""
-    for k in range(alive):
-        if work[OVER + k] > ZERO:
-            hold(work, k)
 
 
 @compiled
@@ -344,11 +336,8 @@ def trace_rows(
                     count += alive - ended
                     if ended > ZERO:
                         end_rays(work, alive, body, card, spread, texture, lights)
-                    turn(work, eights, products)
-                    if 6 * ended >= alive:
                         alive = pack(work, alive, home, sums)
-                    elif ended > ZERO:
-                        still(work, alive)
+                    turn(work, whole_eights(alive), products)
                 for k in range(alive):
                     gather(work, k, home, sums)
         for row in range(band, min(band + SIDE, last)):
