@@ -11,7 +11,10 @@ from mirrorlab.desktop.work import Work
 LIBRARIES_JOB = "libraries"
 """Name of the job that loads a bench's libraries."""
 
-QUIET_JOBS = frozenset({SUGGESTIONS_JOB, LIBRARIES_JOB})
+EYE_JOB = "eye's view"
+"""Name of the job that traces the view on the stage, many times a second while it is turned."""
+
+QUIET_JOBS = frozenset({SUGGESTIONS_JOB, LIBRARIES_JOB, EYE_JOB})
 """Jobs that take a second at most and say so where their result will stand."""
 
 REST = "Type an angle; drag the seed; point at an image or a chamber to read its word."
