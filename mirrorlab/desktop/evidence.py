@@ -198,8 +198,8 @@ def gram_html(arrangement: Arrangement, finding: Finding) -> str:
 def grounds_html(finding: Finding) -> str:
     """The bounds used, what breaks them, and the numbers of the group."""
     evidence, group = finding.evidence, finding.group
-    lines = [escape(text) for text in evidence.bounds]
-    lines += [f"<b>{escape(text)}</b>" for text in evidence.broken]
+    lines = [escape(text[:1].upper() + text[1:]) + "." for text in evidence.bounds]
+    lines += [f"<b>{escape(text[:1].upper() + text[1:])}.</b>" for text in evidence.broken]
     if evidence.witness is not None:
         one, other, apart = evidence.witness
         lines.append(f"The mirrors <i>{one}</i> and <i>{other}</i> stand only {apart:.4g}° apart.")
@@ -210,6 +210,11 @@ def grounds_html(finding: Finding) -> str:
             f"Exponents {', '.join(map(str, group.exponents))}; their sum is the count of mirrors, "
             f"{group.mirror_count}."
         )
+        for letter, word in zip(group.letters, finding.wall_words, strict=True):
+            if letter != word:
+                lines.append(
+                    f"The chamber's wall <i>{letter}</i> was not typed; it is <i>{escape(word)}</i>."
+                )
         rotations = finding.rotation_group
         name = (
             ""

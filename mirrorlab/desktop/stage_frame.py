@@ -24,7 +24,7 @@ from mirrorlab.desktop.stage import StageView, make_view
 from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.words import describe
-from mirrorlab.drawing.model import Drawing
+from mirrorlab.drawing.model import Drawing, Key
 
 
 class Nothing(QWidget):
@@ -56,11 +56,14 @@ class Pane(QFrame):
     -------
     says(str)
         What is under the pointer, in words; "" when nothing is.
+    pointed(Key or None)
+        What is under the pointer.
     chosen(str)
         Another picture was chosen by the user.
     """
 
     says = Signal(str)
+    pointed = Signal(object)
     chosen = Signal(str)
 
     def __init__(self, document: Document, shelf: Shelf, name: str, parent: QWidget | None = None) -> None:
@@ -180,8 +183,14 @@ class Pane(QFrame):
         if self.view is not None and self.drawing is not None:
             self.view.set_selection(self.document.selection)
 
-    def _hover(self, key: object) -> None:
+    def _hover(self, key: Key | None) -> None:
         self.says.emit(describe(self.document, key))
+        self.pointed.emit(key)
+
+    def point_at(self, key: Key | None) -> None:
+        """Show what the pointer is over in another picture or in the table."""
+        if self.view is not None and self.drawing is not None:
+            self.view.set_hover(key)
 
     def _grab(self) -> None:
         self._gesture = self.document.new_gesture("drag")
@@ -229,9 +238,16 @@ class StageFrame(QFrame):
             pane.says.connect(self.says)
             self.split.addWidget(pane)
             self.split.setStretchFactor(self.split.count() - 1, 1)
+        self.left.pointed.connect(self.right.point_at)
+        self.right.pointed.connect(self.left.point_at)
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.addWidget(self.split)
+
+    def point_at(self, key: Key | None) -> None:
+        """Show what the pointer is over in the table."""
+        for pane in self.panes:
+            pane.point_at(key)
 
     @property
     def panes(self) -> tuple[Pane, ...]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, Signal
+from PySide6.QtCore import QEvent, QItemSelectionModel, QModelIndex, Qt, Signal
 from PySide6.QtGui import QColor, QGuiApplication, QKeyEvent, QKeySequence, QPainter
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -60,12 +60,16 @@ class Rows(QTableView):
     Signals
     -------
     copy_wanted()
+    left()
+        The pointer has gone elsewhere.
     """
 
     copy_wanted = Signal()
+    left = Signal()
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self.setMouseTracking(True)
         self.setShowGrid(False)
         self.setWordWrap(False)
         self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
@@ -86,6 +90,10 @@ class Rows(QTableView):
         self.setSortingEnabled(True)
         self.setItemDelegate(PlainCells(self))
 
+    def leaveEvent(self, event: QEvent) -> None:
+        super().leaveEvent(event)
+        self.left.emit()
+
     def keyPressEvent(self, event: QKeyEvent) -> None:
         if event.matches(QKeySequence.StandardKey.Copy):
             self.copy_wanted.emit()
@@ -103,11 +111,14 @@ class TablePanel(QFrame):
         The user wants the rows in a file.
     says(str)
         A sentence for the status line.
+    pointed(Key or None)
+        What the row under the pointer stands for.
     """
 
     folded = Signal(bool)
     save_wanted = Signal()
     says = Signal(str)
+    pointed = Signal(object)
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -132,6 +143,8 @@ class TablePanel(QFrame):
         self.rows.copy_wanted.connect(self.copy_rows)
         self.save.clicked.connect(self.save_wanted)
         self.fold.clicked.connect(lambda: self.set_folded(self.rows_shown))
+        self.rows.entered.connect(self._point)
+        self.rows.left.connect(lambda: self.pointed.emit(None))
         document.selection_changed.connect(self._show_selection)
 
     def _lay_out(self) -> None:
@@ -243,6 +256,10 @@ class TablePanel(QFrame):
             self._linking = True
             self.document.select(key)
             self._linking = False
+
+    def _point(self, index: QModelIndex) -> None:
+        model = self.rows.model()
+        self.pointed.emit(model.key_of(index.row()) if isinstance(model, RowsModel) else None)
 
     def _show_selection(self) -> None:
         model = self.rows.model()

@@ -97,6 +97,7 @@ class Window(QMainWindow):
         self.benches.shown.connect(self.table.show_bench)
         self.stage.says.connect(self.status.hover)
         self.table.says.connect(self.status.say)
+        self.table.pointed.connect(self.stage.point_at)
         self.table.save_wanted.connect(self.filing.save_rows)
         self.table.folded.connect(self._fold)
         self.mirrors.ways.file_wanted.connect(self.filing.open)
