@@ -37,20 +37,31 @@ class PlainCells(QStyledItemDelegate):
     cells in sight are painted at every keystroke in the triangle."""
 
     INSET = 10
+    WIDE = 12
+    """Pixels that no character is wider than; shorter texts need not be measured."""
+
+    def __init__(self, parent: QWidget) -> None:
+        super().__init__(parent)
+        self._wear()
+        theming().changed.connect(self._wear)
+
+    def _wear(self) -> None:
+        theme = theming().theme
+        self._chosen, self._other = QColor(theme.select), QColor(theme.panel)
+        self._text = QColor(theme.text)
 
     def paint(self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex) -> None:
-        theme = theming().theme
         if option.state & QStyle.StateFlag.State_Selected:
-            painter.fillRect(option.rect, QColor(theme.select))
+            painter.fillRect(option.rect, self._chosen)
         elif index.row() % 2:
-            painter.fillRect(option.rect, QColor(theme.panel))
+            painter.fillRect(option.rect, self._other)
         box = option.rect.adjusted(self.INSET, 0, -self.INSET, 0)
         model = index.model()
         text = model.text_at(index.row(), index.column())
-        if option.fontMetrics.horizontalAdvance(text) > box.width():
+        if self.WIDE * len(text) > box.width() and option.fontMetrics.horizontalAdvance(text) > box.width():
             text = option.fontMetrics.elidedText(text, Qt.TextElideMode.ElideRight, box.width())
         painter.setFont(option.font)
-        painter.setPen(QColor(theme.text))
+        painter.setPen(self._text)
         painter.drawText(box, model.alignment_at(index.column()), text)
 
 
@@ -238,7 +249,9 @@ class TablePanel(QFrame):
         self._titles = titles
         head = self.rows.horizontalHeader()
         head.setStretchLastSection(False)
-        if titles not in self._widths:  # measured once: asking every cell again takes longer than all the rest
+        if (
+            titles not in self._widths
+        ):  # measured once: asking every cell again takes longer than all the rest
             self.rows.resizeColumnsToContents()
             sizes = [head.sectionSize(i) for i in range(len(titles))]
             self._widths[titles] = [min(MOST_WIDE, max(MOST_NARROW, size)) for size in sizes]

@@ -30,6 +30,9 @@ LETTER_PART = 0.6
 """How far along the rim the letter of a mirror stands that lies in the plane of the picture."""
 
 
+SEED: Key = ("image", 0)
+
+
 def stereogram(document: Document) -> Drawing:
     """Mirrors, axes and images or poles of the working group. Raises `NoPicture` where there is none."""
     try:
@@ -139,7 +142,13 @@ def _linked(document: Document, work: Working, drawing: Drawing) -> Drawing:
         spot = line.points[int(LETTER_PART * len(line.points)) if line.closed else 0]
         letter = document.arrangement.letters[key[1]]
         labels.append(Label(letter, LETTER_AT * spot, Role.TYPED_MIRROR, key, key[1]))
-    points: list[Points] = [replace(one, keys=tuple(key_of(k) for k in one.keys)) for one in drawing.points]
+    points: list[Points] = []
+    for one in drawing.points:
+        keys = tuple(key_of(k) for k in one.keys)
+        points.append(replace(one, keys=keys))
+        if SEED in keys and not any(other.role is Role.SEED for other in points):
+            place = one.positions[keys.index(SEED)][None]
+            points.append(Points(Role.SEED, place, (SEED,), one.symbol))
     return replace(drawing, lines=tuple(lines), points=tuple(points), labels=tuple(labels))
 
 
