@@ -51,3 +51,5 @@ def test_two_mirrors_alone_make_a_close_pair(fraction, slow):
     assert apart == pytest.approx(180 / fraction.denominator)
     u, v = named(first, arrangement, slow), named(second, arrangement, slow)
     assert np.degrees(np.arcsin(np.linalg.norm(u - (u @ v) * v))) == pytest.approx(apart, abs=1e-6)
+    letters = sum(c.isalpha() for c in second)
+    assert letters <= fraction.denominator // 2 + 1  # round the shorter way
