@@ -16,7 +16,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
-from math import gcd
+from math import degrees, gcd
 
 import numpy as np
 from numpy.typing import NDArray
@@ -141,9 +141,8 @@ def row_on(cell: Cell, plane: tuple[int, int, int], row: tuple[int, int, int]) -
     along = float(cell.normal(plane) @ (cell.basis @ np.array(row, float)))
     whole = float(np.linalg.norm(cell.basis @ np.array(row, float)))
     angle = float(np.arctan2(np.linalg.norm(off), along / whole))
-    return Row(
-        row, layers, abs(x), np.degrees(angle), 0.0, twin_index(layers) if layers else 0, angle < EXACT
-    )
+    twin = twin_index(layers) if layers else 0
+    return Row(row, layers, abs(x), degrees(angle), 0.0, twin, angle < EXACT)
 
 
 def with_uncertainty(cell: Cell, plane: tuple[int, int, int], row: Row) -> Row:
