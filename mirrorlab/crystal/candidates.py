@@ -154,11 +154,11 @@ def candidates_for(symbol: str) -> Candidates:
     """Point groups with the mirrors of a group: those of "-42m" are the two of mm2; "1" asks for groups without any."""
     group = point_group(symbol)
     normals = group.mirror_normals
-    simple = _independent(normals, group.mirror_subgroup)
+    simple = _independent(normals)
     return candidates_with_mirrors(simple, (), group.mirror_subgroup)
 
 
-def _independent(normals: NDArray, name: GroupName) -> NDArray[np.float64]:
+def _independent(normals: NDArray) -> NDArray[np.float64]:
     """Simple mirrors for a group with these mirrors: those that wall a chamber around a general direction."""
     if not len(normals):
         return normals

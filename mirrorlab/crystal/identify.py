@@ -7,7 +7,6 @@ standard setting and checking that every operation then falls on one.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import lru_cache
 from itertools import product
 
 import numpy as np
@@ -266,11 +265,3 @@ def shortest_turn(start: ArrayLike, end: ArrayLike) -> NDArray[np.float64]:
         return 2 * np.outer(side, side) - np.eye(3)
     cross = np.array([[0, -axis[2], axis[1]], [axis[2], 0, -axis[0]], [-axis[1], axis[0], 0]])
     return np.eye(3) + cross + cross @ cross / (1 + cosine)
-
-
-@lru_cache(maxsize=256)
-def standard_elements(name: GroupName) -> tuple[Element, ...]:
-    """The symmetry directions of a type in its standard setting."""
-    from mirrorlab.crystal.pointgroups import point_group
-
-    return elements_of(point_group(name).cartesian)

@@ -12,7 +12,7 @@ from functools import cached_property, lru_cache
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from mirrorlab.crystal.closure import LARGEST_ORDER, generate, matrix_keys
+from mirrorlab.crystal.closure import LARGEST_ORDER, generate
 from mirrorlab.crystal.generators import IN_CRYSTAL_AXES, SAME_SETTING, THE_32, cartesian_generators
 from mirrorlab.crystal.operations import CrystalError, Operation, operation
 from mirrorlab.crystal.symbols import GroupName, SymbolError, parse_symbol, typographic
@@ -261,8 +261,3 @@ def without_lattice(largest_order: int = 120) -> tuple[GroupName, ...]:
     names |= {GroupName("I"), GroupName("Ih")}
     fitting = (name for name in names if not name.crystallographic and name.order <= largest_order)
     return tuple(sorted(fitting, key=lambda name: (name.order, name.family, name.n)))
-
-
-def same_operations(first: NDArray, second: NDArray) -> bool:
-    """Whether two stacks of matrices are the same set within round-off."""
-    return len(first) == len(second) and set(matrix_keys(first)) == set(matrix_keys(second))

@@ -9,7 +9,7 @@ from mirrorlab.drawing.model import Drawing, Faces, Label, Line, Role
 from mirrorlab.drawing.ordering import cut_loop
 from mirrorlab.drawing.prism import images_of
 from mirrorlab.drawing.sphere import plane_axes
-from mirrorlab.mirrors import Arrangement, Finding
+from mirrorlab.mirrors import Arrangement
 
 Array = NDArray[np.float64]
 
@@ -47,7 +47,7 @@ def cell_walls(normals: Array, half: float = HALF) -> list[Array]:
     return walls
 
 
-def cell_drawing(arrangement: Arrangement, finding: Finding) -> Drawing:
+def cell_drawing(arrangement: Arrangement) -> Drawing:
     """The cell with its typed walls, and outlines of its first images."""
     normals = arrangement.normals
     assert normals is not None

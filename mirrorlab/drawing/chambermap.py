@@ -16,9 +16,6 @@ Array = NDArray[np.float64]
 SIZE = 1.0
 """Half the map's larger side."""
 
-WIDEST_SECTOR = 1.45
-"""Radians to either side of a sector's middle that the map shows; a half-plane is cut off a little earlier."""
-
 
 class MapError(ValueError):
     """A chamber that cannot be drawn on paper."""

@@ -64,7 +64,7 @@ def tube_drawing(arrangement: Arrangement, finding: Finding, options: SpaceOptio
     if normals.shape[1] == 3:
         from mirrorlab.drawing.cell import cell_drawing
 
-        return cell_drawing(arrangement, finding)
+        return cell_drawing(arrangement)
     normals = np.column_stack([normals, np.zeros((len(normals), 2 - normals.shape[1]))])
     return _section(arrangement, finding, normals, options)
 

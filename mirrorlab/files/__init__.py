@@ -1,1 +1,1 @@
-
+"""What leaves and enters: arrangement files, tables, pictures, meshes, cut sheets and reports."""

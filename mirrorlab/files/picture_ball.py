@@ -27,7 +27,7 @@ def paint_ball(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
     if not prepared.has_ball:
         return
     look, outline = sight.look, ball_outline(sight)
-    painter.setBrush(color_of(look, 0.5 * (rgb(look.silver_light) + rgb(look.silver_dark)), look.ball_alpha))
+    painter.setBrush(color_of(0.5 * (rgb(look.silver_light) + rgb(look.silver_dark)), look.ball_alpha))
     painter.drawEllipse(outline)
     towards, height = sight.camera.axes[2], outline_height(sight.camera)
     seen, front = [], []
@@ -44,7 +44,7 @@ def paint_ball(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
             continue
         faces = prepared.drawing.faces[patch.block]
         base, alpha = tint_of(look, faces)
-        painter.setBrush(color_of(look, base, alpha))
+        painter.setBrush(color_of(base, alpha))
         if not patch.loops:
             painter.drawEllipse(outline)  # all of the ball is one face
         elif any(front[patch.block][loop].any() for loop in patch.loops):

@@ -45,12 +45,13 @@ def paint_drawing(painter: QPainter, prepared: Prepared, sight: Sight, cut: Stro
 
 
 def paint_flat_faces(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
+    """Paint the faces of a drawing on paper, in the order they are given, in their plain tints."""
     painter.setPen(Qt.PenStyle.NoPen)
     for patch in prepared.patches:
         faces = prepared.drawing.faces[patch.block]
         base, alpha = tint_of(sight.look, faces)
         seen = sight.project(faces.vertices)
-        color = color_of(sight.look, base, alpha)
+        color = color_of(base, alpha)
         painter.setBrush(color)
         if alpha >= 1:
             painter.setPen(QPen(color, 0.6 * sight.scale))  # closes the hairline between neighbours
@@ -59,6 +60,7 @@ def paint_flat_faces(painter: QPainter, prepared: Prepared, sight: Sight) -> Non
 
 
 def paint_faces(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
+    """Paint the faces of a drawing in space from back to front, the ball between those behind and before it."""
     painter.setPen(Qt.PenStyle.NoPen)
     pieces = _ordered(prepared, sight.camera.eye)
     if not prepared.has_ball:
@@ -91,7 +93,7 @@ def _fill_plane(painter: QPainter, prepared: Prepared, sight: Sight, patch: Patc
     normal = sight.camera.axes @ patch.normal
     normal = normal if normal[2] >= 0 else -normal
     base = mixed(base, rgb(sight.look.shade), plane_shade(sight.look, normal))
-    color = color_of(sight.look, base, alpha)
+    color = color_of(base, alpha)
     painter.setBrush(color)
     # A pen of the same tint closes the hairline between neighbours.
     painter.setPen(QPen(color, 0.6 * sight.scale) if alpha >= 1 else QPen(Qt.PenStyle.NoPen))

@@ -72,7 +72,7 @@ def path_of(loops: Iterable[Array]) -> QPainterPath:
     return path
 
 
-def color_of(look: Look, base: Array, alpha: float) -> QColor:
+def color_of(base: Array, alpha: float) -> QColor:
     """A tint, shape (3,), with an opacity."""
     r, g, b = (float(min(1.0, max(0.0, c))) for c in base)
     return QColor.fromRgbF(r, g, b, alpha)

@@ -7,8 +7,6 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from mirrorlab.mirrors.finding import Finding
 
-COUNTS = ("No", "One", "Two", "Three", "Four", "Five", "Six", "Seven", "Eight")
-
 
 def sentence(finding: Finding) -> str:
     """The finding as one sentence, or two where a way out is known."""

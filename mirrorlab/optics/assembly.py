@@ -172,12 +172,6 @@ class Assembly:
         check(result)
         return result
 
-    def with_mirrors(self, mirrors: tuple[MirrorSpec, ...]) -> Assembly:
-        """The same panels with other reflecting surfaces, one a panel."""
-        result = replace(self, mirrors=tuple(mirrors))
-        check(result)
-        return result
-
     def to_dict(self) -> dict[str, object]:
         """Plain JSON: what was asked for, and the panels that it makes."""
         return {

@@ -32,6 +32,9 @@ SHUT = 1e-10
 MOST_STEPS = 60
 """Gauss–Newton steps; it takes five to ten."""
 
+MIRROR_SIDE = np.array([0.0, 0.0, 1.0])
+"""Outward normal of the face that a neighbour stands on: always the one on the mirror side."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Fold:
@@ -107,8 +110,8 @@ def _worst_seat(by_letter: dict[str, GlassPanel], turns: dict[str, Array]) -> fl
 def _laid_on(pane: GlassPanel, side: int, neighbour: GlassPanel, back: int) -> Array:
     """Rotation of the neighbour's frame into the pane's that lays their joint faces together."""
     role = pane.sides[side].role
-    mine = _face(pane) if role == "over" else _edge_face(pane, side)
-    theirs = _face(neighbour) if neighbour.sides[back].role == "over" else _edge_face(neighbour, back)
+    mine = MIRROR_SIDE if role == "over" else _edge_face(pane, side)
+    theirs = MIRROR_SIDE if neighbour.sides[back].role == "over" else _edge_face(neighbour, back)
     return _frame(_along(pane, side), mine).T @ _frame(-_along(neighbour, back), -theirs)
 
 
@@ -123,11 +126,6 @@ def _corner(pane: GlassPanel, corner: int) -> Array:
 def _along(pane: GlassPanel, side: int) -> Array:
     vector = np.append(np.roll(pane.coated, -1, axis=0)[side] - pane.coated[side], 0.0)
     return vector / np.linalg.norm(vector)
-
-
-def _face(pane: GlassPanel) -> Array:
-    """Outward normal of the face that a neighbour stands on: always the one on the mirror side."""
-    return np.array([0.0, 0.0, 1.0])
 
 
 def _edge_face(pane: GlassPanel, side: int) -> Array:
