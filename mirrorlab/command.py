@@ -85,12 +85,13 @@ def _run(words: list[str]) -> int:
         return open_window((words[0].strip() or None) if words else None)
     parser = Parser(
         prog="mirrorlab",
+        usage="mirrorlab [FILE]\n       mirrorlab VERB ... [--help]\n       mirrorlab [--help] [--version]",
         description="Angles between mirrors in; finite group, images, chambers, point groups and panels out.",
         epilog=EXAMPLES,
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
     parser.add_argument("--version", action="version", version=f"mirrorlab {__version__}")
-    subparsers = parser.add_subparsers(metavar="VERB", parser_class=Parser, required=True)
+    subparsers = parser.add_subparsers(metavar="VERB", prog="mirrorlab", parser_class=Parser, required=True)
     for verb in VERBS:
         if words[0] == verb.name:
             importlib.import_module(verb.module).ADD[verb.name](subparsers)

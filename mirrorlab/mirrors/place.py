@@ -37,7 +37,7 @@ def seed_point(
     if point is not None:
         return _values(point, normals.shape[1], "point", "coordinates")
     if heights is not None:
-        wanted = _values(heights, len(normals), "heights", "values, one above each typed mirror")
+        wanted = _values(heights, len(normals), "heights", "values above the typed mirrors")
         found = np.linalg.pinv(normals) @ wanted
         if np.abs(normals @ found - wanted).max() > MISFIT * float(np.abs(wanted).max()):
             msg = f"heights {wanted.tolist()}: no point has these; the mirrors are dependent, give a point instead"
@@ -91,9 +91,9 @@ def _values(given: Sequence[float], count: int, what: str, meaning: str) -> Arra
     try:
         values = np.array(given, dtype=np.float64)
     except (TypeError, ValueError) as error:
-        msg = f"{what} {given!r}: {count} finite {meaning}"
+        msg = f"{what} {given!r}: {count} finite {meaning} are wanted"
         raise OrbitError(msg) from error
     if values.shape != (count,) or not np.isfinite(values).all():
-        msg = f"{what} {values.tolist()}: {count} finite {meaning}"
+        msg = f"{what} {values.tolist()}: {count} finite {meaning} are wanted"
         raise OrbitError(msg)
     return values

@@ -63,7 +63,9 @@ def parse_length(given: str | float, field: str = "length") -> float:
     if isinstance(given, str):
         found = _SHAPE.fullmatch(given)
         if not found:
-            msg = f"{field}, {given!r}: not a length; {accepted}"
+            given = given.strip()
+            what = "below zero" if re.match(r"[-−]\s*[\d.,]", given) else "not a length"
+            msg = f"{field}, {given!r}: {what}; {accepted}"
             raise AssemblyError(msg, field)
         unit = found["unit"].lower() or "mm"
         if unit not in UNITS_IN_MM:
