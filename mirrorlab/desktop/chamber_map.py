@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 
 import numpy as np
-from PySide6.QtCore import Signal
+from PySide6.QtCore import QTimer, Signal
 from PySide6.QtWidgets import QFrame, QVBoxLayout, QWidget
 
 from mirrorlab.desktop.document import Document
@@ -16,6 +16,9 @@ from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.theming import theming
 
 HEIGHT = 196
+SOON = 20
+"""Milliseconds after which the small map follows: what one types into comes first."""
+
 ROOM = 0.84
 """Zoom of the small map: leaves room for the letters and angles around the chamber."""
 
@@ -35,6 +38,10 @@ class ChamberMap(QFrame):
         super().__init__(parent)
         self.document = document
         self._gesture = ""
+        self._later = QTimer(self)
+        self._later.setSingleShot(True)
+        self._later.setInterval(SOON)
+        self._later.timeout.connect(self._draw)
         self.view = make_view(theming().theme)
         self.setFixedHeight(HEIGHT)
         set_kind(self, "card")
@@ -46,13 +53,19 @@ class ChamberMap(QFrame):
         theming().changed.connect(self._wear)
 
     def refresh(self) -> None:
-        """Show the document's chamber and seed."""
+        """Show the document's chamber and seed, a moment after finding, picture and table have been shown."""
         shown = has_map(self.document)
         self.setVisible(shown)
         if shown:
-            self.view.set_drawing(chamber(self.document))
-            if self.view.camera.zoom == 1.0:
-                self.view.set_camera(replace(self.view.camera, zoom=ROOM))
+            self._later.start()
+
+    def _draw(self) -> None:
+        if not has_map(self.document):
+            return
+        self._later.stop()
+        self.view.set_drawing(chamber(self.document))
+        if self.view.camera.zoom == 1.0:
+            self.view.set_camera(replace(self.view.camera, zoom=ROOM))
 
     def _wear(self) -> None:
         self.view.set_look(theming().theme)
@@ -64,4 +77,5 @@ class ChamberMap(QFrame):
         point = seed_on_map(self.document, np.asarray(place, dtype=np.float64))
         said = drag(self.document, point, self._gesture)
         if said:
+            self._draw()
             self.says.emit(said)

@@ -93,6 +93,8 @@ class Document(QObject):
     seed_changed()
         Another seed or, for long orbits, the orbit has come.
     selection_changed(), settings_changed(), crystal_changed(), glass_changed(), name_changed()
+    settled()
+        All that follows from a change has been told; comes after the signals above.
     """
 
     arrangement_changed = Signal()
@@ -102,6 +104,7 @@ class Document(QObject):
     crystal_changed = Signal()
     glass_changed = Signal()
     name_changed = Signal()
+    settled = Signal()
 
     def __init__(self, state: State, parent: QObject | None = None) -> None:
         super().__init__(parent)
@@ -275,6 +278,7 @@ class Document(QObject):
             self.glass_changed.emit()
         if after.name != before.name or after.sheet != before.sheet:
             self.name_changed.emit()
+        self.settled.emit()
 
     def _make_orbit(self) -> None:
         self.work.cancel(ORBIT_JOB)

@@ -46,8 +46,11 @@ def theming() -> Theming:
     """The application's theming, made on first use."""
     app = QApplication.instance()
     assert isinstance(app, QApplication)
-    found = app.findChild(Theming, options=Qt.FindChildOption.FindDirectChildrenOnly)
-    return found if isinstance(found, Theming) else Theming(app)
+    kept = getattr(app, "_mirrorlab_theming", None)  # asked at every repaint; searching the children is slow
+    if not isinstance(kept, Theming):
+        kept = Theming(app)
+        app._mirrorlab_theming = kept  # type: ignore[attr-defined]
+    return kept
 
 
 def arrow(way: str) -> QIcon:

@@ -23,6 +23,9 @@ from mirrorlab.desktop.status import StatusLine
 from mirrorlab.desktop.table import TablePanel
 
 FIRST_SIZE = QSize(1280, 800)
+LAYOUT_ROUNDS = 3
+"""A label's new size reaches its parts of the window one level a round."""
+
 TABLE_PART = 0.27
 """Part of the height that the table takes at first."""
 
@@ -104,8 +107,7 @@ class Window(QMainWindow):
         self.filing.says.connect(self.status.say)
         self.filing.failed.connect(self.notice.warn)
         self.document.name_changed.connect(self._show_title)
-        for signal in (self.document.arrangement_changed, self.document.seed_changed):
-            signal.connect(self._settle)
+        self.document.settled.connect(self._settle)
         self.document.undo_stack.cleanChanged.connect(self._show_title)
 
     def _welcome(self, bench: Bench) -> None:
@@ -117,7 +119,8 @@ class Window(QMainWindow):
 
     def _settle(self) -> None:
         """Lay out what changed before it is painted: else most of the window is painted twice at a keystroke."""
-        QCoreApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest.value)
+        for _ in range(LAYOUT_ROUNDS):
+            QCoreApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest.value)
 
     def _fold(self, folded: bool) -> None:
         if folded:

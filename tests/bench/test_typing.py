@@ -51,14 +51,14 @@ def window(qapp: QApplication, tmp_path: Path) -> Iterator[Window]:
 def test_typing_to_screen(window: Window) -> None:
     triangle = window.mirrors.triangle
     edit = triangle.cells[2].edit
-    rows: list[tuple[str, str, float, float]] = []
+    rows: list[tuple[str, str, float, float, float]] = []
     for text in LAST_KEYS:
-        answers, paints = [], []
+        answers, paints, works = [], [], []
         for _ in range(7):
             triangle.focus_pair(2)
             QTest.keyClicks(edit, text[:-1])
             QApplication.processEvents()
-            start = time.perf_counter()
+            start, worked = time.perf_counter(), time.thread_time()
             QTest.keyClick(
                 edit, Qt.Key(ord(text[-1].upper())) if text[-1].isalnum() else Qt.Key.Key_ParenRight
             )
@@ -67,9 +67,16 @@ def test_typing_to_screen(window: Window) -> None:
             painted = time.perf_counter()
             answers.append(1000 * (answered - start))
             paints.append(1000 * (painted - answered))
+            works.append(1000 * (time.thread_time() - worked))
         assert window.document.arrangement.angles[2].text == text
         kind = window.document.finding.kind
-        rows.append((text, kind, statistics.median(answers), statistics.median(paints)))
-    print(f"\n{'typed':>10} {'finding':>18} {'answer ms':>10} {'paint ms':>9} {'frames':>7}")
-    for text, kind, answer, paint in rows:
-        print(f"{text:>10} {kind:>18} {answer:10.1f} {paint:9.1f} {(answer + paint) / FRAME:7.2f}")
+        rows.append((text, kind, *map(statistics.median, (answers, paints, works))))
+    view = window.stage.left.view
+    assert view is not None
+    print(f"\npictures by {type(view.current).__name__}; medians of 7")
+    print(
+        f"{'typed':>10} {'finding':>18} {'answer ms':>10} {'paint ms':>9} {'frames':>7} {'main thread ms':>15}"
+    )
+    for text, kind, answer, paint, work in rows:
+        frames = (answer + paint) / FRAME
+        print(f"{text:>10} {kind:>18} {answer:10.1f} {paint:9.1f} {frames:7.2f} {work:15.1f}")
