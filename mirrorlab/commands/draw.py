@@ -13,6 +13,7 @@ from mirrorlab.commands.output import (
     add_mirrors,
     add_seed,
     arrangement_and_seed,
+    print_json,
     seed_of,
 )
 from mirrorlab.drawing.model import Drawing
@@ -47,6 +48,7 @@ def add_draw(subparsers: Any) -> None:
     add_seed(parser)
     parser.add_argument("--size", default="1200x1200", metavar="WxH", help="pixels (1200x1200)")
     parser.add_argument("--look", choices=("light", "dark"), default="light", help="tints (light)")
+    parser.add_argument("--json", action="store_true", help="what was drawn, as JSON")
     parser.set_defaults(run=run)
 
 
@@ -65,6 +67,15 @@ def run(args: argparse.Namespace) -> int:
         from mirrorlab.files.picture import save_picture
 
         written = save_picture(drawing, args.out, (int(match[1]), int(match[2])), args.look)
+    if args.json:
+        print_json(
+            {
+                "file": str(written),
+                "title": drawing.title,
+                "frame": drawing.frame,
+                "notes": list(drawing.notes),
+            }
+        )
     for note in drawing.notes:
         print(note, file=sys.stderr)
     print(f"wrote {written}", file=sys.stderr)

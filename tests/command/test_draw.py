@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 import subprocess
 from collections.abc import Callable
 from pathlib import Path
@@ -29,6 +30,14 @@ def test_the_ending_of_the_file_chooses_its_kind(answer: Answer, tmp_path: Path,
     assert err.splitlines()[-1] == f"wrote {target}"
     assert target.read_bytes().startswith(HEADS[ending])
     assert [path.name for path in tmp_path.iterdir()] == [target.name]
+
+
+def test_what_was_drawn_as_json(answer: Answer, tmp_path: Path) -> None:
+    target = tmp_path / "tube.svg"
+    status, out, err = answer("draw", "60", "60", "60", "--out", str(target), "--json")
+    said = json.loads(out)
+    assert (status, said["file"]) == (0, str(target))
+    assert said["notes"] == err.splitlines()[:-1] != []
 
 
 @pytest.mark.parametrize(
