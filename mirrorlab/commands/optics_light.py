@@ -255,8 +255,9 @@ def _write_images(path: str, assembly: Assembly, count: ImageCount) -> None:
 def run_tolerance(args: argparse.Namespace) -> int:
     """Say what errors of the angles do."""
     from mirrorlab.commands.light_print import print_chances, print_tolerance
+    from mirrorlab.optics.intent import intent_of
     from mirrorlab.optics.montecarlo import seam_chances
-    from mirrorlab.optics.tolerance import intent_of, tolerance_of
+    from mirrorlab.optics.tolerance import tolerance_of
 
     intent, actual = intent_of(arrangement_of(args))
     if args.actual is not None:

@@ -29,10 +29,10 @@ _HOMES: dict[str, str] = {
     "edge_views": "sectors",
     "two_mirror_rule": "images",
     # tolerance
-    "Intent": "tolerance",
+    "Intent": "intent",
     "SeamChances": "montecarlo",
     "Tolerance": "tolerance",
-    "intent_of": "tolerance",
+    "intent_of": "intent",
     "return_error": "returns",
     "seam_chances": "montecarlo",
     "tolerance_of": "tolerance",

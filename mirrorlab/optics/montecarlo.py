@@ -9,8 +9,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.optics.intent import Intent
 from mirrorlab.optics.lengths import AssemblyError, positive_length
-from mirrorlab.optics.tolerance import Intent, seam_turns
+from mirrorlab.optics.tolerance import seam_turns
 
 Array = NDArray[np.float64]
 

@@ -13,9 +13,10 @@ from hypothesis import strategies as st
 
 import mirrorlab as ml
 from mirrorlab import optics
+from mirrorlab.optics.intent import Intent
 from mirrorlab.optics.loops import corner_loops, coxeter_loop, parted
 from mirrorlab.optics.shapes import corner_normals
-from mirrorlab.optics.tolerance import Intent, chord, seam_turns, turn_for
+from mirrorlab.optics.tolerance import chord, seam_turns, turn_for
 
 SMALL = st.floats(-0.5, 0.5)
 
