@@ -70,9 +70,7 @@ def _axis(families: tuple[Family, ...]) -> tuple[int, int]:
     return next((f.m for f in families if f.rank == 2), 0), sum(f.rank for f in families)
 
 
-def _named(
-    families: tuple[Family, ...], table: dict[tuple[str, ...], tuple[str, str]]
-) -> PointGroup | None:
+def _named(families: tuple[Family, ...], table: dict[tuple[str, ...], tuple[str, str]]) -> PointGroup | None:
     """The symbols in a table of groups without an axis of order 3 or more of their own."""
     symbols = table.get(tuple(sorted(family.name for family in families)))
     return None if symbols is None else PointGroup(*symbols)

@@ -230,7 +230,9 @@ LIST = "label,x,y,z\nA,1,2,3\nB,-1,2,3\nC,3,1,2\n"
 
 @pytest.mark.parametrize(
     "verb",
-    [verb.name for verb in VERBS if verb.name not in ("view", "build", "choose")],  # those have tests of their own
+    [
+        verb.name for verb in VERBS if verb.name not in ("view", "build", "choose")
+    ],  # those have tests of their own
 )
 def test_the_examples_in_the_help_run(
     answer: Answer, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, verb: str
