@@ -3,34 +3,24 @@
 from __future__ import annotations
 
 import math
-from functools import partial
 
 import numpy as np
-from PySide6.QtCore import QSignalBlocker
-from PySide6.QtWidgets import QComboBox, QGridLayout, QWidget
+from PySide6.QtWidgets import QWidget
 
-from mirrorlab.desktop.bench_parts import FactRows, LineField
+from mirrorlab.desktop.bench_parts import FactRows
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.glass.glass_parts import Cautions, Entries, Entry
 from mirrorlab.desktop.glass.glass_section import GlassSection, told
-from mirrorlab.desktop.glass.glass_state import WORDS
+from mirrorlab.desktop.glass.glass_state import WORDS, GlassState
+from mirrorlab.desktop.glass.mirror_rows import MirrorRows
 from mirrorlab.desktop.glass.workings import TAKES, hazards, kind_of
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column
-from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.drawing.model import Key
 from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.cautions import Place, cautions_for
-from mirrorlab.optics.lengths import AssemblyError
-from mirrorlab.optics.mirror import FIRST, PRESETS, SECOND
-from mirrorlab.optics.stand import DEFAULT_MIRROR
+from mirrorlab.optics.lengths import AssemblyError, parse_length
 
-SHORT = {
-    "first-surface aluminium": "Aluminium",
-    "first-surface enhanced": "Enhanced",
-    "household glass": "Household",
-    "perfect": "Perfect",
-}
 ENTRIES = {
     "opening": (
         "Opening",
@@ -51,8 +41,6 @@ ENTRIES = {
 """Name, hint and placeholder of each length."""
 
 ROWS = (("opening", "length", "depth"), ("truncated", "sides", "taper", "thickness"))
-SURFACES = {FIRST: "First", SECOND: "Second"}
-MOST_PANELS = 4
 
 
 class AssemblySection(GlassSection):
@@ -135,7 +123,16 @@ class AssemblySection(GlassSection):
 
     def _show_error(self, error: AssemblyError | None) -> None:
         field, message = ("", "") if error is None else (error.field, told(error))
-        found = [row.show_error(field, message) for row in self.rows]
+        found = []
+        unread = unreadable(self.state, TAKES.get(kind_of(self.document.arrangement), ()))
+        for row in self.rows:
+            # The maker stops at the first thing that is wrong; whatever else cannot be read is told as well.
+            key = (
+                field if field in row.entries else next((name for name in row.entries if name in unread), "")
+            )
+            found.append(
+                row.show_error(key, message if key == field else unread.get(key, "")) and key == field
+            )
         found.append(self.mirrors.show_error(field, message))
         self.error.setText("" if any(found) else message)
         self.error.setVisible(bool(self.error.text()))
@@ -158,100 +155,17 @@ def entry(key: str) -> Entry:
     return Entry(name, hint, placeholder)
 
 
-class MirrorRows(QWidget):
-    """A row a mirror: its letter, preset, surface and reflectance."""
-
-    def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
-        grid = QGridLayout(self)
-        grid.setContentsMargins(0, 0, 0, 0)
-        grid.setHorizontalSpacing(6)
-        grid.setVerticalSpacing(4)
-        grid.setColumnStretch(1, 3)
-        grid.setColumnStretch(2, 2)
-        for column, text in ((1, "Preset"), (2, "Surface"), (3, "Keeps")):
-            grid.addWidget(label(text, "small"), 0, column)
-        self.letters, self.presets, self.surfaces, self.reflectances = [], [], [], []
-        for k in range(MOST_PANELS):
-            letter, preset, surface, keeps = label("", "heading"), QComboBox(), QComboBox(), LineField()
-            preset.addItems([SHORT[name] for name in PRESETS])
-            surface.addItems(list(SURFACES.values()))
-            for box in (preset, surface):
-                box.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-                box.setMinimumContentsLength(4)
-            surface.setFixedWidth(80)
-            keeps.setFixedWidth(48)
-            keeps.setToolTip(
-                "Part of the light that one bounce keeps, over 0 and up to 1; empty takes the preset's"
-            )
-            surface.setToolTip("First: the metal lies on top. Second: it lies behind the glass")
-            for column, part in enumerate((letter, preset, surface, keeps)):
-                grid.addWidget(part, k + 1, column)
-            self.letters.append(letter)
-            self.presets.append(preset)
-            self.surfaces.append(surface)
-            self.reflectances.append(keeps)
-        self.error = label("", "wrong", wrap=True)
-        self.error.hide()
-        grid.addWidget(self.error, MOST_PANELS + 1, 0, 1, 4)
-
-    def wire(self, section: GlassSection) -> None:
-        """Let the widgets change the section's state."""
-        for k in range(MOST_PANELS):
-            self.presets[k].activated.connect(partial(self._preset, section, k))
-            self.surfaces[k].activated.connect(partial(self._surface, section, k))
-            self.reflectances[k].entered.connect(partial(section.begin, "reflectance"))
-            self.reflectances[k].textEdited.connect(partial(self._reflectance, section, k))
-
-    def _preset(self, section: GlassSection, k: int, chosen: int) -> None:
-        state = section.state
-        fields = state.with_nth("presets", k, list(PRESETS)[chosen])
-        fields |= state.with_nth("surfaces", k, "") | state.with_nth("reflectances", k, "")
-        section.change("mirror", **fields)
-
-    def _surface(self, section: GlassSection, k: int, chosen: int) -> None:
-        section.change("surface", **section.state.with_nth("surfaces", k, list(SURFACES)[chosen]))
-
-    def _reflectance(self, section: GlassSection, k: int, text: str) -> None:
-        section.change("reflectance", section.gesture, **section.state.with_nth("reflectances", k, text))
-
-    def show_mirrors(self, state: object, letters: tuple[str, ...]) -> None:
-        """Show the state of the mirrors with these letters."""
-        from mirrorlab.desktop.glass.glass_state import GlassState
-
-        assert isinstance(state, GlassState)
-        for k in range(MOST_PANELS):
-            there = k < len(letters)
-            for part in (self.letters[k], self.presets[k], self.surfaces[k], self.reflectances[k]):
-                part.setVisible(there)
-            if not there:
-                continue
-            letter = letters[k]
-            name = state.nth("presets", k)
-            preset = PRESETS.get(name, PRESETS[DEFAULT_MIRROR])
-            self.letters[k].setText(letter)
-            self.presets[k].setAccessibleName(f"preset of mirror {letter}")
-            self.surfaces[k].setAccessibleName(f"surface of mirror {letter}")
-            self.reflectances[k].setAccessibleName(f"reflectance of mirror {letter}")
-            with QSignalBlocker(self.presets[k]), QSignalBlocker(self.surfaces[k]):
-                self.presets[k].setCurrentIndex(list(PRESETS).index(preset.name))
-                self.presets[k].setToolTip(preset.name)
-                surface = state.nth("surfaces", k) or preset.surface
-                self.surfaces[k].setCurrentIndex(list(SURFACES).index(surface) if surface in SURFACES else 0)
-            self.reflectances[k].setPlaceholderText(f"{preset.reflectance:.2f}")
-            if self.reflectances[k].text() != state.nth("reflectances", k):
-                with QSignalBlocker(self.reflectances[k]):
-                    self.reflectances[k].setText(state.nth("reflectances", k))
-
-    def show_error(self, field: str, message: str) -> bool:
-        """Say what is wrong with a mirror, at the letter that the message names."""
-        found = field in ("mirrors", "mirror", "surface", "reflectance")
-        for letter, part in zip(self.letters, self.reflectances, strict=True):
-            named = f" {letter.text()}" in message.split('"')[0].split(":")[0]
-            set_wrong(part, found and bool(message) and named)
-        self.error.setText(message if found else "")
-        self.error.setVisible(found and bool(message))
-        return found
+def unreadable(state: GlassState, takes: tuple[str, ...]) -> dict[str, str]:
+    """What is wrong with each typed length that is none."""
+    found = {}
+    for key in (*takes, "thickness"):
+        text = getattr(state, key).strip()
+        if text and key not in ("sides", "taper"):
+            try:
+                parse_length(text, key)
+            except AssemblyError as error:
+                found[key] = told(error)
+    return found
 
 
 def facts_of(made: Assembly) -> dict[str, str]:

@@ -149,7 +149,7 @@ class ChooseSection(GlassSection):
             if k < len(near):
                 closing = near[k].closing
                 live = list(closing.fractions) == texts
-                card.show_card(closing.name, figure(near[k]), panels_words(near[k]), live)
+                card.show_card(closing.name.capitalize(), figure(near[k]), panels_words(near[k]), live)
 
     def _card_chosen(self, index: int) -> None:
         self.begin("choose")

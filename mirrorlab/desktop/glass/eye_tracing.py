@@ -11,8 +11,7 @@ from typing import TYPE_CHECKING, TypeAlias
 import numpy as np
 from numpy.typing import NDArray
 
-from mirrorlab.desktop.document import Document
-from mirrorlab.desktop.glass.glass_state import GlassState, glass_state
+from mirrorlab.desktop.glass.glass_state import GlassState
 from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.lengths import AssemblyError
 
@@ -22,7 +21,6 @@ if TYPE_CHECKING:
 Bytes = NDArray[np.uint8]
 Progress: TypeAlias = Callable[[int, int], bool]
 
-EYE_JOB = "eye's view"
 WARM_JOB = "eye's view ready"
 SAVE_JOB = "picture of the eye's view"
 
@@ -90,8 +88,3 @@ def traced(
     name = name or DEFAULT_PATTERNS[assembly.place.shape]
     scene = Scene(_texture(kind, name, stamp), name if kind == "pattern" else "", upwards=assembly.up)
     return trace(assembly, scene, size, samples, progress)
-
-
-def picture_spec(document: Document) -> tuple[str, str, int]:
-    """`picture_of` the document's value."""
-    return picture_of(glass_state(document))

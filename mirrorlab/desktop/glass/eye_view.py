@@ -23,10 +23,11 @@ from PySide6.QtGui import (
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from mirrorlab.desktop.document import Document
-from mirrorlab.desktop.glass.eye_tracing import EYE_JOB, WARM_JOB, picture_of, traced, warm, warming
+from mirrorlab.desktop.glass.eye_tracing import WARM_JOB, picture_of, traced, warm, warming
 from mirrorlab.desktop.glass.glass_section import told, why_no_kind
 from mirrorlab.desktop.glass.glass_state import glass_state
 from mirrorlab.desktop.glass.workings import assembly_of, kind_of
+from mirrorlab.desktop.status import EYE_JOB
 from mirrorlab.desktop.theming import theming
 from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.lengths import AssemblyError

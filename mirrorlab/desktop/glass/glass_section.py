@@ -30,9 +30,16 @@ class GlassSection(BenchSection):
     def follow(self, entries: Entries) -> None:
         """Let entries whose keys are fields of the state change it; the typing in one of them is one step."""
         entries.entered.connect(self.begin)
-        entries.typed.connect(
-            lambda key, text: self.change(key.replace("_", " "), self.gesture, **{key: text})
-        )
+        entries.typed.connect(self._typed_in)
+
+    def _typed_in(self, key: str, text: str) -> None:
+        self.change(key.replace("_", " "), self.gesture_of(key), **{key: text})
+
+    def gesture_of(self, what: str) -> str:
+        """The gesture under way when it is of this entry, else a new one."""
+        if not self.gesture.startswith(f"{what} "):
+            self.begin(what)
+        return self.gesture
 
     def show_state(self, *rows: Entries) -> None:
         """Show the state in entries whose keys are its fields."""

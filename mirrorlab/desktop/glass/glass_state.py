@@ -74,10 +74,10 @@ class GlassState:
     turn: tuple[str, ...] = ("", "")
     field: str = ""
     errors: tuple[str, ...] = ()
-    distance: str = "1 m"
+    distance: str = "200 mm"
     limit: str = "1 mm"
     spread: str = "normal"
-    size: str = "0.1"
+    size: str = "0.02"
     draws: str = "10000"
     draw_seed: str = "1"
     joint: str = "mitred"

@@ -128,6 +128,8 @@ def linked_keys(images: tuple[Image, ...], arrangement: Arrangement, orbit: Orbi
     if orbit is None or normals is None or len(images) > MOST_LINKED or len(orbit) > MOST_LINKED:
         return own
     place = {letter: k for k, letter in enumerate(arrangement.letters)}
+    if not set("".join(image.word for image in images)) <= set(place):
+        return own  # of other mirrors: the count of these has not come yet
     size = float(np.linalg.norm(orbit.seed)) or 1.0
     for k, image in enumerate(images):
         spot = orbit.seed.copy()

@@ -16,6 +16,7 @@ from mirrorlab.desktop.glass.glass_parts import Cautions, Entries, Entry
 from mirrorlab.desktop.glass.glass_section import GlassSection, told
 from mirrorlab.desktop.glass.glass_state import WORDS
 from mirrorlab.desktop.glass.workings import copies_of, cut_job, joints_of, stock_of
+from mirrorlab.desktop.glass.workshop_files import write_files, write_report
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column
 from mirrorlab.drawing.model import Key
@@ -43,6 +44,9 @@ FILES = {
     ),
 }
 IN_A_ROW = 3
+MOST_SAID = 2
+"""Sentences on the layout beside the entries: sheets and waste. All of them stand in the report."""
+
 PAGES = WORDS["page"]
 
 
@@ -218,7 +222,7 @@ class PanelsSection(GlassSection):
         weight = job.copies * sum(pane.weight for pane in job.panes)
         facts = {"Glass": f"{job.glass_area:.4f} m², {weight:.2f} kg"}
         if job.layout is not None:
-            facts["Sheets"] = "<br>".join(layout_words(job.layout))
+            facts["Sheets"] = "<br>".join(layout_words(job.layout)[:MOST_SAID])
         elif self.layout_answer.busy:
             facts["Sheets"] = "laying out …"
         elif self.layout_answer.stopped:
@@ -284,67 +288,6 @@ def _counted(made: Any, progress: Any) -> Any:
     from mirrorlab.optics.report import images_section
 
     return images_section(count_images(made, progress=progress))
-
-
-def write_files(kind: str, path: Path, job: CutJob, page: str, unit: str) -> None:
-    """Write one of the workshop's files. Raises `ValueError` or `OSError` with the reason."""
-    from mirrorlab.drawing.cutsheet import cut_pages, cut_sheet
-    from mirrorlab.drawing.stock_sheet import stock_sheet
-    from mirrorlab.files.cutsheet_pdf import printable, write_pdf
-
-    layout = None if job.layout is None else partial(stock_sheet, job.layout, f"{job.title}: stock sheets")
-    if kind == "csv":
-        from mirrorlab.files.cutlist_csv import write_cut_list
-
-        write_cut_list(path, job)
-    elif kind == "pdf":
-        write_pdf([cut_pages(job, printable(page), unit)], path, page)
-    elif kind == "svg":
-        from mirrorlab.files.cutsheet_svg import write_svg
-
-        write_svg(cut_sheet(job, unit), path)
-    elif kind == "dxf":
-        from mirrorlab.files.cutsheet_dxf import write_dxf
-
-        write_dxf([cut_sheet(job, unit), *([] if layout is None else [layout()])], path, unit)
-    elif layout is not None:
-        _write_layout(path, layout, page)
-
-
-def _write_layout(path: Path, layout: Any, page: str) -> None:
-    suffix = path.suffix.lower()
-    if suffix == ".pdf":
-        from mirrorlab.files.cutsheet_pdf import printable, write_pdf
-
-        write_pdf([layout(printable(page))], path, page)
-    elif suffix == ".svg":
-        from mirrorlab.files.cutsheet_svg import write_svg
-
-        write_svg(layout(), path)
-    elif suffix == ".dxf":
-        from mirrorlab.files.cutsheet_dxf import write_dxf
-
-        write_dxf([layout()], path)
-    else:
-        msg = f"{path.name}: a layout ends in .pdf, .svg or .dxf"
-        raise ValueError(msg)
-
-
-def write_report(path: Path, report: Any, page: str) -> None:
-    """Write a report as PDF or text."""
-    suffix = path.suffix.lower()
-    if suffix == ".pdf":
-        from mirrorlab.drawing.report_sheet import report_sheet
-        from mirrorlab.files.cutsheet_pdf import printable, write_pdf
-
-        write_pdf([report_sheet(report, printable(page))], path, page)
-    elif suffix == ".txt":
-        from mirrorlab.files.workshop_report import write_report_text
-
-        write_report_text(report, path)
-    else:
-        msg = f"{path.name}: a report ends in .pdf or .txt"
-        raise ValueError(msg)
 
 
 def cut_columns(job: CutJob) -> list[Column]:

@@ -6,11 +6,12 @@ from functools import partial
 from typing import Any
 
 import numpy as np
-from PySide6.QtWidgets import QGridLayout, QWidget
+from PySide6.QtWidgets import QWidget
 
-from mirrorlab.desktop.bench_parts import FactRows, LineField
+from mirrorlab.desktop.bench_parts import FactRows
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.glass.answers import Answer
+from mirrorlab.desktop.glass.edge_errors import EdgeErrors
 from mirrorlab.desktop.glass.glass_parts import Entries, Entry
 from mirrorlab.desktop.glass.glass_section import GlassSection, told, why_no_kind
 from mirrorlab.desktop.glass.glass_state import WORDS
@@ -18,13 +19,14 @@ from mirrorlab.desktop.glass.histogram import Histogram
 from mirrorlab.desktop.glass.workings import intent_and_actual, kind_of, number, whole_number
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column
-from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.optics.lengths import AssemblyError, positive_length
 from mirrorlab.optics.montecarlo import MOST_DRAWS, SeamChances, seam_chances
 from mirrorlab.optics.tolerance import Intent, Tolerance, tolerance_of
 
-MOST_EDGES = 4
 LARGEST_SEED = 2**31 - 1
+NO_TURN = 5e-7
+"""Degrees that are called none: far below what glass can be set to, above rounding."""
+
 LARGEST_SPREAD = 10.0
 """Degrees, as `seam_chances` takes them."""
 
@@ -60,7 +62,7 @@ class ToleranceSection(GlassSection):
         self.words = label("", "small", wrap=True)
         self.again = button("Draw again", "tight", "Drawing was stopped")
         self.figures = Answer(document.work, "tolerance", self)
-        self.drawn = Answer(document.work, "chances of a seam", self)
+        self.drawn = Answer(document.work, "seams by chance", self)
         self._intent: Intent | None = None
         self._lay_out()
         self.edges.wire(self)
@@ -183,71 +185,6 @@ class ToleranceSection(GlassSection):
         self.again.setVisible(self.drawn.stopped)
 
 
-class EdgeErrors(QWidget):
-    """A row an edge: its pair, the angle it is meant to have, its error, and the angle it has."""
-
-    def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
-        grid = QGridLayout(self)
-        grid.setContentsMargins(0, 0, 0, 0)
-        grid.setHorizontalSpacing(8)
-        grid.setVerticalSpacing(4)
-        grid.setColumnStretch(2, 1)
-        for column, text in ((1, "Meant"), (2, "Off by °"), (3, "Actual")):
-            grid.addWidget(label(text, "small"), 0, column)
-        self.pairs, self.meant, self.errors, self.actual = [], [], [], []
-        for k in range(MOST_EDGES):
-            parts = (label("", "heading"), label("", "figures"), LineField(), label("", "figures"))
-            parts[2].setToolTip("Degrees; empty takes the angle typed in the triangle")
-            for column, part in enumerate(parts):
-                grid.addWidget(part, k + 1, column)
-            for kept, part in zip((self.pairs, self.meant, self.errors, self.actual), parts, strict=True):
-                kept.append(part)
-        self.error = label("", "wrong", wrap=True)
-        self.error.hide()
-        grid.addWidget(self.error, MOST_EDGES + 1, 0, 1, 4)
-
-    def wire(self, section: GlassSection) -> None:
-        """Let the fields change the section's state."""
-        for k, field in enumerate(self.errors):
-            field.entered.connect(partial(section.begin, "error"))
-            field.textEdited.connect(partial(self._typed, section, k))
-
-    def _typed(self, section: GlassSection, k: int, text: str) -> None:
-        section.change("error of an angle", section.gesture, **section.state.with_nth("errors", k, text))
-
-    def show_edges(
-        self, state: Any, intent: Intent | None, actual: tuple[float, ...], arrangement: Any
-    ) -> None:
-        """Show the edges that are meant, or keep what is there while they cannot be told."""
-        count = 0 if intent is None else len(intent.pairs)
-        if intent is None and kind_of(arrangement):
-            return
-        for k in range(MOST_EDGES):
-            for part in (self.pairs[k], self.meant[k], self.errors[k], self.actual[k]):
-                part.setVisible(k < count)
-            if intent is None or k >= count:
-                continue
-            meant, has = np.degrees(intent.radians[k]), np.degrees(actual[k])
-            self.pairs[k].setText(intent.pairs[k])
-            self.meant[k].setText(f"{meant:.5g}°")
-            self.actual[k].setText(f"{has:.6g}°")
-            self.errors[k].setAccessibleName(f"error of {intent.pairs[k]}")
-            typed = state.nth("errors", k)
-            self.errors[k].setPlaceholderText(f"{has - meant + 0.0:.3g}" if not typed.strip() else "")
-            if self.errors[k].text() != typed:
-                self.errors[k].setText(typed)
-
-    def show_error(self, field: str, message: str) -> bool:
-        """Say what is wrong with an error typed here."""
-        found = field in ("errors", "actual")
-        for pair, part in zip(self.pairs, self.errors, strict=True):
-            set_wrong(part, found and bool(message) and bool(pair.text()) and f" {pair.text()}" in message)
-        self.error.setText(message if found else "")
-        self.error.setVisible(found and bool(message))
-        return found
-
-
 def _figures(
     intent: Intent, actual: tuple[float, ...], distance: float, limit: str | None, progress: Any
 ) -> Tolerance:
@@ -273,8 +210,8 @@ def spread_size(text: str) -> float:
 def facts_of(found: Tolerance) -> dict[str, str]:
     """Figures of a tolerance."""
     facts = {"Largest seam": f"{found.seam:.3g} mm at {found.distance:.6g} mm"}
-    for edge in found.edges:
-        facts[f"Left over, {edge.pair}"] = signed(edge.leftover) if abs(edge.leftover) > 5e-7 else "none"
+    off = [edge for edge in found.edges if abs(edge.leftover) > NO_TURN]
+    facts["Left over"] = "<br>".join(f"{edge.pair} {signed(edge.leftover)}" for edge in off) or "nothing"
     if found.whole is not None:
         facts["Whole corner"] = f"{found.whole.worst:.3g}°, {found.whole.worst_seam:.3g} mm"
     if found.limit is not None and found.allowed_together is not None:

@@ -10,7 +10,6 @@ import numpy as np
 from PySide6.QtCore import QSignalBlocker
 from PySide6.QtWidgets import QComboBox, QFileDialog, QHBoxLayout, QWidget
 
-from mirrorlab.desktop.bench_parts import FactRows
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.glass.eye_tracing import SAVE_JOB, picture_of, traced
 from mirrorlab.desktop.glass.glass_parts import Cautions, Entries, Entry
@@ -69,7 +68,6 @@ class ViewSection(GlassSection):
         self.show_picture = button("Show view", "tight", "The eye's view on the stage")
         self.size = Entries((("size", Entry("Size in pixels", "Width x height", "1920 x 1080")),))
         self.save = button("Save PNG", "tight", "Trace at this size and save; can be cancelled")
-        self.facts = FactRows()
         self.cautions = Cautions()
         self._lay_out()
         self._connect()
@@ -91,7 +89,6 @@ class ViewSection(GlassSection):
         for part in (self.ahead, self.show_picture):
             row.addWidget(part, 1)
         column.addLayout(row)
-        column.addWidget(self.facts)
         column.addSpacing(2)
         column.addWidget(label("Picture of the view", "heading"))
         column.addWidget(self.size)
@@ -106,7 +103,7 @@ class ViewSection(GlassSection):
         self.follow(self.picture)
         self.browse.clicked.connect(self._browse)
         for row in (self.eye, self.turn):
-            row.entered.connect(lambda key: self.begin(key.split()[0]))
+            row.entered.connect(self._entered)
             row.typed.connect(self._typed)
         self.ahead.clicked.connect(
             lambda: self.change("look straight ahead", eye=("",) * 3, turn=("",) * 2, field="")
@@ -114,10 +111,15 @@ class ViewSection(GlassSection):
         self.show_picture.clicked.connect(lambda: self.picture_wanted.emit("Eye's view"))
         self.save.clicked.connect(self._ask_where)
 
+    def _entered(self, key: str) -> None:
+        self.begin(key.split()[0])
+
     def _typed(self, key: str, text: str) -> None:
         name, _, place = key.partition(" ")
         fields = self.state.with_nth(name, int(place), text) if place else {name: text}
-        self.change("field of view" if name == "field" else f"{name} of the view", self.gesture, **fields)
+        self.change(
+            "field of view" if name == "field" else f"{name} of the view", self.gesture_of(name), **fields
+        )
 
     def refresh(self) -> None:
         state = self.state
@@ -147,7 +149,6 @@ class ViewSection(GlassSection):
             for k, entry in enumerate(self.eye.entries.values()):
                 entry.field.setPlaceholderText(f"{bare.eye[k] + 0.0:.0f}")
             self.turn.entries["field"].field.setPlaceholderText(f"{np.degrees(suits.field_of_view):.0f}")
-        self.facts.show_facts({} if made is None else view_facts(made))
         self.save.setEnabled(made is not None and error is None)
         self.cautions.show_cautions(() if bare is None else cautions_for(Place.EYE, hazards(bare)))
         self._show_rows(made, error)
@@ -247,12 +248,3 @@ class ViewSection(GlassSection):
         if not isinstance(error, ValueError | OSError | ImportError):
             raise error
         self.size.show_error("size", f"Not written: {error}")
-
-
-def view_facts(made: Any) -> dict[str, str]:
-    """Figures of the view."""
-    inside = float(made.heights(made.eye).min()) > 0 and made.eye[2] <= made.mouth[:, 2].max() + 1e-6
-    return {
-        "Eye": "at the mouth or between the mirrors" if inside else "outside, before the opening",
-        "Field": f"{np.degrees(made.field_of_view):.1f}° across the shorter side",
-    }

@@ -40,6 +40,9 @@ TAKES: dict[str, tuple[str, ...]] = {
 }
 """Lengths that each kind of assembly has."""
 
+FLAT = 1e-9
+"""Unit normals that span less than this across a plane lie in it: rounding, far below any angle that is typed."""
+
 SEED_PART = 0.45
 """How far from the point to the mouth of a corner the seed's ball stands; only its direction is the seed's."""
 
@@ -49,7 +52,7 @@ STEEPEST = math.radians(85)
 
 def kind_of(arrangement: Arrangement) -> str:
     """ "wedge", "corner", "tube", or "" for mirrors that make none of them."""
-    rank = 0 if arrangement.normals is None else arrangement.normals.shape[1]
+    rank = 0 if arrangement.normals is None else int(np.linalg.matrix_rank(arrangement.normals, tol=FLAT))
     if arrangement.size == 2:
         return "wedge"
     if arrangement.size == 3 and rank == 3:
