@@ -41,7 +41,9 @@ KEYS = (
     ("Ctrl+C, Ctrl+Shift+C", "copy rows of the table as text"),
     ("Ctrl+L", "light or dark"),
     ("Ctrl+O, Ctrl+S", "open, save"),
-    ("Drag", "turn the picture, or move the seed; the wheel comes nearer"),
+    ("Drag, wheel", "turn a picture or move the seed; come nearer"),
+    ("Double click", "bring a picture back to where it started"),
+    ("Arrows, +, −, Home", "the same, when a picture has the keyboard"),
 )
 
 ANGLES = (

@@ -26,6 +26,9 @@ from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.words import describe
 from mirrorlab.drawing.model import Drawing, Key
 
+HINTED = frozenset({"image", "seed", "mirror"})
+"""Parts of a picture that are told beside the pointer as well as in the status line."""
+
 
 class Nothing(QWidget):
     """What stands on the stage where there is no picture: what it would be, and why there is none."""
@@ -168,6 +171,7 @@ class Pane(QFrame):
         self.drawing = drawing
         if self.view is None:
             self.view = make_view(theming().theme)
+            self.view.hint_of = self._hint
             self.view.hovered.connect(self._hover)
             self.view.picked.connect(lambda key, _: self.document.select(key))
             self.view.seed_grabbed.connect(self._grab)
@@ -191,6 +195,10 @@ class Pane(QFrame):
         """Show what the pointer is over in another picture or in the table."""
         if self.view is not None and self.drawing is not None:
             self.view.set_hover(key)
+
+    def _hint(self, key: Key) -> str:
+        """Words beside the pointer; none for what lies everywhere, such as chambers."""
+        return describe(self.document, key).replace(": ", "\n", 1) if key[0] in HINTED else ""
 
     def _grab(self) -> None:
         self._gesture = self.document.new_gesture("drag")
