@@ -17,6 +17,7 @@ from numpy.typing import ArrayLike, NDArray
 from mirrorlab.crystal.generators import THE_32
 from mirrorlab.crystal.identify import Element, elements_of
 from mirrorlab.crystal.mirror_match import RankError, in_space, lay_on
+from mirrorlab.crystal.operations import ROUND_OFF
 from mirrorlab.crystal.pointgroups import NamedGroup, point_group, without_lattice
 from mirrorlab.crystal.symbols import GroupName, parse_symbol
 
@@ -34,6 +35,7 @@ _FOLDS = {
 }
 _CENTRE = "centre of symmetry"
 _PARALLEL = 1 - 1e-9
+"""Cosine from which a direction is parallel to a normal: one of another mirror of the group is degrees away."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -176,7 +178,7 @@ def _independent(normals: NDArray) -> NDArray[np.float64]:
 
 def _in_cone(walls: NDArray, row: NDArray) -> bool:
     parts, *_ = np.linalg.lstsq(walls.T, row, rcond=None)
-    return bool(np.allclose(parts @ walls, row, atol=1e-8) and (parts > -1e-8).all())
+    return bool(np.allclose(parts @ walls, row, atol=ROUND_OFF) and (parts > -ROUND_OFF).all())
 
 
 def candidates_with_mirrors(
@@ -320,7 +322,7 @@ def _place(direction: NDArray, normals: NDArray, letters: tuple[str, ...]) -> st
     for cosine, letter in zip(cosines, named, strict=True):
         if cosine > _PARALLEL:
             return f" perpendicular to mirror {letter}" if letter else " perpendicular to a mirror"
-    through = [letter for cosine, letter in zip(cosines, named, strict=True) if cosine < 1e-6]
+    through = [letter for cosine, letter in zip(cosines, named, strict=True) if cosine < ROUND_OFF]
     if len(through) > 1:
         return (
             f" along the line of mirrors {' and '.join(through)}"

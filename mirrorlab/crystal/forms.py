@@ -24,6 +24,10 @@ from mirrorlab.crystal.solid import bounds, cut_solid
 from mirrorlab.crystal.symbols import GroupName
 
 _GENERAL_METRIC = np.array([[1.0, 0.1592, 0.0933], [0.1592, 1.7725, -0.2207], [0.0933, -0.2207, 2.4048]])
+SAME_COSINE = 1e-9
+"""Cosines, and parts of unit normals, that differ by less are equal: rounding is about 1e-15, and those of a form on
+cubic axes differ by more than 1e-7 up to the largest index (a whole number over the square of a length)."""
+
 SMALL_INDEX = 3
 """Faces up to this index, none negative, show every kind of form that a group has: in every group one of the faces
 with the same angles to its axes and mirrors has such indices."""
@@ -181,7 +185,7 @@ def _named(group: NamedGroup, faces: NDArray) -> tuple[FormName, GroupName | Non
         if np.allclose(normals[0], -normals[1]):
             return PINACOID, None
         by_mirror = any(
-            np.allclose(np.cross(mirror, normals[1] - normals[0]), 0, atol=1e-9)
+            np.allclose(np.cross(mirror, normals[1] - normals[0]), 0, atol=SAME_COSINE)
             for mirror in _mirror_normals(group)
         )
         return (DOME if by_mirror else SPHENOID), GroupName("Cv", 2)
@@ -190,7 +194,7 @@ def _named(group: NamedGroup, faces: NDArray) -> tuple[FormName, GroupName | Non
     if needs_shape(len(faces), symmetry):
         body = cut_solid(normals, 1.0)
         shape = (len(body.faces[0]), body.faces_at_corner)
-    rank = int(np.linalg.matrix_rank(normals, tol=1e-9))
+    rank = int(np.linalg.matrix_rank(normals, tol=SAME_COSINE))
     return name_form(len(faces), symmetry, rank, bounds(normals), shape), symmetry
 
 
@@ -210,9 +214,9 @@ def eigensymmetry(normals: ArrayLike) -> GroupName:
     """
     rows = np.asarray(normals, float)
     cosines = rows @ rows.T
-    second = int(np.argmax(np.where(np.abs(cosines[0]) < 1 - 1e-9, cosines[0], -2)))
+    second = int(np.argmax(np.where(np.abs(cosines[0]) < 1 - SAME_COSINE, cosines[0], -2)))
     frame = _frames(rows[:1], rows[second : second + 1])[0]
-    starts, ends = np.nonzero(np.abs(cosines - cosines[0, second]) < 1e-9)
+    starts, ends = np.nonzero(np.abs(cosines - cosines[0, second]) < SAME_COSINE)
     targets = np.swapaxes(_frames(rows[starts], rows[ends]), 1, 2)
     sides = [np.diag([1.0, 1.0, side]) @ frame for side in (1.0, -1.0)]
     turns = np.concatenate([targets @ side for side in sides])

@@ -16,6 +16,9 @@ from mirrorlab.crystal.closure import NotAGroupError, matrix_keys, product_table
 from mirrorlab.crystal.operations import ROUND_OFF, CrystalError, rotation_order
 from mirrorlab.crystal.symbols import GroupName
 
+OPPOSITE = 1e-12
+"""Directions whose cosine is this near to −1 are opposite: the axis between them is lost in rounding, one is chosen."""
+
 SAME_DIRECTION = 1e-5
 """Sine of the angle below which two axes are one; axes of a group of order 1440 are at least 0.25° (4e-3) apart."""
 
@@ -236,7 +239,7 @@ def _candidate_rotations(
         return [np.eye(3)]
     counts = {s: sum(e.signature == s for e in standard) for s in {e.signature for e in standard}}
     first = min(standard, key=lambda e: (counts[e.signature], -max(e.rotation, e.rotoinversion)))
-    others = [e for e in standard if abs(e.direction @ first.direction) < 1 - 1e-6]
+    others = [e for e in standard if abs(e.direction @ first.direction) < 1 - ROUND_OFF]
     firsts = [(sign * e.direction) for e in given if e.signature == first.signature for sign in (1, -1)]
     if not others:
         turns = [shortest_turn(direction, first.direction) for direction in firsts]
@@ -245,7 +248,7 @@ def _candidate_rotations(
     seconds = [(sign * e.direction) for e in given if e.signature == second.signature for sign in (1, -1)]
     cosine = first.direction @ second.direction
     target = _frame(first.direction, second.direction)
-    turns = [target.T @ _frame(u, v) for u, v in product(firsts, seconds) if abs(u @ v - cosine) < 1e-6]
+    turns = [target.T @ _frame(u, v) for u, v in product(firsts, seconds) if abs(u @ v - cosine) < ROUND_OFF]
     return sorted(turns, key=lambda turn: -np.trace(turn))
 
 
@@ -259,7 +262,7 @@ def shortest_turn(start: ArrayLike, end: ArrayLike) -> NDArray[np.float64]:
     """The rotation by the smallest angle that brings one direction onto another."""
     a, b = (np.asarray(v, float) / np.linalg.norm(v) for v in (start, end))
     axis, cosine = np.cross(a, b), float(a @ b)
-    if cosine < -1 + 1e-12:
+    if cosine < -1 + OPPOSITE:
         side = np.cross(a, np.eye(3)[int(np.argmin(np.abs(a)))])
         side /= np.linalg.norm(side)
         return 2 * np.outer(side, side) - np.eye(3)

@@ -8,6 +8,9 @@ from math import gcd
 
 from mirrorlab.crystal.operations import CrystalError, write_indices
 
+SUM_OF_THREE = 1e-9
+"""The first three of four indices add up to 0 within this: more than the rounding of decimals, less than one typed."""
+
 LARGEST_INDEX = 999
 """Faces with larger indices are slips of the keyboard: no face of a crystal was ever measured with such."""
 
@@ -55,7 +58,7 @@ def check_indices(
     name = f'indices "{text or ",".join(f"{value:g}" for value in values)}"'
     accepted = accepted or "three numbers are needed" + (", or four on hexagonal axes" if hexagonal else "")
     if len(values) == 4 and hexagonal:
-        if abs(values[0] + values[1] + values[2]) > 1e-9:
+        if abs(values[0] + values[1] + values[2]) > SUM_OF_THREE:
             msg = f"{name}: the first three of four indices add up to 0, these to {sum(values[:3]):g}"
             raise IndicesError(msg)
         values = [values[0], values[1], values[3]]

@@ -23,6 +23,12 @@ from mirrorlab.crystal.symbols import GroupName, parse_symbol
 if TYPE_CHECKING:
     from mirrorlab.mirrors.finding import Finding
 
+SQUARE = 1e-15
+"""Cosines below this are 0: that of 90° in radians comes out as 6e-17."""
+
+FLAT_AXES = 1e-9
+"""Smallest eigenvalue of the axes' cosines; below it they lie in a plane, or no axes have these angles."""
+
 WHOLE_INDEX = 1e-6
 """How far a ratio of plane indices may be from a whole number: they are computed, not measured."""
 
@@ -148,9 +154,9 @@ def axes_from_constants(constants: Sequence[float]) -> NDArray[np.float64]:
         )
         raise CellError(msg)
     cosines = np.cos(np.radians(values[3:]))
-    cosines[np.abs(cosines) < 1e-15] = 0.0
+    cosines[np.abs(cosines) < SQUARE] = 0.0
     angles = np.array([[1, cosines[2], cosines[1]], [cosines[2], 1, cosines[0]], [cosines[1], cosines[0], 1]])
-    if np.linalg.eigvalsh(angles).min() < 1e-9:
+    if np.linalg.eigvalsh(angles).min() < FLAT_AXES:
         msg = f"{list(constants)}: no three axes have these angles (each is less than the sum of the others)"
         raise CellError(msg)
     return np.linalg.cholesky(angles).T * values[:3]

@@ -14,7 +14,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from mirrorlab.crystal.closure import LARGEST_ORDER, generate
 from mirrorlab.crystal.generators import IN_CRYSTAL_AXES, SAME_SETTING, THE_32, cartesian_generators
-from mirrorlab.crystal.operations import CrystalError, Operation, operation
+from mirrorlab.crystal.operations import ROUND_OFF, CrystalError, Operation, operation
 from mirrorlab.crystal.symbols import GroupName, SymbolError, parse_symbol, typographic
 
 HEXAGONAL_BASIS = np.array([[1.0, -0.5, 0.0], [0.0, 3**0.5 / 2, 0.0], [0.0, 0.0, 1.0]])
@@ -143,7 +143,7 @@ class NamedGroup:
     @cached_property
     def polar(self) -> bool:
         """Leaves some direction unlike its opposite: a direction that no operation moves."""
-        return bool(np.linalg.matrix_rank(self.cartesian.mean(axis=0), tol=1e-6) > 0)
+        return bool(np.linalg.matrix_rank(self.cartesian.mean(axis=0), tol=ROUND_OFF) > 0)
 
     @cached_property
     def laue_class(self) -> str:

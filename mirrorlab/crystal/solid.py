@@ -10,6 +10,12 @@ from numpy.typing import ArrayLike, NDArray
 
 from mirrorlab.crystal.operations import CrystalError
 
+FLAT = 1e-9
+"""Unit normals that leave a plane or line by less lie in it: rounding is about 1e-15, angles of faces are 1e-3 up."""
+
+BALANCED = 1e-6
+"""Share of their number below which the sum of unit normals is none: faces of a form cancel or lean one way."""
+
 SAME_VERTEX = 1e-7
 """Corners closer than this times the size of the solid are one: half-space intersection returns a corner once for
 each three faces that meet in it, equal within about 1e-12."""
@@ -132,19 +138,19 @@ def bounds(normals: ArrayLike) -> bool:
     from scipy.spatial import ConvexHull
 
     rows = np.asarray(normals, float)
-    if len(rows) < 4 or np.linalg.matrix_rank(rows[1:] - rows[0], tol=1e-9) < 3:
+    if len(rows) < 4 or np.linalg.matrix_rank(rows[1:] - rows[0], tol=FLAT) < 3:
         return False
-    return bool((ConvexHull(rows).equations[:, -1] < -1e-9).all())
+    return bool((ConvexHull(rows).equations[:, -1] < -FLAT).all())
 
 
 def _cuts(normals: NDArray, size: float) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
     """Planes that end an open form: across the directions it runs off in, and a far box around everything."""
     _, strengths, axes = np.linalg.svd(normals, full_matrices=True)
-    rank = int((strengths > 1e-9).sum())
+    rank = int((strengths > FLAT).sum())
     free = axes[rank:]
     total = normals.sum(axis=0)
     directions = [*free, *-free]
-    if np.linalg.norm(total) > 1e-6 * len(normals):
+    if np.linalg.norm(total) > BALANCED * len(normals):
         directions.append(-total / np.linalg.norm(total))
     near = [_CAP * size] * len(directions)
     box = [*np.eye(3), *-np.eye(3)]

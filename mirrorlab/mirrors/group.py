@@ -14,6 +14,9 @@ from mirrorlab.mirrors.chamber import SAME_MIRROR, generic_point, same_mirrors, 
 from mirrorlab.mirrors.families import Family, recognise
 from mirrorlab.mirrors.walk import walk
 
+OUTSIDE = 1e-12
+"""A point this part of its size behind a wall is reflected; nearer is rounding, and would be reflected for ever."""
+
 MOST_ELEMENTS = 200_000
 """Largest group whose elements are written out as matrices unless the caller asks for more."""
 
@@ -204,7 +207,7 @@ class ReflectionGroup:
             heights = folded @ self.simple.T
             worst = heights.argmin(axis=1)
             depth = heights[np.arange(len(folded)), worst]
-            moved = depth < -1e-12 * scale
+            moved = depth < -OUTSIDE * scale
             if not moved.any():
                 break
             folded[moved] -= 2 * depth[moved, None] * self.simple[worst[moved]]

@@ -20,6 +20,9 @@ ON_WALL = 1e-6
 """A seed nearer to a wall than this part of its distance from the origin is taken to lie on it: six digits
 are what a person types, and images on two sides of a wall would otherwise differ by less than that."""
 
+MOVED = 1e-12
+"""Part of a seed's size by which it must move to count as snapped: less is the rounding of one that lay on the wall."""
+
 MOST_IMAGES = 2_000_000
 """Largest orbit made unless the caller asks for more; three coordinates take about 100 MB then."""
 
@@ -233,4 +236,4 @@ def snap(
     normals = group.simple[list(walls)]
     moved = point - np.linalg.pinv(normals) @ (normals @ point)
     shift = float(np.linalg.norm(moved - point))
-    return moved, walls, shift > 1e-12 * max(size, 1e-300)
+    return moved, walls, shift > MOVED * max(size, 1e-300)

@@ -23,6 +23,9 @@ from mirrorlab.mirrors.generation import generate_roots
 from mirrorlab.mirrors.graphs import nearest_graphs
 
 MOST_SUGGESTIONS = 6
+UNCHANGED = 1e-9
+"""Degrees; a smaller change of an angle is rounding of its fraction."""
+
 HALF = Fraction(1, 2)
 Decide = Callable[[Sequence[Fraction]], "tuple[str, tuple[str, ...], int | None, int | None, str]"]
 Verdict = tuple[str, tuple[str, ...], int | None, int | None, str]
@@ -58,9 +61,9 @@ class Suggestion:
 
     @property
     def changed_pairs(self) -> tuple[str, ...]:
-        """Names of the pairs whose angle changes by more than 1e-9 degrees, largest change first."""
+        """Names of the pairs whose angle changes by more than `UNCHANGED` degrees, largest change first."""
         ranked = sorted(zip(self.changes, self.pair_names, strict=True), key=lambda item: -abs(item[0]))
-        return tuple(name for change, name in ranked if abs(change) > 1e-9)
+        return tuple(name for change, name in ranked if abs(change) > UNCHANGED)
 
     def degrees_of(self, pair: str) -> str:
         """The suggested angle of a pair, written in degrees."""
@@ -99,7 +102,7 @@ def nearest_closing(
     else:
         found = nearest_graphs(typed, size)
     result = [_suggest(candidate, typed, names, decide) for candidate in dict.fromkeys(found)]
-    result = [s for s in result if s.kind.startswith("closed") and s.largest_change > 1e-12]
+    result = [s for s in result if s.kind.startswith("closed") and s.largest_change > UNCHANGED]
     result.sort(key=lambda s: (round(s.largest_change, 9), s.kind != "closed", sum(map(abs, s.changes))))
     return tuple(result[:MOST_SUGGESTIONS])
 

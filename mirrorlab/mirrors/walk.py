@@ -16,6 +16,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+ON_WALL = 1e-9
+"""Heights below this part of the largest are 0: seeds are snapped to walls at 1e-6, and rounding is about 1e-15."""
+
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
 Progress = Callable[[int, int], object]
@@ -47,7 +50,7 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
     simple : ndarray, shape (r, d)
         Unit inward normals of the chamber's walls.
     dominant : ndarray, shape (d,)
-        A point with no negative height; heights within 1e-9 of its largest count as zero.
+        A point with no negative height; heights within `ON_WALL` of its largest count as zero.
     size : int
         Number of images, known from the group's order and the stabiliser.
     progress : callable, optional
@@ -56,7 +59,7 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
     rank, d = simple.shape
     two_gram = 2 * simple @ simple.T
     heights = simple @ dominant
-    small = 1e-9 * float(np.abs(heights).max(initial=0))
+    small = ON_WALL * float(np.abs(heights).max(initial=0))
     heights[np.abs(heights) <= small] = 0
     points = np.empty((size, d))
     parent = np.zeros(size, dtype=np.int64)
