@@ -21,6 +21,12 @@ MOST_IMAGES = 6000
 MOST_EDGES = 2500
 """Most edges drawn between an image and its neighbours across the chamber's walls; more make a grey disc."""
 
+SAME_LENGTH = 1e-7
+"""Part of the images' distance from the middle by which lengths or places differ and are one; rounding is 1e-13."""
+
+NO_LENGTH = 1e-9
+"""A unit normal that is seen shorter than this stands square to the plane and points nowhere in it."""
+
 REAL = 1e-6
 """An eigenvalue with a smaller imaginary part turns no plane; the least true one is sin(2π/h) with h ≤ 720."""
 
@@ -97,23 +103,35 @@ def _edges(group: ReflectionGroup, orbit: Orbit, places: Array, notes: list[str]
     if shown < len(orbit.points) or count > MOST_EDGES:
         notes.append("edges are left out: there are too many")
         return ()
-    # The neighbours of image g·s are g·(s reflected in a wall): all have one length from it, so they are found among
-    # the images by that length, wall by wall.
-    points = orbit.points
-    gaps = [float(2 * h) for h in group.simple @ orbit.seed if h > 1e-9]
-    square = np.einsum("ij,ij->i", points, points)
-    apart = np.sqrt(np.maximum(square[:, None] + square[None] - 2 * points @ points.T, 0))
-    size = float(np.sqrt(square.max()))
-    near = np.zeros(apart.shape, dtype=bool)
-    for gap in gaps:
-        near |= np.abs(apart - gap) < 1e-7 * size
-    i, j = np.nonzero(np.triu(near, 1))
+    i, j = _neighbours(group, orbit.points)
     if len(i) > MOST_EDGES:
         notes.append("edges are left out: there are too many")
     if not 0 < len(i) <= MOST_EDGES:
         return ()
     ends = np.stack([places[i], places[j]], axis=1).reshape(-1, 2)
     return (Line(Role.GENERATED_MIRROR, _flat(ends), ("edge", 0), apart=True, weight=0.55),)
+
+
+def _neighbours(group: ReflectionGroup, points: Array) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """Pairs of images g·s and g·(s reflected in a wall of the chamber).
+
+    They are as far apart as s is from its reflection, but so may others be. The foot of s on the wall lies in the
+    chamber, and of all images only those two are so near to it: so the middle of a pair must fold onto that foot.
+    """
+    seed = group.fold(points[:1])[0][0]
+    square = np.einsum("ij,ij->i", points, points)
+    apart = np.sqrt(np.maximum(square[:, None] + square[None] - 2 * points @ points.T, 0))
+    same = SAME_LENGTH * float(np.sqrt(square.max()))
+    found = np.zeros(apart.shape, dtype=bool)
+    for normal, height in zip(group.simple, group.simple @ seed, strict=True):
+        if height <= same:
+            continue
+        i, j = np.nonzero(np.triu(np.abs(apart - 2 * height) < same, 1))
+        middles, _ = group.fold(0.5 * (points[i] + points[j]))
+        fits = np.abs(middles - (seed - height * normal)).max(axis=1, initial=0.0) < same
+        found[i[fits], j[fits]] = True
+    i, j = np.nonzero(found)
+    return i, j
 
 
 def _images(orbit: Orbit, places: Array) -> tuple[Points, ...]:
@@ -137,7 +155,7 @@ def _mirrors(
     """A tick for each mirror in the direction of its normal; longer where the normal lies nearer to the plane."""
     flat = group.mirrors @ axes.T
     lengths = np.linalg.norm(flat, axis=1)
-    flat, lengths = flat[lengths > 1e-9], lengths[lengths > 1e-9]
+    flat, lengths = flat[lengths > NO_LENGTH], lengths[lengths > NO_LENGTH]
     unit = flat / np.maximum(lengths[:, None], 1e-12)
     longest = max(float(lengths.max()), 1e-12)
     outer = INNER + (OUTER - INNER) * lengths / longest
@@ -154,7 +172,7 @@ def _mirrors(
     taken: list[Array] = []
     for i, (letter, normal) in enumerate(zip(arrangement.letters, normals @ axes.T, strict=True)):
         size = float(np.linalg.norm(normal))
-        if size < 1e-9:
+        if size < NO_LENGTH:
             continue
         ray = normal / size
         tick = np.stack([INNER * ray, (INNER + (OUTER - INNER) * size / longest) * ray])

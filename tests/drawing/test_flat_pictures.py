@@ -198,6 +198,41 @@ def test_the_coxeter_plane_s_drawing():
     assert any("51,840" in note for note in told.notes)
 
 
+@pytest.mark.parametrize(
+    ("name", "heights"),
+    [
+        ("A3", [1, 2, 3]),  # the mirror between a and b is as far from the seed as c: 1 + 2 = 3
+        (
+            "A1xA1xA1",
+            [3, 4, 5],
+        ),  # two steps over square walls are as long as one over the third: 3² + 4² = 5²
+        ("A4", [1, 2, 3, 4]),
+        ("D4", [1, 2, 3, 4]),
+        ("B3", [0, 1, 2]),
+        ("A4", [0, 1, 0, 1]),
+    ],
+)
+def test_edges_join_images_across_one_wall(name: str, heights: list[float]):
+    arrangement = ml.Arrangement.from_family(name)
+    finding, orbit = arrangement.finding(), arrangement.orbit(heights=heights)
+    group = finding.group
+    drawing = coxeter_drawing(arrangement, finding, orbit)
+    joined = set()  # from the definition: g·s and g·(s reflected in a wall) for every g
+    rank = {tuple(place): k for k, place in enumerate((np.round(orbit.points, 6) + 0.0).tolist())}
+    for matrix in group.elements()[0]:
+        for normal in group.simple:
+            across = orbit.seed - 2 * (orbit.seed @ normal) * normal
+            ends = np.round(np.stack([orbit.seed, across]) @ matrix.T, 6) + 0.0
+            joined.add(frozenset(rank[tuple(end)] for end in ends.tolist()))
+    joined = {pair for pair in joined if len(pair) == 2}
+    edges = next(line for line in drawing.lines if line.key == ("edge", 0)).points[:, :2].reshape(-1, 2, 2)
+    flat = orbit.points @ coxeter_axes(group).T
+    flat /= np.linalg.norm(flat, axis=1).max()
+    wanted = [flat[sorted(pair)] for pair in sorted(joined, key=sorted)]
+    assert len(edges) == len(wanted)
+    np.testing.assert_allclose(edges, wanted, atol=1e-9)
+
+
 def test_no_coxeter_plane_without_a_group():
     arrangement = ml.Arrangement.from_angles(["90", "60", "50"])
     drawing = coxeter_drawing(arrangement, arrangement.finding())
