@@ -22,6 +22,9 @@ from mirrorlab.optics.stand import (
     to_radians,
 )
 
+SQUARE_EDGE = 1e-6
+"""Cosine between an edge and the centre line below which the mouth lies further out than anyone builds."""
+
 
 def corner(
     angles: Sequence[AngleLike],
@@ -62,7 +65,7 @@ def corner(
     else:
         msg = f"cut {cut!r}: must be 'equal edges' or 'centre line'"
         raise AssemblyError(msg, "cut")
-    if (edges @ axis).min() <= 1e-6 * np.linalg.norm(axis):
+    if (edges @ axis).min() <= SQUARE_EDGE * np.linalg.norm(axis):
         msg = "cut 'centre line': an edge of this corner stands square to the centre line; use 'equal edges'"
         raise AssemblyError(msg, "cut")
     axes = rotation_onto_z(axis, edges[1] / (edges[1] @ axis) - edges[0] / (edges[0] @ axis))

@@ -248,7 +248,7 @@ def poses(outline: Array) -> tuple[Pose, ...]:
 
 
 def _same_shape(one: Array, other: Array) -> bool:
-    return any(np.allclose(np.roll(one, k, axis=0), other, atol=1e-6) for k in range(len(one)))
+    return any(np.allclose(np.roll(one, k, axis=0), other, atol=FIT_TOLERANCE) for k in range(len(one)))
 
 
 def nest(pieces: Sequence[Piece], stock: Stock) -> Layout:

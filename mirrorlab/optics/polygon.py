@@ -13,6 +13,12 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
+PARALLEL = 1e-12
+"""Three sides whose normals have a smaller determinant hold no circle between them."""
+
+TOUCHES = 1e-9
+"""Part of a circle's radius by which it may stand over a side: rounding."""
+
 SHORTEST_SIDE = 1e-6
 """mm; a side shorter than this is no side: a thousandth of what any cutter can measure."""
 
@@ -112,11 +118,11 @@ def largest_circle(outline: Array) -> tuple[Array, float]:
     best, radius = outline.mean(axis=0), 0.0
     for triple in combinations(range(len(outline)), 3):
         rows = np.column_stack([normals[list(triple)], -np.ones(3)])
-        if abs(np.linalg.det(rows)) < 1e-12:
+        if abs(np.linalg.det(rows)) < PARALLEL:
             continue
         x, y, r = np.linalg.solve(rows, levels[list(triple)])
         inside = normals @ np.array([x, y]) - levels
-        if r > radius and np.all(inside >= r - 1e-9 * max(1.0, r)):
+        if r > radius and np.all(inside >= r - TOUCHES * max(1.0, r)):
             best, radius = np.array([x, y]), float(r)
     return best, radius
 

@@ -14,6 +14,12 @@ from mirrorlab.optics.lengths import AssemblyError
 
 Array = NDArray[np.float64]
 
+SIDES_FIT = 1e-3
+"""Part of the longest side by which typed sides of a tube may miss those that its angles make: a rounded digit."""
+
+NO_POINT = 1e-9
+"""Squared sine of the smallest angle at a corner's point; below it the mirrors share a line, or meet nowhere."""
+
 LETTERS = "abcd"
 
 TUBE_CLOSURE = math.radians(0.02)
@@ -92,7 +98,7 @@ def _quadrilateral_sides(ways: Array, sides: Sequence[float]) -> Array:
 
 
 def _check_sides(given: Array, needed: Array) -> None:
-    if np.abs(given - needed).max() > 1e-3 * needed.max():
+    if np.abs(given - needed).max() > SIDES_FIT * needed.max():
         wanted = ", ".join(f"{value:.6g}" for value in needed)
         typed = ", ".join(f"{value:.6g}" for value in given)
         msg = f"sides {typed} mm do not fit the angles; these would: {wanted} mm (or give only the first)"
@@ -123,7 +129,7 @@ def corner_normals(angles: Sequence[float]) -> Array:
     rest = 1.0 - math.cos(ab) ** 2
     y = (-math.cos(bc) - x * -math.cos(ab)) / math.sqrt(rest) if rest > 0 else 0.0
     left = 1.0 - x * x - y * y
-    if rest <= 0 or left < 1e-9:
+    if rest <= 0 or left < NO_POINT:
         names = ", ".join(f"{math.degrees(angle):.6g}°" for angle in angles)
         msg = (
             f"angles {names}: no three mirrors meet in one point like this; each must be over 0° and below"

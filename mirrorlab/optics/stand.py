@@ -32,6 +32,9 @@ is near 37π/112 is chance, and mirrors at 59.5° shall stand at 59.5°."""
 WIDEST_FIELD = math.radians(100)
 """A wider flat picture pulls its rims apart beyond what one takes for a view."""
 
+ROUNDING = 1e-5
+"""Part of an opening by which it may be larger than the panels leave: six digits that were shown can be typed back."""
+
 MARGIN = 1.2
 """How much wider a view is than what it is about."""
 
@@ -117,7 +120,7 @@ def finish(
     window = mouth
     if opening is not None:
         wanted = positive_length(opening, "opening")
-        if wanted > measure * (1 + 1e-9):
+        if wanted > measure * (1 + ROUNDING):
             msg = (
                 f"opening {wanted:.6g} mm: larger than the {measure:.6g} mm that the panels leave; make the"
                 " mirrors larger or the opening smaller"

@@ -190,3 +190,11 @@ def test_other_angles_keep_the_dimensions() -> None:
     with pytest.raises(optics.AssemblyError) as caught:
         optics.with_angles(wedge, [60, 61])
     assert caught.value.field == "actual"
+
+
+@pytest.mark.parametrize("depth", [137.3, 150.0, 211.7, 83.1])
+def test_the_largest_opening_that_is_told_can_be_typed(depth: float) -> None:
+    with pytest.raises(ValueError, match="larger than the") as refused:
+        optics.corner(["90", "60", "36"], depth, opening=1e5)
+    told = str(refused.value).split("larger than the ")[1].split(" mm")[0]
+    assert optics.corner(["90", "60", "36"], depth, opening=told).kind == "corner"
