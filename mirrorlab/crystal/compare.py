@@ -282,10 +282,10 @@ def compare_points(
     allowed, used = _allowed(points, where, tolerance, directions, basis)
     kinds = _kinds(points.kinds)
     found = Orientation.as_given()
-    if orientation == "searched":
+    if orientation == "refined":
+        found = refine_orientation(where, matrices, allowed, kinds)
+    elif orientation == "searched":
         found = search_orientation(where, matrices, allowed, kinds)
-    if orientation != "given":
-        found = refine_orientation(where, matrices, allowed, kinds, found)
     where = where @ found.rotation.T
     operations = tuple(
         _match(named, k, matrix, where, allowed, kinds, points, directions)

@@ -35,13 +35,13 @@ MOST_ROUNDS = 60
 SETTLED = 1e-12
 """Radians below which a round's turn ends the refinement."""
 
-STARTS = 2500
-"""Orientations tried in a search: they lie about 16° apart, and symmetry makes them denser."""
+STARTS = 6000
+"""Orientations tried in a search: they lie about 12° apart, and symmetry makes them denser."""
 
 SEED = 7
 """Of the random orientations, so that a search gives the same answer every time."""
 
-REFINED = 8
+REFINED = 30
 """The best of them, which are refined and compared."""
 
 SAMPLE = 60
@@ -206,11 +206,12 @@ def search_orientation(points: Array, matrices: Array, allowed: Array, kinds: Wh
         scores += (np.minimum(near, reach) ** 2).reshape(len(turns), -1).sum(axis=1)
     best, lowest, rounds = turns[0], np.inf, 0
     for k in np.argsort(scores, kind="stable")[:REFINED]:
-        rotation, rounds = _narrowed(points, matrices, allowed, kinds, turns[int(k)], WIDEST / 2)
+        rotation, rounds = _narrowed(points, matrices, allowed, kinds, turns[int(k)], WIDEST)
         cost = _misfit(points @ rotation.T, matrices, allowed)
         if cost < lowest * (1 - 1e-9):
             best, lowest = rotation, cost
-    return Orientation.of("searched", best, rounds)
+    start = Orientation.of("searched", best, rounds)
+    return refine_orientation(points, matrices, allowed, kinds, start)
 
 
 def _telling(matrices: Array) -> list[Array]:
