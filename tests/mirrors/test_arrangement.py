@@ -184,3 +184,5 @@ def test_orbit_says_why_there_is_none():
         point = [1.0] * arrangement.normals.shape[1]
         with pytest.raises(OrbitError, match="no finite orbit"):
             arrangement.orbit(point=point)
+        with pytest.raises(OrbitError, match="no finite orbit"):
+            arrangement.orbit(heights=[1, 2, 3])

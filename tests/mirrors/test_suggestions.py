@@ -102,7 +102,8 @@ def test_two_mirrors():
     star = Arrangement.from_angles(["72"]).finding().suggestions
     assert [s.angles[0] for s in star if s.kind == "closed"] == [F(1, 3), F(1, 2)]
     assert all(s.kind.startswith("closed") for s in Arrangement.from_angles(["0"]).finding().suggestions)
-    narrow = Arrangement.from_angles(["0.2"]).finding().suggestions  # the nearest simple fraction is 0: parallel
+    # The nearest simple fraction is 0, parallel mirrors, which do not close.
+    narrow = Arrangement.from_angles(["0.2"]).finding().suggestions
     assert narrow
     assert all(s.kind.startswith("closed") for s in narrow)
 
