@@ -30,6 +30,8 @@ class Parser(argparse.ArgumentParser):
 
     def error(self, message: str) -> None:  # type: ignore[override]
         """Say what is wrong and where help is, in one line, and leave with status 2."""
+        for kind, accepted in (("int", "a whole number"), ("float", "a number")):
+            message = re.sub(rf"invalid {kind} value: (.*)", rf"\1 is not {accepted}", message)
         self.exit(BAD_INPUT, f"{self.prog}: {message} (see {self.prog} --help)\n")
 
 

@@ -262,15 +262,15 @@ class Arrangement:
         Raises
         ------
         OrbitError
-            As for `seed`.
+            The reflections make no finite group, or as for `seed`.
         TooLarge
             More than `limit` images.
         """
-        start = self.seed(heights, point, place)
         group = self.finding().group
         if group is None:
             msg = f"no finite orbit: {self.finding().sentence}"
             raise OrbitError(msg)
+        start = self.seed(heights, point, place)
         return make_orbit(group, start, self.frame, rotations, limit, progress)
 
 
