@@ -117,6 +117,7 @@ class Document(QObject):
         self.orbit_note = ""
         self._selection: Key | None = None
         self._paths: dict[int, Path] = {}
+        self._firsts: dict[int, State] = {state.sheet: state}
         self._gestures = 0
         self._sheets = state.sheet
         self._make_orbit()
@@ -161,6 +162,13 @@ class Document(QObject):
         """The file that saving writes, if there is one yet."""
         return self._paths.get(self.state.sheet)
 
+    @property
+    def altered(self) -> bool:
+        """Whether the sheet differs from how it was opened or last saved."""
+        first, now = self._firsts[self.state.sheet], self.state
+        same = first.arrangement is now.arrangement and first.seed == now.seed
+        return not (same and first.crystal is now.crystal and first.glass is now.glass)
+
     # -- changes -----------------------------------------------------------------------------------
 
     def new_gesture(self, what: str) -> str:
@@ -200,13 +208,16 @@ class Document(QObject):
         if path is not None:
             self._paths[self._sheets] = path
         fields.setdefault("seed", fitted(self.seed, arrangement))
-        self.change(f"open {name}", arrangement=arrangement, name=name, sheet=self._sheets, **fields)
+        after = replace(self.state, arrangement=arrangement, name=name, sheet=self._sheets, **fields)
+        self._firsts[self._sheets] = after
+        self.undo_stack.push(_Step(self, after, f"open {name}", ""))
         if path is not None:
             self.undo_stack.setClean()
 
     def saved_as(self, path: Path) -> None:
         """The sheet now stands in that file."""
         self._paths[self.state.sheet] = path
+        self._firsts[self.state.sheet] = self.state
         self.undo_stack.setClean()
         self.name_changed.emit()
 

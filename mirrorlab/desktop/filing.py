@@ -196,7 +196,7 @@ class Filing(QObject):
 
     def keep_unsaved(self) -> None:
         """Write unsaved changes aside, so that the next start can offer them."""
-        if self._document.undo_stack.isClean():
+        if not self._document.altered:
             return
         from mirrorlab.desktop.sheets import write_sheet
 

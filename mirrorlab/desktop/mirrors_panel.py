@@ -57,7 +57,7 @@ class MirrorsPanel(QFrame):
         self.ways.grown.connect(self._reveal)
         self.add.clicked.connect(document.add_mirror)
         self.remove.clicked.connect(lambda: document.remove_mirror(self._to_remove()))
-        for signal in (document.arrangement_changed, document.selection_changed, document.name_changed):
+        for signal in (document.settled, document.selection_changed, document.name_changed):
             signal.connect(self.refresh)
         document.settings_changed.connect(self.refresh)
         self.refresh()
@@ -94,7 +94,8 @@ class MirrorsPanel(QFrame):
         """Show the arrangement's name, and what can be added or removed."""
         size = self.document.arrangement.size
         given = self.document.arrangement.given_normals
-        self.name.setText(self.document.name or "Mirrors")
+        changed = ", changed" if self.document.altered and self.document.name else ""
+        self.name.setText((self.document.name or "Mirrors") + changed)
         self.fit()
         self.add.setEnabled(size < MOST_MIRRORS and not given)
         self.remove.setEnabled(size > FEWEST_MIRRORS)

@@ -108,7 +108,7 @@ class Window(QMainWindow):
         self.filing.failed.connect(self.notice.warn)
         self.document.name_changed.connect(self._show_title)
         self.document.settled.connect(self._settle)
-        self.document.undo_stack.cleanChanged.connect(self._show_title)
+        self.document.settled.connect(self._show_title)
 
     def _welcome(self, bench: Bench) -> None:
         bench.says.connect(self.status.say)
@@ -128,10 +128,10 @@ class Window(QMainWindow):
         else:
             self.split.setSizes(self._table_sizes)
 
-    def _show_title(self, _clean: bool = True) -> None:
+    def _show_title(self) -> None:
         name = self.document.path.name if self.document.path else self.document.name
         self.setWindowTitle(f"{name or 'New arrangement'}[*] – Mirrorlab")
-        self.setWindowModified(not self.document.undo_stack.isClean())
+        self.setWindowModified(self.document.altered)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)

@@ -102,7 +102,8 @@ def clear(window: Window) -> None:
     document.work.cancel()
     document.undo_stack.clear()
     document._paths.clear()
-    document._show(first_state())
+    document._firsts = {0: first_state()}
+    document._show(document._firsts[0])
     document.select(None)
     window.actions_.help.hide()
     window.notice.hide()

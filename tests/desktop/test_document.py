@@ -99,6 +99,18 @@ def test_opening_is_a_step_and_paths_stay_with_their_sheets(document: Document, 
     assert document.finding.families == ("B3",)
 
 
+def test_a_sheet_knows_whether_it_differs_from_how_it_was_opened(document: Document) -> None:
+    assert not document.altered
+    document.set_angle(2, "36")
+    assert document.altered
+    document.undo_stack.undo()
+    assert not document.altered
+    document.put_sheet(Arrangement.from_family("H3"), "H3")
+    assert not document.altered
+    document.set_seed(Seed(place="wall a"))
+    assert document.altered
+
+
 def test_long_orbit_comes_beside_the_window(document: Document, qtbot: QtBot) -> None:
     document.set_arrangement(Arrangement.from_family("E6"), "E6")
     assert document.orbit is None

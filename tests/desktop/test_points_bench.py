@@ -91,9 +91,7 @@ def test_rotations_halve_the_images(window: Window, bench: PointsBench) -> None:
     assert bench.group.current == 0
 
 
-def test_the_seed_is_dragged_in_the_map_as_one_step(
-    window: Window, bench: PointsBench, qtbot: QtBot
-) -> None:
+def test_the_seed_is_dragged_in_the_map_as_one_step(window: Window, bench: PointsBench, qtbot: QtBot) -> None:
     qtbot.waitUntil(lambda: bool(bench.map.view.drawing.points) and not bench.map._later.isActive())
     view = bench.map.view.current
     seed = next(p for p in view.drawing.points if p.role is Role.SEED).positions

@@ -130,6 +130,17 @@ def test_light_and_dark(window: Window, qtbot: QtBot) -> None:
     QTest.keyClick(window, Qt.Key.Key_L, Qt.KeyboardModifier.ControlModifier)
 
 
+def test_the_sheets_name_says_when_it_was_changed(window: Window) -> None:
+    name = window.mirrors.name
+    assert name.text() == "Ostrel corner lantern"
+    window.document.set_angle(2, "36")
+    assert name.text() == "Ostrel corner lantern, changed"
+    assert window.isWindowModified()
+    window.document.undo_stack.undo()
+    assert name.text() == "Ostrel corner lantern"
+    assert not window.isWindowModified()
+
+
 def test_long_work_shows_and_is_cancelled(window: Window, qtbot: QtBot) -> None:
     import threading
 
