@@ -45,7 +45,8 @@ class Choice:
     area : float
         m² of reflecting faces.
     bright : int
-        Images that keep at least `FAINTEST` of their light.
+        Images that keep at least `FAINTEST` of their light; with more than one chamber between the mirrors, at most
+        so many of those seen at one time.
     problem : str
         Why it can't be made for this opening; "" when it can.
     """
@@ -181,6 +182,8 @@ def asked_for(closing: Closing, opening: float, length: float) -> dict[str, obje
 def sized(closing: Closing, opening: float, length: float, bounces: int) -> Choice:
     """One closing assembly made for an opening."""
     bright = bright_images(closing, bounces)
+    if closing.images is not None:  # places that overlap are never seen at one time
+        bright = min(bright, closing.images)
     try:
         assembly = assembly_from(asked_for(closing, opening, length))
     except AssemblyError as error:

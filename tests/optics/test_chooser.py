@@ -77,6 +77,14 @@ def test_bright_images_of_closed_assemblies_are_all_that_few_bounces_reach(liste
             assert choice.bright <= choice.closing.order - 1
 
 
+def test_no_more_images_are_bright_than_are_seen(listed):
+    """Where chambers overlap, light finds images in more places than an eye sees at one time."""
+    assert all(c.bright <= c.closing.images for c in listed if c.closing.images is not None)
+    choice = next(c for c in listed if c.closing.name == "corner 120° 45° 45°")
+    found = count_images(assembly_from(choice.dimensions), faintest=FAINTEST)
+    assert found.count > sum(image.seen for image in found.images) == choice.bright == choice.images
+
+
 def test_bright_images_of_tubes_by_hand():
     """Growth of the affine groups: 3n images at n bounces for 60/60/60, 4n for the rectangle."""
     tubes = {c.symbol: c for c in closing_assemblies() if c.kind == "tube" and c.chambers == 1}
