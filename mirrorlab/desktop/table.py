@@ -257,7 +257,7 @@ class TablePanel(QFrame):
             self._widths[titles] = [min(MOST_WIDE, max(MOST_NARROW, size)) for size in sizes]
         for i, width in enumerate(self._widths[titles]):
             head.resizeSection(i, width)
-        head.setStretchLastSection(True)
+        head.setStretchLastSection(model.columns[-1].text)  # a number far from its neighbours is hard to read
 
     def _picked(self) -> None:
         model = self.rows.model()

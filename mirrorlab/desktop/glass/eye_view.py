@@ -149,7 +149,7 @@ class EyeView(QWidget):
             return None, told(error)
 
     def _warm_up(self) -> None:
-        self._say("Warming up: the first view takes a few seconds …")
+        self._say("Warming up: the first view on a computer takes about a quarter of a minute, later ones a moment …")
         if WARM_JOB not in self.document.work.running():
             self.document.work.start(WARM_JOB, warming, lambda _: self._ready(), self._failed)
 
