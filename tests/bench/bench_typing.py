@@ -1,6 +1,6 @@
 """How long from a keystroke in a cell to new finding, picture and table on the screen. Printed, not asserted.
 
-Run with ``pytest tests/bench/test_typing.py -s``.
+Run with ``pytest tests/bench/bench_typing.py -s``.
 """
 
 from __future__ import annotations

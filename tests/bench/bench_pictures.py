@@ -1,4 +1,7 @@
-"""How long a new picture takes. Times are of the processor, so that a busy machine does not count."""
+"""How long a new picture of 120 chambers takes: made, taken by a view, painted. Printed, not asserted.
+
+Times are of the processor, so that a busy machine counts less. Run with ``pytest -s tests/bench/bench_pictures.py``.
+"""
 
 from __future__ import annotations
 
@@ -15,15 +18,6 @@ from mirrorlab.drawing.model import Drawing
 from mirrorlab.drawing.space import chamber_faces, mirror_lines, space_drawing
 
 ROUNDS = 15
-
-NEW_DRAWING = 10.0
-"""Milliseconds for a view to take another drawing of 120 chambers; about 4 were measured on two shared cores."""
-
-MAKE_DRAWING = 15.0
-"""Milliseconds to make that drawing anew; about 5 were measured, half of them for the group's elements."""
-
-PAINT = 80.0
-"""Milliseconds to paint it without OpenGL; about 30 were measured."""
 
 
 def fresh() -> Drawing:
@@ -52,7 +46,7 @@ def test_making_a_drawing_of_120_chambers():
         mirror_lines.cache_clear()
         space_drawing(arrangement, finding, orbit)
 
-    assert middle(make) < MAKE_DRAWING
+    print(f"\nmaking the drawing {middle(make):.1f} ms")
 
 
 @pytest.mark.gl
@@ -63,7 +57,7 @@ def test_showing_a_drawing_of_120_chambers(qtbot: QtBot):
     view = SpaceView()
     qtbot.addWidget(view)
     view.resize(700, 600)
-    assert middle(lambda k: view.set_drawing(drawings[k])) < NEW_DRAWING
+    print(f"\ntaking another drawing {middle(lambda k: view.set_drawing(drawings[k])):.1f} ms")
 
 
 def test_painting_a_drawing_of_120_chambers(qtbot: QtBot):
@@ -76,4 +70,4 @@ def test_painting_a_drawing_of_120_chambers(qtbot: QtBot):
         view.set_camera(view.camera.turned(3, 1))
         view.grab()
 
-    assert middle(turn) < PAINT
+    print(f"\npainting without OpenGL {middle(turn):.1f} ms")
