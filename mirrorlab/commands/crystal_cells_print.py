@@ -10,8 +10,8 @@ from mirrorlab.commands.output import print_table
 if TYPE_CHECKING:
     from mirrorlab.crystal.cell import Cell
     from mirrorlab.crystal.cif import CrystalFile
-    from mirrorlab.crystal.compare import Comparison
-    from mirrorlab.crystal.fit import Fit, FitCandidate
+    from mirrorlab.crystal.comparison import Comparison
+    from mirrorlab.crystal.fit_result import Fit, FitCandidate
     from mirrorlab.crystal.lattice_mirrors import LatticeSymmetry, Symmetry
     from mirrorlab.crystal.planes import Planes
 
@@ -147,7 +147,7 @@ def print_fit(found: Fit) -> None:
             (
                 str(rank),
                 one.symbol,
-                one.finding.kind,
+                "through one line" if one.one_line else one.finding.kind,
                 *angles,
                 f"{one.chi_squared:.4g}",
                 f"{one.probability:.2g}",

@@ -185,6 +185,21 @@ class Cell:
         """Whether any constant has an uncertainty."""
         return any(self.uncertainties)
 
+    @cached_property
+    def _moved(self) -> list[tuple[tuple[Cell, Cell], float, float]]:
+        """For each parameter the cells a step above and below, the step, and the standard uncertainty."""
+        made = []
+        for group in self.parameters:
+            step = STEP * self.constants[group[0]] if group[0] < 3 else 10 * STEP
+            ends = []
+            for sign in (1, -1):
+                moved = list(self.constants)
+                for k in group:
+                    moved[k] += sign * step
+                ends.append(replace(self, constants=tuple(moved)))
+            made.append(((ends[0], ends[1]), step, self.uncertainties[group[0]]))
+        return made
+
     def propagate(self, function: Callable[[Cell], ArrayLike]) -> Array:
         """Covariance of numbers that follow from the cell, shape (m, m), to first order.
 
@@ -194,15 +209,9 @@ class Cell:
             From a cell to m numbers.
         """
         columns = []
-        for group in self.parameters:
-            step = STEP * self.constants[group[0]] if group[0] < 3 else 10 * STEP
-            ends = []
-            for sign in (1, -1):
-                moved = list(self.constants)
-                for k in group:
-                    moved[k] += sign * step
-                ends.append(np.atleast_1d(np.asarray(function(replace(self, constants=tuple(moved))), float)))
-            columns.append((ends[0] - ends[1]) / (2 * step) * self.uncertainties[group[0]])
+        for ends, step, sigma in self._moved:
+            values = [np.atleast_1d(np.asarray(function(end), float)) for end in ends]
+            columns.append((values[0] - values[1]) / (2 * step) * sigma)
         if not columns:
             count = np.atleast_1d(np.asarray(function(self), float)).size
             return np.zeros((count, count))

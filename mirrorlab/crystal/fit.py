@@ -8,236 +8,30 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable
-from dataclasses import dataclass
 from fractions import Fraction
-from functools import cached_property
+from itertools import product
 
-from mirrorlab.angles import Angle, AngleError, parse_angle, write_angle
-from mirrorlab.crystal.fit_candidates import Costs, Folded, best_sets, closing_sides
-from mirrorlab.crystal.operations import CrystalError
-from mirrorlab.mirrors import Arrangement, Finding
+from mirrorlab.angles import Angle, AngleError, parse_angle
+from mirrorlab.crystal.fit_candidates import (
+    AngleSet,
+    Costs,
+    Folded,
+    best_sets,
+    closing_sides,
+    zone_directions,
+)
+from mirrorlab.crystal.fit_result import (
+    IMPROBABLE,
+    MISFIT,
+    Fit,
+    FitCandidate,
+    FitError,
+    MeasuredAngle,
+)
 from mirrorlab.mirrors.families import TOP_RANK
 
 MOST_CANDIDATES = 12
 """Candidates that are listed unless more are asked for."""
-
-TOLD_APART = 2 * math.log(20)
-"""Difference of χ² above which two candidates are told apart: the better one is then more than 20 times as likely."""
-
-IMPROBABLE = 0.01
-"""Probability of so large a χ² below which a candidate does not fit; common practice, no source."""
-
-MISFIT = 3.0
-"""Pull, in standard uncertainties, from which on an angle is at odds with a candidate; common practice, no source."""
-
-
-class FitError(CrystalError):
-    """Measured angles that cannot be fitted."""
-
-
-@dataclass(frozen=True, slots=True)
-class MeasuredAngle:
-    """One measured angle.
-
-    Attributes
-    ----------
-    pair : str
-        The mirrors by letters, such as ``ab``.
-    text : str
-        As typed.
-    degrees, sigma : float
-        In degrees; sigma is 0 for an exact angle.
-    source : str
-        "measured", "rounded" (half of the last digit over √3 as uncertainty), "given" (the uncertainty given for all
-        angles without one of their own) or "exact".
-    """
-
-    pair: str
-    text: str
-    degrees: float
-    sigma: float
-    source: str
-
-    def to_dict(self) -> dict:
-        """Plain JSON."""
-        return {
-            "pair": self.pair,
-            "text": self.text,
-            "degrees": self.degrees,
-            "sigma": self.sigma,
-            "source": self.source,
-        }
-
-
-@dataclass(frozen=True, eq=False)
-class FitCandidate:
-    """A closed arrangement held against the measured angles.
-
-    Attributes
-    ----------
-    angles : tuple of Fraction
-        Fractions of π, pair by pair, written on the sides that agree best with the angles as typed.
-    supplements : tuple of bool
-        Where the measured angle was taken for 180° − θ of the candidate: measured in the neighbouring wedge.
-    deviations : tuple of float
-        Measured less candidate, in degrees.
-    pulls : tuple of float or None
-        The same in standard uncertainties; None for an exact angle.
-    chi_squared : float
-    probability : float
-        Of a χ² at least as large, if the candidate is true.
-    worst : str
-        Pair with the largest pull.
-    misfit : str or None
-        That pair, where its pull is above 3 and the other angles fit without it.
-    probability_without : float or None
-        Probability of the others' χ² when the worst is left out; None when no other is left.
-    """
-
-    angles: tuple[Fraction, ...]
-    supplements: tuple[bool, ...]
-    deviations: tuple[float, ...]
-    pulls: tuple[float | None, ...]
-    chi_squared: float
-    probability: float
-    worst: str
-    misfit: str | None
-    probability_without: float | None
-
-    @cached_property
-    def arrangement(self) -> Arrangement:
-        """The mirrors, closed."""
-        return Arrangement.from_angles(self.angles)
-
-    @cached_property
-    def finding(self) -> Finding:
-        """What they do."""
-        return self.arrangement.finding()
-
-    @property
-    def fits(self) -> bool:
-        """Whether the probability is not too small."""
-        return self.probability >= IMPROBABLE
-
-    @property
-    def angle_text(self) -> str:
-        """``45°, 60°, 90°``."""
-        return ", ".join(write_angle(f) for f in self.angles)
-
-    @property
-    def symbol(self) -> str:
-        """Point group, or the families for more than three mirrors: ``m-3m``, ``E7``."""
-        symbols = self.finding.point_group
-        return " × ".join(self.finding.families) if symbols is None else symbols.hermann_mauguin
-
-    @property
-    def name(self) -> str:
-        """``m-3m (B3) at 45°, 60°, 90°``."""
-        families = " × ".join(self.finding.families)
-        head = self.symbol if self.symbol == families else f"{self.symbol} ({families})"
-        return f"{head} at {self.angle_text}"
-
-    def to_dict(self) -> dict:
-        """Plain JSON."""
-        finding = self.finding
-        symbols = finding.point_group
-        return {
-            "angles": [write_angle(f, "pi") for f in self.angles],
-            "degrees": [float(180 * f) for f in self.angles],
-            "supplements": list(self.supplements),
-            "deviations": list(self.deviations),
-            "pulls": list(self.pulls),
-            "chi_squared": self.chi_squared,
-            "probability": self.probability,
-            "fits": self.fits,
-            "worst": self.worst,
-            "misfit": self.misfit,
-            "probability_without_worst": self.probability_without,
-            "kind": finding.kind,
-            "families": list(finding.families),
-            "order": finding.order,
-            "mirror_count": finding.mirror_count,
-            "chambers_between": finding.chambers_between,
-            "crystallographic": finding.crystallographic,
-            "point_group": None if symbols is None else symbols.to_dict(),
-        }
-
-
-@dataclass(frozen=True, eq=False)
-class Fit:
-    """Closed arrangements ranked against measured angles.
-
-    Attributes
-    ----------
-    measured : tuple of MeasuredAngle
-    degrees_of_freedom : int
-    candidates : tuple of FitCandidate
-        The best first.
-    complete : bool
-        Every closed arrangement was looked at, so no better one exists.
-    notes : tuple of str
-        How angles without an uncertainty were taken.
-    """
-
-    measured: tuple[MeasuredAngle, ...]
-    degrees_of_freedom: int
-    candidates: tuple[FitCandidate, ...]
-    complete: bool
-    notes: tuple[str, ...]
-
-    @property
-    def best(self) -> FitCandidate:
-        """The candidate of least χ²."""
-        return self.candidates[0]
-
-    @property
-    def tied(self) -> tuple[FitCandidate, ...]:
-        """Others that these measurements do not tell from the best."""
-        most = self.best.chi_squared + TOLD_APART
-        return tuple(one for one in self.candidates[1:] if one.chi_squared < most)
-
-    def sharper(self, other: FitCandidate) -> float | None:
-        """By what factor all uncertainties would have to shrink to tell `other` from the best; None when they suffice.
-
-        From the χ² that is to be expected for the one when the other is true.
-        """
-        apart = 0.0
-        for one, f, g in zip(self.measured, self.best.angles, other.angles, strict=True):
-            if one.sigma:
-                off = float(180 * (min(f, 1 - f) - min(g, 1 - g))) / one.sigma
-                apart += off * off
-        return math.sqrt(TOLD_APART / apart) if 0 < apart < TOLD_APART else None
-
-    @property
-    def sentence(self) -> str:
-        """The answer in words."""
-        best = self.best
-        count = self.degrees_of_freedom
-        angles = f"{count} angle{'s' if count != 1 else ''}"
-        numbers = f"χ² = {best.chi_squared:.3g} for {angles}, probability {best.probability:.2g}"
-        if not best.fits:
-            text = f"No closed arrangement fits; nearest is {best.name}: {numbers}."
-            if best.misfit:
-                text += f" The misfit is {best.misfit}; the others fit."
-        else:
-            text = f"Fits {best.name}: {numbers}."
-        if self.tied:
-            names = [one.name for one in self.tied[:3]]
-            more = f" and {len(self.tied) - 3} more" if len(self.tied) > 3 else ""
-            text += f" At this precision it cannot be told from {'; '.join(names)}{more}."
-        return text
-
-    def to_dict(self) -> dict:
-        """Plain JSON."""
-        return {
-            "measured": [one.to_dict() for one in self.measured],
-            "degrees_of_freedom": self.degrees_of_freedom,
-            "candidates": [one.to_dict() for one in self.candidates],
-            "tied_with_best": [1 + self.candidates[1:].index(one) for one in self.tied],
-            "complete": self.complete,
-            "notes": list(self.notes),
-            "sentence": self.sentence,
-        }
 
 
 def fit_angles(
@@ -257,7 +51,7 @@ def fit_angles(
         Standard uncertainty in degrees of the angles typed without one. When not given, a decimal is taken as rounded
         and a whole number of degrees or fraction of π as exact.
     subdivided : bool
-        Also candidates with generated mirrors between the measured ones (two and three mirrors).
+        Also candidates with generated mirrors between the measured ones, and three mirrors through one line.
     most : int
         At most so many candidates, 1 to 500.
 
@@ -331,8 +125,8 @@ def _notes(measured: tuple[MeasuredAngle, ...], complete: bool) -> tuple[str, ..
     return tuple(notes)
 
 
-def _candidate(folded: Folded, measured: tuple[MeasuredAngle, ...], freedom: int) -> FitCandidate:
-    angles = _as_typed(folded, measured)
+def _candidate(chosen: AngleSet, measured: tuple[MeasuredAngle, ...], freedom: int) -> FitCandidate:
+    angles = _as_typed(chosen, measured)
     supplements, deviations = [], []
     for one, fraction in zip(measured, angles, strict=True):
         wedge, other = (one.degrees - float(180 * f) for f in (fraction, 1 - fraction))
@@ -347,6 +141,7 @@ def _candidate(folded: Folded, measured: tuple[MeasuredAngle, ...], freedom: int
     odd = squares[worst] > MISFIT**2 and without is not None and without >= IMPROBABLE
     return FitCandidate(
         angles,
+        chosen.one_line,
         tuple(supplements),
         tuple(deviations),
         tuple(pulls),
@@ -365,7 +160,7 @@ def probability_of(chi_squared: float, freedom: int) -> float:
     return float(gammaincc(freedom / 2, max(chi_squared, 0.0) / 2))
 
 
-def _as_typed(folded: Folded, measured: tuple[MeasuredAngle, ...]) -> tuple[Fraction, ...]:
+def _as_typed(chosen: AngleSet, measured: tuple[MeasuredAngle, ...]) -> tuple[Fraction, ...]:
     """The sides of the planes on which most angles are as they were typed; among those, the sharper angles."""
 
     def misread(angles: Folded) -> tuple[int, Fraction]:
@@ -375,4 +170,15 @@ def _as_typed(folded: Folded, measured: tuple[MeasuredAngle, ...]) -> tuple[Frac
         )
         return wrong, sum(angles, Fraction(0))
 
-    return min(closing_sides(folded), key=misread)
+    return min(_zone_sides(chosen.folded) if chosen.one_line else closing_sides(chosen.folded), key=misread)
+
+
+def _zone_sides(folded: Folded) -> tuple[Folded, ...]:
+    """All ways to write the angles between three mirrors through one line, by turning mirrors round."""
+    directions = zone_directions(folded)
+    found = []
+    for turned in product((0, 1), repeat=2):
+        t = [d + flip for d, flip in zip(directions, (0, *turned), strict=True)]
+        apart = [abs(t[i] - t[j]) % 2 for i, j in ((0, 1), (0, 2), (1, 2))]
+        found.append(tuple(1 - min(a, 2 - a) for a in apart))
+    return tuple(found)

@@ -3,8 +3,9 @@
 An angle between two mirrors is the same pair of planes as its supplement, so angles are compared folded: θ or
 180° − θ, whichever is not above a right angle. Two mirrors close at every 180°/m. Three close as A3, B3 or H3 in any
 order, at two right angles and any 180°/m, and, with generated mirrors between them, at a short list of further triples,
-which is found by deciding all of them. More mirrors are walls of a finite group when every angle is 180°/m and the Gram
-matrix is positive definite [1]_; such sets are grown pair by pair, and branches too far off to be listed are left.
+which is found by deciding all of them; and as three mirrors through one line, as the planes of a zone are. More mirrors
+are walls of a finite group when every angle is 180°/m and the Gram matrix is positive definite [1]_; such sets are
+grown pair by pair, and branches too far off to be listed are left.
 
 References
 ----------
@@ -18,7 +19,7 @@ import math
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import lru_cache
-from itertools import combinations_with_replacement, permutations, product
+from itertools import combinations, combinations_with_replacement, permutations, product
 
 import numpy as np
 from numpy.typing import NDArray
@@ -78,7 +79,15 @@ def fold(fraction: Fraction) -> Fraction:
     return min(fraction, 1 - fraction)
 
 
-def best_sets(costs: Costs, size: int, most: int, subdivided: bool) -> tuple[list[Folded], bool]:
+@dataclass(frozen=True, slots=True)
+class AngleSet:
+    """Folded angles that close; `one_line` when the three mirrors pass through one line."""
+
+    folded: Folded
+    one_line: bool = False
+
+
+def best_sets(costs: Costs, size: int, most: int, subdivided: bool) -> tuple[list[AngleSet], bool]:
     """The closed sets of folded angles that fit best, and whether all were looked at.
 
     Parameters
@@ -92,7 +101,8 @@ def best_sets(costs: Costs, size: int, most: int, subdivided: bool) -> tuple[lis
         With generated mirrors between the measured ones as well (two and three mirrors only).
     """
     if size > 3:
-        return _grow(costs, size, most)
+        found, complete = _grow(costs, size, most)
+        return [AngleSet(one) for one in found], complete
     sets, degrees = _listed(size, subdivided)
     totals = costs.totals(degrees)
     ranked = np.argsort(totals, kind="stable")[:most]
@@ -100,10 +110,12 @@ def best_sets(costs: Costs, size: int, most: int, subdivided: bool) -> tuple[lis
 
 
 @lru_cache(maxsize=4)
-def _listed(size: int, subdivided: bool) -> tuple[tuple[Folded, ...], NDArray[np.float64]]:
-    """All sets for two or three mirrors, and their angles in degrees."""
-    sets = _pairs(subdivided) if size == 2 else _triples(subdivided)
-    return sets, np.array([[float(180 * f) for f in one] for one in sets])
+def _listed(size: int, subdivided: bool) -> tuple[tuple[AngleSet, ...], NDArray[np.float64]]:
+    """All sets for two or three mirrors, and their angles in degrees; mirrors through one line come last."""
+    sets = [AngleSet(one) for one in (_pairs(subdivided) if size == 2 else _triples(subdivided))]
+    if size == 3 and subdivided:
+        sets += [AngleSet(one, one_line=True) for one in zone_triples()]
+    return tuple(sets), np.array([[float(180 * f) for f in one.folded] for one in sets])
 
 
 @lru_cache(maxsize=2)
@@ -125,6 +137,28 @@ def _triples(subdivided: bool) -> tuple[Folded, ...]:
     if subdivided:
         base |= set(closing_triples())
     return tuple(sorted({order for one in base for order in permutations(one)}))
+
+
+@lru_cache(maxsize=1)
+def zone_triples() -> tuple[Folded, ...]:
+    """Folded angles between three mirrors through one line, multiples of 180°/m with m up to 12."""
+    found: set[Folded] = set()
+    for m in range(3, LARGEST_STAR_M + 1):
+        for i, j in combinations(range(1, m), 2):
+            angles = (fold(Fraction(i, m)), fold(Fraction(j, m)), Fraction(j - i, m))
+            found |= set(permutations((*angles[:2], fold(angles[2]))))
+    return tuple(sorted(found))
+
+
+def zone_directions(folded: Folded) -> tuple[Fraction, Fraction, Fraction]:
+    """Directions, in units of π, in which three mirrors through one line stand to have these folded angles."""
+    first, second, apart = folded
+    for t in (second, 1 - second):
+        for s in (first, 1 - first):
+            if fold(abs(t - s)) == apart:
+                return Fraction(0), s, t
+    msg = f"no three mirrors through one line have the angles {folded}"
+    raise ValueError(msg)
 
 
 @lru_cache(maxsize=1)

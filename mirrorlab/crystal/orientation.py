@@ -194,7 +194,7 @@ def search_orientation(points: Array, matrices: Array, allowed: Array, kinds: Wh
     from scipy.spatial.transform import Rotation
 
     rng = np.random.default_rng(SEED)
-    turns = np.concatenate([np.eye(3)[None], Rotation.random(STARTS, rng=rng).as_matrix()])
+    turns = np.concatenate([np.eye(3)[None], Rotation.from_quat(rng.normal(size=(STARTS, 4))).as_matrix()])
     few = points if len(points) <= SAMPLE else points[rng.permutation(len(points))[:SAMPLE]]
     reach = WIDEST * _size(points)
     tree = cKDTree(points)

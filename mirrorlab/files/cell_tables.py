@@ -11,8 +11,8 @@ from mirrorlab.angles import write_angle
 from mirrorlab.files.table import Column, write_table
 
 if TYPE_CHECKING:
-    from mirrorlab.crystal.compare import Comparison
-    from mirrorlab.crystal.fit import Fit
+    from mirrorlab.crystal.comparison import Comparison
+    from mirrorlab.crystal.fit_result import Fit
     from mirrorlab.crystal.lattice_mirrors import LatticeSymmetry
     from mirrorlab.crystal.normal_rows import Row
     from mirrorlab.crystal.planes import Planes
@@ -94,6 +94,7 @@ def write_fit(path: PathLike, fit: Fit) -> Paths:
         Column("rank", "integer", "1 fits best"),
         Column("symbol", "string", "point group, or families for more than three mirrors"),
         Column("kind", "string", "closed, or closed-subdivided"),
+        Column("through_one_line", "boolean", "all three mirrors pass through one line"),
         *(Column(f"{one.pair}", "string", "angle of the candidate") for one in fit.measured),
         *(
             Column(f"{one.pair}_pull", "double", "measured less candidate", "standard uncertainties")
@@ -111,6 +112,7 @@ def write_fit(path: PathLike, fit: Fit) -> Paths:
             rank,
             one.symbol,
             one.finding.kind,
+            str(one.one_line).lower(),
             *(write_angle(f) for f in one.angles),
             *one.pulls,
             one.chi_squared,

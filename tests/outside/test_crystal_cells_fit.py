@@ -9,8 +9,9 @@ import pytest
 from scipy.stats import chi2
 
 from mirrorlab.angles import AngleError
-from mirrorlab.crystal.fit import TOLD_APART, FitError, fit_angles, probability_of
-from mirrorlab.crystal.fit_candidates import closing_sides, closing_triples, fold
+from mirrorlab.crystal.fit import fit_angles, probability_of
+from mirrorlab.crystal.fit_candidates import closing_sides, closing_triples, fold, zone_triples
+from mirrorlab.crystal.fit_result import TOLD_APART, FitError
 from mirrorlab.crystal.pointgroups import point_group
 from mirrorlab.mirrors import Arrangement
 
@@ -88,6 +89,43 @@ def test_wedge_and_supplement():
     assert not any(typed.supplements)
     for theta in ("44.8(3)", "135.2(3)"):
         assert fit_angles([theta]).best.finding.families == ("B2",)
+
+
+# Angles between the mirrors of one zone: 45° steps in 4mm, 30° in 6mm, 60° in 3m (International Tables A, from memory).
+@pytest.mark.parametrize(
+    ("degrees", "symbol"),
+    [
+        ((45, 90, 45), "4mm"),
+        ((45, 135, 90), "4mm"),
+        ((30, 90, 60), "6mm"),
+        ((30, 120, 30), "6mm"),
+        ((36, 108, 36), "5m"),
+    ],
+)
+def test_mirrors_through_one_line(degrees, symbol):
+    found = fit_angles(noisy(list(degrees), 0.3))
+    assert found.best.one_line
+    assert (found.best.symbol, found.best.finding.rank) == (symbol, 2)
+    assert [float(180 * f.fraction) for f in found.best.arrangement.angles] == pytest.approx(degrees)
+    assert not fit_angles([f"{d}±0.3" for d in degrees], subdivided=False).best.one_line
+
+
+def test_zone_or_corner_is_left_open_where_both_have_the_angles():
+    # 60/60/60 as typed are the three mirrors of 3m; with one supplement, 60/60/120, they are a corner of -43m.
+    found = fit_angles(["60.1(5)", "59.7(5)", "60.2(5)"])
+    assert [(one.symbol, one.one_line) for one in (found.best, *found.tied)] == [
+        ("-43m", False),
+        ("3m", True),
+    ]
+
+
+def test_every_zone_has_the_angles_it_says():
+    for folded in zone_triples()[::3]:
+        found = fit_angles([f"{float(180 * f):.7f}±0.01" for f in folded])
+        one = next(c for c in found.candidates if c.one_line)
+        assert one.chi_squared < 1e-6
+        assert tuple(angle.fraction for angle in one.arrangement.angles) == one.angles
+        assert one.finding.rank == 2
 
 
 def test_the_misfit_is_named():

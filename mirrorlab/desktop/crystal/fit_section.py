@@ -181,7 +181,7 @@ class FitSection(AnsweredSection):
         if self.answer is None:
             return
         one = self.answer.candidates[place]
-        made = plainly_typed(one.arrangement)
+        made = one.arrangement if one.one_line else plainly_typed(one.arrangement)
         self._put(made, f"fit {one.symbol}", tuple(m.text for m in self.answer.measured))
 
     def _put_back(self) -> None:
