@@ -166,9 +166,7 @@ def print_fit(found: Fit) -> None:
     for other in found.tied[:3]:
         factor = found.sharper(other)
         if factor is not None:
-            print(
-                f"  to tell {other.name} from the best, uncertainties {factor:.2g} times as large are needed"
-            )
+            print(f"  uncertainties {factor:.2g} times as large would tell {other.name} from the best")
 
 
 def _with_pull(one: FitCandidate, k: int) -> str:

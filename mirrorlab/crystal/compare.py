@@ -58,7 +58,8 @@ def compare_points(
     group : NamedGroup or str
         In the setting of its symbol; order up to 120.
     tolerance : float, optional
-        Largest deviation: in the unit of the coordinates, in degrees for faces and poles. When not given: three
+        Largest deviation: in the unit of the coordinates (of the cell, where one is given), in degrees for faces and
+        poles. When not given: three
         standard uncertainties of both points where all have one, otherwise 1 % of the list's size (1° for poles).
     orientation : str
         "given": the list stands as the standard setting does. "refined": it is turned to obey the group best, from
@@ -109,11 +110,15 @@ def compare_points(
         where,
         centre,
         used,
-        "degrees" if directions else "unit of the coordinates",
+        _unit(directions, basis is not None),
         found,
         operations,
         tuple(notes),
     )
+
+
+def _unit(directions: bool, in_cell: bool) -> str:
+    return "degrees" if directions else "unit of the cell" if in_cell else "unit of the coordinates"
 
 
 def _coordinates(

@@ -91,7 +91,7 @@ class Comparison:
     tolerance : float or None
         Largest deviation allowed; None when the points' own uncertainties say it.
     unit : str
-        "degrees" for poles, else "unit of the coordinates".
+        "degrees" for poles, else "unit of the coordinates" or "unit of the cell".
     orientation : Orientation
     operations : tuple of OperationMatch
         One for each operation of the group, in its order.

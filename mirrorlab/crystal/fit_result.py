@@ -204,16 +204,16 @@ class Fit:
         return tuple(one for one in self.candidates[1:] if one.chi_squared < most)
 
     def sharper(self, other: FitCandidate) -> float | None:
-        """By what factor all uncertainties would have to shrink to tell `other` from the best; None when they suffice.
+        """How many times as large uncertainties would tell `other` from the best; None when these are small enough.
 
-        From the χ² that is to be expected for the one when the other is true.
+        Below 1; from the χ² that is to be expected for the one when the other is true.
         """
         apart = 0.0
         for one, f, g in zip(self.measured, self.best.angles, other.angles, strict=True):
             if one.sigma:
                 off = float(180 * (min(f, 1 - f) - min(g, 1 - g))) / one.sigma
                 apart += off * off
-        return math.sqrt(TOLD_APART / apart) if 0 < apart < TOLD_APART else None
+        return math.sqrt(apart / TOLD_APART) if 0 < apart < TOLD_APART else None
 
     @property
     def sentence(self) -> str:

@@ -242,7 +242,7 @@ def test_fractions_of_a_cell():
     cell = gemmi.UnitCell(4.9, 4.9, 5.4, 90, 90, 120)
     basis = np.array(cell.orth.mat.tolist())
     found = compare_points(listed(points), "6/mmm", basis=basis)
-    assert found.symbol == "6/mmm"
+    assert (found.symbol, found.unit) == ("6/mmm", "unit of the cell")
     lengths = [cell.orthogonalize(gemmi.Fractional(*point)).length() for point in points]
     assert np.allclose(np.linalg.norm(found.coordinates, axis=1), lengths)
     with pytest.raises(MetricError):

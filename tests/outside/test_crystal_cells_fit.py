@@ -141,12 +141,10 @@ def test_candidates_that_cannot_be_told_apart_are_said():
     assert {found.best.symbol, *(one.symbol for one in found.tied)} >= {"m-3m", "m-3-5"}
     assert "cannot be told from" in found.sentence
     other = next(one for one in found.tied if one.symbol != found.best.symbol)
-    # 45° and 36° are 9° apart: with σ = 4° one expects Δχ² = (9/4)² for the other, and the factor makes it the limit.
-    assert found.sharper(other) == pytest.approx(math.sqrt(TOLD_APART) / (9 / 4))
-    sharp = fit_angles([f"41±{4 * found.sharper(other):.6f}", "60(1)", "90(1)"])
-    assert other.symbol in {
-        one.symbol for one in (sharp.best, *sharp.tied)
-    }  # 41° lies between: still undecided
+    # 45° and 36° are 9° apart: with σ = 4° one expects Δχ² = (9/4)² for the other; with 4° times the factor, the limit.
+    assert found.sharper(other) == pytest.approx((9 / 4) / math.sqrt(TOLD_APART))
+    at_limit = fit_angles([f"45±{4 * found.sharper(other):.9f}", "60(1)", "90(1)"])
+    assert [one.chi_squared for one in at_limit.candidates[:2]] == pytest.approx([0, TOLD_APART])
     decided = fit_angles(["44.9(4)", "60(1)", "90(1)"])
     assert decided.tied == ()
 

@@ -126,6 +126,14 @@ def test_twin_index_by_counting_points(letter, plane):
     assert 1 / share == pytest.approx(row.twin_index)
 
 
+@pytest.mark.parametrize("letter", ["P", "R"])
+@pytest.mark.parametrize("plane", [(0, 0, 1), (1, 0, 0), (1, 1, 0), (2, 1, 0), (3, 1, 0), (3, -1, 0)])
+def test_twin_index_on_hexagonal_axes_by_counting_points(letter, plane):
+    cell = Cell((5.0, 5.0, 7.123457, 90, 90, 120), centring=letter)
+    row = exact_row(cell, plane)
+    assert 1 / share_of_points_kept(cell, plane, 2 * row.layers) == pytest.approx(row.twin_index)
+
+
 def test_mirrors_of_lattices_by_counting_points():
     """Whether the reflection maps the lattice onto itself, for each plane with small indices: all points or not."""
     cells = [
