@@ -170,6 +170,7 @@ class NormalsEntry(QWidget):
         """Make the arrangement, or say in place why it cannot be made."""
         try:
             arrangement = Arrangement.from_normals(read_rows(self.field.toPlainText()))
+            arrangement.finding()  # refused here, in place, when it would fill the memory with mirrors
         except ValueError as error:
             self._say(str(error))
             return

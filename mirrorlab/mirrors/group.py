@@ -185,7 +185,10 @@ class ReflectionGroup:
         for start, stop in steps.levels[1:]:
             chosen = reflections[steps.mirror[start:stop]]
             matrices[start:stop] = chosen @ matrices[steps.parent[start:stop]]
-        return matrices, steps.depth % 2
+        parity = steps.depth % 2
+        for shared in (matrices, parity):  # kept and handed out again
+            shared.setflags(write=False)
+        return matrices, parity
 
     def fold(self, points: Array) -> tuple[Array, NDArray[np.int64]]:
         """Bring points into the true chamber by reflections.
