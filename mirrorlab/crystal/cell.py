@@ -220,7 +220,7 @@ class Cell:
 
     def uncertainty(self, function: Callable[[Cell], float]) -> float:
         """Standard uncertainty of one number that follows from the cell."""
-        return float(np.sqrt(self.propagate(function)[0, 0]))
+        return float(np.sqrt(max(self.propagate(function)[0, 0], 0.0)))
 
     @property
     def text(self) -> str:

@@ -59,8 +59,8 @@ def compare_points(
         In the setting of its symbol; order up to 120.
     tolerance : float, optional
         Largest deviation: in the unit of the coordinates (of the cell, where one is given), in degrees for faces and
-        poles. When not given: three
-        standard uncertainties of both points where all have one, otherwise 1 % of the list's size (1° for poles).
+        poles. When not given: three standard uncertainties of both points where all have one, otherwise 1 % of the
+        list's size (1° for poles).
     orientation : str
         "given": the list stands as the standard setting does. "refined": it is turned to obey the group best, from
         where it stands (Kabsch). "searched": the same from any orientation.

@@ -88,15 +88,19 @@ def conventional_cell(symmetry: Symmetry) -> ConventionalCell:
     metric = basis.T @ basis
     matrices, ideal = ideal_metric(symmetry, metric)
     axes = _axes(symmetry.holohedry, _directions(matrices), ideal)
-    axes, centring = _settled(symmetry.holohedry, axes, ideal)
+    settled = _settled(symmetry.holohedry, axes, ideal)
+    if settled is None:
+        msg = f"no conventional axes for {symmetry.holohedry} from {axes.tolist()}"
+        raise AxesError(msg)
+    axes, centring = settled
     letter = "S" if centring.letter in "ABC" else centring.letter
     to_given = cell.lattice.primitive @ symmetry.reduced @ axes / cell.lattice.over
 
     def constants(other: Cell) -> tuple[float, ...]:
         return constants_of(to_given.T @ other.metric @ to_given)
 
-    uncertainties = np.sqrt(np.diag(cell.propagate(constants)))
-    change = np.linalg.eigvals(np.linalg.solve(metric, ideal)).real
+    uncertainties = np.sqrt(np.maximum(np.diag(cell.propagate(constants)), 0.0))
+    change = np.maximum(np.linalg.eigvals(np.linalg.solve(metric, ideal)).real, 0.0)
     return ConventionalCell(
         _FAMILY[symmetry.holohedry] + letter,
         centring.letter,
@@ -194,7 +198,19 @@ def _axes(holohedry: str, of_order: dict[int, list[Whole]], metric: Array) -> Wh
     raise AxesError(msg)
 
 
-def _settled(holohedry: str, axes: Whole, metric: Array) -> tuple[Whole, Centring]:
+def is_holohedry(symmetry: Symmetry) -> bool:
+    """Whether a lattice can have this symmetry and no more.
+
+    Three mirrors through a threefold axis of a hexagonal lattice are not: exact, they bring the other four with them.
+    """
+    if symmetry.holohedry != "-3m":
+        return True
+    basis = symmetry.cell.primitive_basis @ symmetry.reduced
+    matrices, ideal = ideal_metric(symmetry, basis.T @ basis)
+    return _settled("-3m", _axes("-3m", _directions(matrices), ideal), ideal) is not None
+
+
+def _settled(holohedry: str, axes: Whole, metric: Array) -> tuple[Whole, Centring] | None:
     """The axes right-handed, in the setting that the conventions ask for, with their centring."""
     wanted = {"m-3m": "PIF", "mmm": "PCIF", "4/mmm": "PI", "6/mmm": "P", "-3m": "R", "2/m": "PC", "-1": "P"}[
         holohedry
@@ -204,8 +220,7 @@ def _settled(holohedry: str, axes: Whole, metric: Array) -> tuple[Whole, Centrin
         centring = _centring(turned)
         if centring is not None and centring.letter in wanted:
             return turned, centring
-    msg = f"no conventional axes for {holohedry} from {axes.tolist()}"
-    raise AxesError(msg)
+    return None
 
 
 def _choices(holohedry: str, axes: Whole, metric: Array) -> Sequence[Whole]:

@@ -16,21 +16,18 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
 from itertools import product
-from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 
 from mirrorlab.crystal.cell import Cell
 from mirrorlab.crystal.indices import write_face
+from mirrorlab.crystal.lattice_axes import ConventionalCell, conventional_cell, ideal_normals, is_holohedry
 from mirrorlab.crystal.mirror_sets import closed_sets, reflection_in
 from mirrorlab.crystal.normal_rows import EXACT, Row, row_on, with_uncertainty
 from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.crystal.reduction import reduce_lattice
 from mirrorlab.mirrors import Arrangement
-
-if TYPE_CHECKING:
-    from mirrorlab.crystal.lattice_axes import ConventionalCell
 
 Whole = NDArray[np.int64]
 
@@ -121,15 +118,11 @@ class Symmetry:
     @cached_property
     def conventional(self) -> ConventionalCell:
         """The conventional cell of this symmetry: axes, centring, Bravais type."""
-        from mirrorlab.crystal.lattice_axes import conventional_cell
-
         return conventional_cell(self)
 
     @cached_property
     def arrangement(self) -> Arrangement | None:
         """Its mirrors, in the nearest lattice that has them exactly; None when there are none."""
-        from mirrorlab.crystal.lattice_axes import ideal_normals
-
         return Arrangement.from_normals(ideal_normals(self)) if self.mirrors else None
 
     @property
@@ -276,10 +269,13 @@ def _steps(cell: Cell, mirrors: Sequence[LatticeMirror], reduced: Whole) -> tupl
         return Symmetry(_holohedry(members), members, reduced, cell)
 
     exact = frozenset(k for k, mirror in enumerate(mirrors) if mirror.exact)
-    steps = [symmetry(exact)]
-    higher = [symmetry(one) for one in closed_sets([mirror.matrix for mirror in mirrors]) if one > exact]
+    closed = closed_sets([mirror.matrix for mirror in mirrors])
+    inside = sorted((symmetry(one) for one in closed if one <= exact), key=_size, reverse=True)
+    steps = [next(one for one in inside if is_holohedry(one))]
+    first = frozenset(steps[0].mirrors)
+    higher = [made for made in map(symmetry, closed) if first < frozenset(made.mirrors)]
     for one in sorted(higher, key=lambda s: (s.obliquity, -_size(s))):
-        if _size(one) > _size(steps[-1]):
+        if _size(one) > _size(steps[-1]) and is_holohedry(one):
             steps.append(one)
     return tuple(steps)
 

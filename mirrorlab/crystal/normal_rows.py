@@ -155,7 +155,7 @@ def with_uncertainty(cell: Cell, plane: tuple[int, int, int], row: Row) -> Row:
     size = float(np.linalg.norm(off))
     direction = off / size if size > 0 else off
     # d(angle) = d(sine)/cosine
-    sigma = float(np.sqrt(direction @ covariance @ direction)) / np.cos(np.radians(row.obliquity))
+    sigma = float(np.sqrt(max(direction @ covariance @ direction, 0.0))) / np.cos(np.radians(row.obliquity))
     if row.obliquity <= sigma or row.exact:
         sigma = float(np.sqrt(max(np.linalg.eigvalsh(covariance)[-1], 0.0)))
     return replace(row, uncertainty=float(sigma) if sigma > NO_UNCERTAINTY else 0.0)

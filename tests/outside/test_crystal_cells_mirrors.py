@@ -9,6 +9,7 @@ import pytest
 
 from mirrorlab.crystal.cell import Cell, parse_cell
 from mirrorlab.crystal.lattice_mirrors import ToleranceError, lattice_symmetry, near_square_pairs
+from mirrorlab.crystal.lattices import CellError
 from mirrorlab.crystal.pointgroups import point_group
 from mirrorlab.crystal.reduction import reduce_lattice
 
@@ -205,3 +206,30 @@ def test_long_and_flat_cells_stay_quick_and_right():
 def test_tolerances_that_are_refused(tolerance):
     with pytest.raises(ToleranceError, match="degrees from 0 to 10"):
         lattice_symmetry(parse_cell("5,6,7,90,90,90"), tolerance)
+
+
+def test_three_of_the_seven_mirrors_of_a_hexagonal_lattice_are_no_symmetry_of_their_own():
+    """Cells near a hexagonal one, at tolerances between the obliquities of their mirrors."""
+    types = {"-1": "a", "2/m": "m", "mmm": "o", "4/mmm": "t", "-3m": "hR", "6/mmm": "hP", "m-3m": "c"}
+    for _ in range(25):
+        cell = nearly((5, 5, 8, 90, 90, 120), 0.01)
+        for mirror in lattice_symmetry(cell, 6.0).mirrors:
+            for step in lattice_symmetry(cell, min(6.0, mirror.row.obliquity * 1.0001)).steps:
+                assert step.conventional.bravais.startswith(types[step.holohedry])
+
+
+def test_cells_of_any_shape_give_an_answer():
+    for k in range(120):
+        constants = (
+            (*np.exp(RNG.uniform(-2, 5, 3)), *RNG.uniform(20, 150, 3))
+            if k % 2
+            else (5, 5, 5, *[RNG.uniform(1, 119.9)] * 3)
+        )
+        try:
+            cell = Cell(constants, centring="PABCIF"[k % 6])
+        except CellError:
+            continue
+        found = lattice_symmetry(cell, 10.0)
+        for step in found.steps:
+            assert step.conventional.cell.volume > 0
+            assert step.arrangement is None or step.arrangement.finding().group is not None
