@@ -76,6 +76,7 @@ class Work(QObject):
         super().__init__(parent)
         self._running: dict[str, _Thread] = {}
         self._leaving: list[_Thread] = []
+        self._closed = False
 
     def start(
         self,
@@ -86,8 +87,11 @@ class Work(QObject):
     ) -> None:
         """Run `job` in a thread; call `done(result)` or `failed(error)` in the window's thread.
 
-        Neither is called for a job that was cancelled or replaced.
+        Neither is called for a job that was cancelled or replaced. After `close` nothing is started any more: a
+        timer that still fires while the window goes would leave a thread running without it, and Qt aborts then.
         """
+        if self._closed:
+            return
         self.cancel(name)
         thread = _Thread(name, job, done, failed, self)
         self._running[name] = thread
@@ -110,7 +114,8 @@ class Work(QObject):
                 self.ended.emit(key)
 
     def close(self) -> None:
-        """Cancel everything and wait for the threads to end."""
+        """Cancel everything, wait for the threads to end, and start nothing more."""
+        self._closed = True
         self.cancel()
         for thread in list(self._leaving):
             thread.wait()

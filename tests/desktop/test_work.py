@@ -67,3 +67,12 @@ def test_a_job_replaces_the_one_of_its_name(qtbot: QtBot) -> None:
     qtbot.waitUntil(lambda: got == ["second"])
     work.close()
     assert got == ["second"]
+
+
+def test_nothing_starts_after_the_close(qtbot: QtBot) -> None:
+    work = Work()
+    work.close()
+    started: list[str] = []
+    work.started.connect(started.append)
+    work.start("late", lambda progress: started.append("ran"), lambda result: None)
+    assert (started, work.running()) == ([], ())
