@@ -16,7 +16,7 @@ from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.theming import theming
 
 HEIGHT = 196
-SOON = 20
+SOON = 80
 """Milliseconds after which the small map follows: what one types into comes first."""
 
 ROOM = 0.84
@@ -56,7 +56,7 @@ class ChamberMap(QFrame):
         """Show the document's chamber and seed, a moment after finding, picture and table have been shown."""
         shown = has_map(self.document)
         self.setVisible(shown)
-        if shown:
+        if shown and not self._later.isActive():  # so that it follows a long drag, too
             self._later.start()
 
     def _draw(self) -> None:
