@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QFocusEvent, QKeyEvent
-from PySide6.QtWidgets import QButtonGroup, QGridLayout, QWidget
+from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent
+from PySide6.QtWidgets import QButtonGroup, QFrame, QGridLayout, QWidget
 
 from mirrorlab.desktop.parts import Field, button, label
+from mirrorlab.desktop.stylesheet import set_kind
 
 CHIPS_IN_A_ROW = 3
 
@@ -122,3 +123,31 @@ class FactRows(QWidget):
             else:
                 self._grid.addWidget(right, row, 0, 1, 2)
             self._parts.append((left, right))
+
+
+class ChoiceCard(QFrame):
+    """A frame that is chosen by mouse, Space or Enter; what stands on it is its subclass's.
+
+    Signals
+    -------
+    chosen()
+    """
+
+    chosen = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        set_kind(self, "cell")
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setCursor(Qt.CursorShape.PointingHandCursor)
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:
+        if event.button() == Qt.MouseButton.LeftButton:
+            self.setFocus(Qt.FocusReason.MouseFocusReason)
+            self.chosen.emit()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
+            self.chosen.emit()
+            return
+        super().keyPressEvent(event)

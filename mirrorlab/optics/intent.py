@@ -63,7 +63,7 @@ def intent_of(arrangement: Arrangement) -> tuple[Intent, tuple[float, ...]]:
     """
     rank = 0 if arrangement.normals is None else arrangement.normals.shape[1]
     kind = _kind(arrangement.size, rank, arrangement.given_normals)
-    pairs = _joined_pairs(kind, arrangement.size)
+    pairs = _joined_pairs(arrangement.size)
     places = [arrangement.pairs.index(pair) for pair in pairs]
     typed = [arrangement.angles[place] for place in places]
     names = tuple(arrangement.letters[i] + arrangement.letters[j] for i, j in pairs)
@@ -123,7 +123,7 @@ def _kind(size: int, rank: int, given_normals: bool) -> str:
     raise AssemblyError(msg, "angles")
 
 
-def _joined_pairs(kind: str, size: int) -> list[tuple[int, int]]:
+def _joined_pairs(size: int) -> list[tuple[int, int]]:
     if size == 4:
         return [(0, 1), (1, 2), (2, 3), (0, 3)]
     return [(i, j) for i in range(size) for j in range(i + 1, size)]

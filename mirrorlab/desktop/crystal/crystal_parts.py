@@ -5,30 +5,19 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from PySide6.QtCore import QSignalBlocker, Qt, Signal
-from PySide6.QtGui import QKeyEvent, QMouseEvent
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QVBoxLayout, QWidget
 
 from mirrorlab.desktop import symbols
-from mirrorlab.desktop.bench_parts import LineField
+from mirrorlab.desktop.bench_parts import ChoiceCard, LineField
 from mirrorlab.desktop.parts import Field, label
-from mirrorlab.desktop.stylesheet import set_kind, set_live, set_wrong
+from mirrorlab.desktop.stylesheet import set_live, set_wrong
 
 
-class Choice(QFrame):
-    """A card to choose by mouse, Space or Enter: a symbol in large type, words beside it, a line below.
-
-    Signals
-    -------
-    chosen()
-    """
-
-    chosen = Signal()
+class Choice(ChoiceCard):
+    """A card to choose by mouse, Space or Enter: a symbol in large type, words beside it, a line below."""
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        set_kind(self, "cell")
-        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
-        self.setCursor(Qt.CursorShape.PointingHandCursor)
         self.symbol = symbols.SymbolText(13)
         self.beside = label("", "small")
         self.state = label("", "small")
@@ -53,16 +42,6 @@ class Choice(QFrame):
         self.state.setText(state)
         self.setAccessibleName(f"{symbol} {state}".strip())
         set_live(self, live)
-
-    def mousePressEvent(self, event: QMouseEvent) -> None:
-        if event.button() == Qt.MouseButton.LeftButton:
-            self.chosen.emit()
-
-    def keyPressEvent(self, event: QKeyEvent) -> None:
-        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
-            self.chosen.emit()
-            return
-        super().keyPressEvent(event)
 
 
 class _Line(QWidget):

@@ -149,7 +149,9 @@ class EyeView(QWidget):
             return None, told(error)
 
     def _warm_up(self) -> None:
-        self._say("Warming up: the first view on a computer takes about a quarter of a minute, later ones a moment …")
+        self._say(
+            "Warming up: the first view on a computer takes about a quarter of a minute, later ones a moment …"
+        )
         if WARM_JOB not in self.document.work.running():
             self.document.work.start(WARM_JOB, warming, lambda _: self._ready(), self._failed)
 
@@ -167,8 +169,9 @@ class EyeView(QWidget):
             return
         asked, samples = self._wanted, 1 if coarse else FINE
         assembly, picture, size = asked
-        step = COARSE if coarse else 1
-        part = (max(1, size[0] // step), max(1, size[1] // step))
+        from mirrorlab.optics.tracer import preview_size
+
+        part = preview_size(size, COARSE if coarse else 1)
 
         def job(progress: Any) -> NDArray[np.uint8]:
             return traced(assembly, picture, part, samples, progress)

@@ -5,10 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from PySide6.QtCore import QSignalBlocker, Qt, Signal
-from PySide6.QtGui import QKeyEvent, QMouseEvent
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
 
-from mirrorlab.desktop.bench_parts import LineField
+from mirrorlab.desktop.bench_parts import ChoiceCard, LineField
 from mirrorlab.desktop.parts import Elided, label
 from mirrorlab.desktop.stylesheet import set_kind, set_live, set_wrong
 from mirrorlab.optics.cautions import Caution
@@ -79,21 +78,11 @@ class Entries(QWidget):
         return found
 
 
-class Card(QFrame):
-    """A card to choose by mouse, Space or Enter: a name, figures at the right, a line below.
-
-    Signals
-    -------
-    chosen()
-    """
-
-    chosen = Signal()
+class Card(ChoiceCard):
+    """A card to choose by mouse, Space or Enter: a name, figures at the right, a line below."""
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        set_kind(self, "cell")
-        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
-        self.setCursor(Qt.CursorShape.PointingHandCursor)
         self.name = Elided("", "heading")
         self.figure = label("", "")
         self.below = Elided("", "small")
@@ -114,17 +103,6 @@ class Card(QFrame):
         self.below.setText(below)
         self.setAccessibleName(f"{name}, {figure}{', on the sheet' if live else ''}")
         set_live(self, live)
-
-    def mousePressEvent(self, event: QMouseEvent) -> None:
-        if event.button() == Qt.MouseButton.LeftButton:
-            self.setFocus(Qt.FocusReason.MouseFocusReason)
-            self.chosen.emit()
-
-    def keyPressEvent(self, event: QKeyEvent) -> None:
-        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
-            self.chosen.emit()
-            return
-        super().keyPressEvent(event)
 
 
 class Cautions(QFrame):
