@@ -14,7 +14,6 @@ from PySide6.QtWidgets import QApplication
 
 from mirrorlab.desktop.document import Document, Settings, State
 from mirrorlab.desktop.sheets import state_of
-from mirrorlab.desktop.stage import prepare_opengl
 from mirrorlab.desktop.theme import THEMES
 from mirrorlab.desktop.theming import system_theme, theming
 from mirrorlab.files.samples import assets, samples
@@ -25,16 +24,10 @@ if TYPE_CHECKING:
 ORGANISATION = "Mirrorlab"
 
 
-def prepare() -> None:
-    """What must be said before the application object is there."""
-    prepare_opengl()
-    QCoreApplication.setOrganizationName(ORGANISATION)
-    QCoreApplication.setApplicationName("Mirrorlab")
-
-
 def make_application(arguments: list[str]) -> QApplication:
     """The application object, dressed."""
-    prepare()
+    QCoreApplication.setOrganizationName(ORGANISATION)
+    QCoreApplication.setApplicationName("Mirrorlab")
     app = QApplication(arguments)
     app.setStyle("Fusion")
     app.setApplicationDisplayName("Mirrorlab")

@@ -59,7 +59,6 @@ class Window(QMainWindow):
         self._lay_out()
         self._connect()
         self.benches.show_index(0)
-        self.stage.left.refresh()  # an OpenGL view that comes into a window in sight makes it flash
         self._show_title()
         self.resize(FIRST_SIZE)
         self.mirrors.triangle.cells[0].edit.setFocus()

@@ -11,14 +11,9 @@ from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
-from PySide6.QtCore import QCoreApplication, QEvent, QSettings, Qt
+from PySide6.QtCore import QEvent, QSettings, Qt
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
-
-from mirrorlab.desktop.stage import prepare_opengl
-
-if QCoreApplication.instance() is None:
-    prepare_opengl()
 
 from mirrorlab.desktop.app import make_window
 from mirrorlab.desktop.theming import theming

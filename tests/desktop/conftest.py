@@ -9,14 +9,9 @@ from pathlib import Path
 
 import pytest
 import shiboken6
-from PySide6.QtCore import QCoreApplication, QEvent, QSettings, Qt, QThread, QTimer
+from PySide6.QtCore import QEvent, QSettings, Qt, QThread, QTimer
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
-
-from mirrorlab.desktop.stage import prepare_opengl
-
-if QCoreApplication.instance() is None:
-    prepare_opengl()
 
 from mirrorlab.desktop.app import first_state, make_window
 from mirrorlab.desktop.document import Document

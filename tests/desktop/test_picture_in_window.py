@@ -14,9 +14,8 @@ from mirrorlab.desktop.window import Window
 
 
 def picture(window: Window) -> QImage:
-    """What the left pane shows, read back from OpenGL or from the painter."""
-    view = window.stage.left.view.current
-    return view.grabFramebuffer() if hasattr(view, "grabFramebuffer") else view.grab().toImage()
+    """What the left pane shows, drawn with OpenGL or by the painter."""
+    return window.stage.left.view.current.grab().toImage()
 
 
 def levels(image: QImage) -> np.ndarray:

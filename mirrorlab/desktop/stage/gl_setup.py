@@ -1,4 +1,4 @@
-"""OpenGL made ready before the application starts, and tried once it has."""
+"""OpenGL tried once, and what is asked of it."""
 
 from __future__ import annotations
 
@@ -6,7 +6,6 @@ import os
 from dataclasses import dataclass
 from functools import lru_cache
 
-from PySide6.QtCore import QCoreApplication, Qt
 from PySide6.QtGui import QGuiApplication, QOffscreenSurface, QOpenGLContext, QSurfaceFormat
 
 PAINTER_SWITCH = "MIRRORLAB_PAINTER"
@@ -20,21 +19,11 @@ SOFTWARE = ("llvmpipe", "softpipe", "swrast", "swiftshader", "software", "gdi ge
 """What renderers that run on the processor call themselves."""
 
 
-def prepare_opengl() -> None:
-    """Ask for smooth edges and shared contexts. Call it before the application object is made.
-
-    Without shared contexts a second picture stays black.
-    """
-    QCoreApplication.setAttribute(Qt.ApplicationAttribute.AA_ShareOpenGLContexts)
-    QSurfaceFormat.setDefaultFormat(surface_format())
-
-
-def surface_format(samples: int = SAMPLES) -> QSurfaceFormat:
-    """The format of a picture's surface."""
+def surface_format() -> QSurfaceFormat:
+    """What a picture's context must be able to do."""
     wanted = QSurfaceFormat()
     wanted.setVersion(2, 1)
     wanted.setDepthBufferSize(24)
-    wanted.setSamples(samples)
     return wanted
 
 

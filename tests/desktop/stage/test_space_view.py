@@ -47,7 +47,7 @@ def test_both_views_show_the_same(qtbot: QtBot, shown: Shown, ball: Drawing):
         camera = gl.camera.turned(*turn)
         gl.set_camera(camera)
         painter.set_camera(camera)
-        one = array_of(gl.grabFramebuffer())
+        one = array_of(gl.grab().toImage())
         two = array_of(painter.grab().toImage())
         assert one.shape == two.shape
         towards = camera.axes[2]
@@ -67,7 +67,7 @@ def test_both_views_show_the_same(qtbot: QtBot, shown: Shown, ball: Drawing):
 @pytest.mark.gl
 def test_tints_where_they_belong(shown: Shown, ball: Drawing):
     view = space_view(replace(ball, points=(), lines=(), labels=(), faces=ball.faces[:2]), shown)
-    data = array_of(view.grabFramebuffer())
+    data = array_of(view.grab().toImage())
     np.testing.assert_allclose(data[3, 3], rgb(LIGHT_LOOK.ground), atol=0.02)
     for faces, tint in zip(ball.faces, (LIGHT_LOOK.silver_light, LIGHT_LOOK.silver_dark), strict=False):
         middles = faces.vertices[faces.triangles].mean(axis=1)
@@ -80,35 +80,35 @@ def test_tints_where_they_belong(shown: Shown, ball: Drawing):
 @pytest.mark.gl
 def test_turning_shows_other_chambers(shown: Shown, ball: Drawing):
     view = space_view(ball, shown)
-    before = array_of(view.grabFramebuffer())
+    before = array_of(view.grab().toImage())
     view.set_camera(view.camera.turned(45, 0))
-    after = array_of(view.grabFramebuffer())
+    after = array_of(view.grab().toImage())
     assert np.mean(np.abs(before - after).max(axis=2) > 0.1) > 0.15
 
 
 @pytest.mark.gl
 def test_another_drawing_takes_the_same_buffers(shown: Shown, ball: Drawing):
     view = space_view(ball, shown)
-    first = array_of(view.grabFramebuffer())
+    first = array_of(view.grab().toImage())
     item = view.items[0]
     data = item._faces
     seed = replace(ball.points[0], positions=np.array([[0.9, 0.3, 0.31]]) / np.linalg.norm([0.9, 0.3, 0.31]))
     view.set_drawing(replace(ball, points=(seed, *ball.points[1:])))
     assert view.items == [item]
     assert item._faces is data, "faces that are the same are not sent again"
-    moved = array_of(view.grabFramebuffer())
+    moved = array_of(view.grab().toImage())
     assert np.abs(first - moved).max() > 0.3
     view.set_drawing(replace(ball, faces=ball.faces[:1], title=ball.title))
     assert item._faces is not data
     assert view.items == [item]
     view.set_drawing(ball)
-    np.testing.assert_allclose(array_of(view.grabFramebuffer()), first, atol=0.01)
+    np.testing.assert_allclose(array_of(view.grab().toImage()), first, atol=0.01)
 
 
 @pytest.mark.gl
 def test_a_view_that_moves_to_another_window_keeps_its_picture(qtbot: QtBot, shown: Shown, ball: Drawing):
     view = space_view(ball, shown)
-    before = array_of(view.grabFramebuffer())
+    before = array_of(view.grab().toImage())
     other = QWidget()
     layout = QVBoxLayout(other)
     layout.setContentsMargins(0, 0, 0, 0)
@@ -117,11 +117,11 @@ def test_a_view_that_moves_to_another_window_keeps_its_picture(qtbot: QtBot, sho
     with qtbot.waitExposed(view):
         view.show()
     qtbot.waitUntil(lambda: view.size() == other.size())
-    np.testing.assert_allclose(array_of(view.grabFramebuffer()), before, atol=0.02)
+    np.testing.assert_allclose(array_of(view.grab().toImage()), before, atol=0.02)
 
 
 @pytest.mark.gl
-def test_a_grabbed_window_has_marks_and_letters(qtbot: QtBot, shown: Shown, ball: Drawing):
+def test_marks_and_letters_lie_over_the_faces(qtbot: QtBot, shown: Shown, ball: Drawing):
     view = space_view(ball, shown)
     grabbed = array_of(view.grab().toImage())
     seed = ball.points[0].positions[0]
@@ -146,7 +146,7 @@ def test_solid_faces_hide_lines_behind_them(shown: Shown):
         unit="mm",
     )
     view = space_view(drawing, shown)
-    data = array_of(view.grabFramebuffer())
+    data = array_of(view.grab().toImage())
     darkness = []
     for y, z in ((0.4, 0.3), (-0.4, -0.3)):
         px, py, _ = view.camera.project(np.array([0.0, y, z]), 420, 400).round().astype(int)
