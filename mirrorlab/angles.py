@@ -25,6 +25,9 @@ ACCEPTED = (
     "write degrees (60, 59.9(2), 59.9±0.2), DMS (54°44'8\"), a fraction of pi (2pi/5) or radians (1.0472rad)"
 )
 RANGE = "an angle between mirrors is at least 0 and less than 180 degrees"
+STYLES = ("degrees", "pi", "dms")
+"""Ways to write an angle; see `write_angle`."""
+
 LONGEST = 64  # characters in a typed angle: more than any instrument gives, few enough to be read at once
 
 
@@ -339,8 +342,8 @@ def write_angle(angle: Angle | Fraction | float, style: str = "degrees") -> str:
     degrees = angle * 180 if isinstance(angle, Fraction) else Fraction(Decimal(repr(float(angle))))
     if style == "dms":
         return _write_dms(degrees)
-    if style not in ("degrees", "pi"):
-        msg = f'style "{style}": accepted are degrees, pi and dms'
+    if style not in STYLES:
+        msg = f'style "{style}": accepted are {", ".join(STYLES)}'
         raise AngleError(msg)
     return _write_decimal(degrees, angle if isinstance(angle, Fraction) else None)
 

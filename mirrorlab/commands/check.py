@@ -6,13 +6,14 @@ import argparse
 from typing import Any
 
 from mirrorlab.commands.finding_print import print_evidence, print_finding
-from mirrorlab.commands.output import add_mirrors, arrangement_of, print_json
+from mirrorlab.commands.output import add_mirrors, add_style, arrangement_of, print_json
 
 EXAMPLES = """examples:
   mirrorlab check 90 60 45
   mirrorlab check "59.9(2)" 90 pi/4 --evidence
   mirrorlab check --family A1xI2(5) --json
   mirrorlab check --normals 1,0,0 1,1,0 1,1,1
+  mirrorlab check "54d40m" 60 60 --write-as dms
 """
 
 
@@ -26,6 +27,7 @@ def add_check(subparsers: Any) -> None:
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
     add_mirrors(parser)
+    add_style(parser)
     parser.add_argument("--evidence", action="store_true", help="the numbers behind the finding")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run)
@@ -38,7 +40,7 @@ def run(args: argparse.Namespace) -> int:
     if args.json:
         print_json(finding.to_dict())
         return 0
-    print_finding(arrangement, finding)
+    print_finding(arrangement, finding, args.write_as)
     if args.evidence:
         print_evidence(arrangement, finding)
     return 0

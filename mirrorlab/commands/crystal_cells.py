@@ -15,7 +15,7 @@ from mirrorlab.commands.crystal_cells_print import (
     print_lattice,
     print_planes,
 )
-from mirrorlab.commands.output import UsageError, plain, print_json
+from mirrorlab.commands.output import UsageError, add_style, plain, print_json
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.cell import Cell
@@ -39,6 +39,7 @@ FIT_EXAMPLES = """examples:
   mirrorlab fit "59.8(3)" "90.1(2)" "44.6(4)"
   mirrorlab fit 59.8 90.1 44.6 --sigma 0.3
   mirrorlab fit "36.4(5)" --most 5 --json
+  mirrorlab fit "70d32m" --sigma 0.1 --write-as dms
 """
 
 COMPARE_EXAMPLES = """examples:
@@ -109,6 +110,7 @@ def add_fit(subparsers: Any) -> None:
         help="only arrangements without generated mirrors between the measured ones",
     )
     parser.add_argument("--most", type=int, default=12, metavar="N", help="how many candidates (12)")
+    add_style(parser)
     _add_output(parser, "write the candidates as CSV")
     parser.set_defaults(run=run_fit)
 
@@ -271,7 +273,7 @@ def run_fit(args: argparse.Namespace) -> int:
     if args.json:
         print_json(answer)
     else:
-        print_fit(found)
+        print_fit(found, args.write_as)
     _report(written, () if args.json else found.notes)
     return 0
 

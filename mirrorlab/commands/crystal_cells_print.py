@@ -130,16 +130,16 @@ def _constants(values: tuple[float, ...], uncertainties: tuple[float, ...]) -> s
     return " ".join(texts[:3]) + "  " + " ".join(texts[3:])
 
 
-def print_fit(found: Fit) -> None:
-    """The candidates with each angle's pull."""
-    print(found.sentence)
+def print_fit(found: Fit, style: str) -> None:
+    """The candidates with each angle's pull, angles in a style of `write_angle`."""
+    print(found.sentence_in(style))
     print()
     names = [one.pair for one in found.measured]
     few = len(names) <= 6
     head = ["", "group", "kind", *(names if few else []), "χ²", "probability", ""]
     rows = [tuple(head)]
     for rank, one in enumerate(found.candidates, 1):
-        angles = [_with_pull(one, k) for k in range(len(names))] if few else []
+        angles = [_with_pull(one, k, style) for k in range(len(names))] if few else []
         mark = "best" if rank == 1 else "not told apart" if one in found.tied else ""
         if one.misfit:
             mark = f"{mark}, misfit {one.misfit}".lstrip(", ")
@@ -162,17 +162,22 @@ def print_fit(found: Fit) -> None:
     else:
         best = found.best
         worst = sorted(range(len(names)), key=lambda k: -abs(best.pulls[k] or 0.0))[:6]
-        print("  largest pulls of the best: " + ", ".join(f"{names[k]} {_with_pull(best, k)}" for k in worst))
+        print(
+            "  largest pulls of the best: "
+            + ", ".join(f"{names[k]} {_with_pull(best, k, style)}" for k in worst)
+        )
     for other in found.tied[:3]:
         factor = found.sharper(other)
         if factor is not None:
-            print(f"  uncertainties {factor:.2g} times as large would tell {other.name} from the best")
+            print(
+                f"  uncertainties {factor:.2g} times as large would tell {other.name_in(style)} from the best"
+            )
 
 
-def _with_pull(one: FitCandidate, k: int) -> str:
+def _with_pull(one: FitCandidate, k: int, style: str) -> str:
     pull = one.pulls[k]
     return (
-        write_angle(one.angles[k])
+        write_angle(one.angles[k], style)
         + (" s" if one.supplements[k] else "")
         + (" (exact)" if pull is None else f" ({pull:+.1f})")
     )

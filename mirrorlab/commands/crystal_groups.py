@@ -17,6 +17,7 @@ from mirrorlab.commands.crystal_print import (
 from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
+    add_style,
     arrangement_of,
     numbers,
     plain,
@@ -44,6 +45,7 @@ FORM_EXAMPLES = """examples:
   mirrorlab form -43m 111 -1-1-1:1.3 100:1.1 --picture crystal.png
   mirrorlab form 6/mmm 10-10 0001:1.6 1,0,-1,1:1.5 --cell 4.9,4.9,5.4,90,90,120
   mirrorlab form m-3-5 0,1,1.6180339887 --json
+  mirrorlab form m-3m 111 100:1.2 --write-as dms
 """
 
 CANDIDATES_EXAMPLES = """examples:
@@ -81,6 +83,7 @@ def add_form(subparsers: Any) -> None:
     )
     parser.add_argument("--cell", type=numbers, metavar="a,b,c,α,β,γ", help="axes; unit axes if not given")
     parser.add_argument("--csv", metavar="F", help="write all faces as CSV, with its metadata file")
+    add_style(parser)
     _add_picture(parser, "write a picture of the solid")
     parser.add_argument(
         "--stereogram", action="store_true", help="let the picture be a stereogram of the poles"
@@ -227,7 +230,7 @@ def run_form(args: argparse.Namespace) -> int:
     if args.json:
         print_json(made.to_dict())
     else:
-        print_combination(made, faces=not args.csv)
+        print_combination(made, not args.csv, args.write_as)
     _report(written)
     return 0
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from mirrorlab.commands.output import print_table
+from mirrorlab.commands.output import computed, print_table
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.candidates import Candidates
@@ -112,8 +112,8 @@ def print_orbit(group: NamedGroup, orbit: GroupOrbit, shown: int) -> None:
     _more(count)
 
 
-def print_combination(made: Combination, faces: bool) -> None:
-    """Forms and the solid they make, for a person."""
+def print_combination(made: Combination, faces: bool, style: str) -> None:
+    """Forms and the solid they make, for a person; angles in a style of `mirrorlab.angles.write_angle`."""
     for one, distance, share in zip(made.forms, made.distances, made.area_shares, strict=True):
         others = f" ({', '.join(one.other_names)})" if one.other_names else ""
         print(f"{one.symbol} of {one.group}: {one.name}{others}")
@@ -135,7 +135,10 @@ def print_combination(made: Combination, faces: bool) -> None:
     if made.edge_angles:
         print("\nangles between the normals of neighbouring faces")
         print_table(
-            [(row.first, row.second, f"{row.degrees:.4f}°", f"{row.edges} edges") for row in made.edge_angles]
+            [
+                (row.first, row.second, computed(row.degrees, style, ".4f"), f"{row.edges} edges")
+                for row in made.edge_angles
+            ]
         )
 
 

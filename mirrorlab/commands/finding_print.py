@@ -5,14 +5,21 @@ from __future__ import annotations
 from mirrorlab.angles import Angle, write_angle
 from mirrorlab.commands.output import print_table
 from mirrorlab.mirrors import Arrangement, Finding, ReflectionGroup
+from mirrorlab.mirrors.sentence import sentence
 from mirrorlab.mirrors.suggestions import Suggestion
 
+ROUNDED = 9
+"""Decimals of a degree that a difference of two angles keeps: less is rounding of doubles, and no minute or second."""
 
-def print_finding(arrangement: Arrangement, finding: Finding) -> None:
-    """The finding: what a person needs first, each part only where it has something to say."""
-    print(finding.sentence)
+
+def print_finding(arrangement: Arrangement, finding: Finding, style: str = "degrees") -> None:
+    """The finding: what a person needs first, each part only where it has something to say.
+
+    `style` is a style of `mirrorlab.angles.write_angle`.
+    """
+    print(sentence(finding, style))
     print(f"\nkind: {finding.kind}    rank: {finding.rank}")
-    print_angles(arrangement, finding)
+    print_angles(arrangement, finding, style)
     if finding.group is not None:
         print_group(finding, finding.group)
     if finding.tube is not None:
@@ -20,17 +27,19 @@ def print_finding(arrangement: Arrangement, finding: Finding) -> None:
     if finding.flags:
         print("\nflags")
         for flag in finding.flags:
-            print(f"  {flag.reason}")
-    print_ways("the same planes with one angle read from the other side", finding.supplements)
-    print_ways("nearest that close", finding.suggestions)
+            print(f"  {flag.reason_in(style)}")
+    print_ways("the same planes with one angle read from the other side", finding.supplements, style)
+    print_ways("nearest that close", finding.suggestions, style)
 
 
-def print_angles(arrangement: Arrangement, finding: Finding) -> None:
+def print_angles(arrangement: Arrangement, finding: Finding, style: str) -> None:
     """The angles as they were read."""
     if not arrangement.angles:
         return
     print("\nangles as read")
-    rows = [("pair", "typed", "closing fraction", "", "off by", "4cos²", "order")]
+    rows = [
+        ("pair", "typed", "closing fraction", "" if style == "pi" else "that is", "off by", "4cos²", "order")
+    ]
     for name, angle, (_, value, order) in zip(
         arrangement.pair_names, arrangement.angles, finding.evidence.four_cos, strict=True
     ):
@@ -40,8 +49,8 @@ def print_angles(arrangement: Arrangement, finding: Finding) -> None:
                 name,
                 angle.text,
                 write_angle(angle, "pi") if closes else "none",
-                write_angle(angle) if closes else "",
-                _off(angle),
+                write_angle(angle, style) if closes and style != "pi" else "",
+                _off(angle, style),
                 f"{value:.6g}",
                 "∞" if order is None else str(order),
             )
@@ -49,7 +58,7 @@ def print_angles(arrangement: Arrangement, finding: Finding) -> None:
     print_table(rows)
 
 
-def _off(angle: Angle) -> str:
+def _off(angle: Angle, style: str) -> str:
     """How far the value is from its closing fraction, where it need not be 0."""
     if angle.fraction is None or angle.source not in ("rounded", "measured"):
         return ""
@@ -57,8 +66,15 @@ def _off(angle: Angle) -> str:
     if off == 0:
         return "0°"
     if angle.source != "measured":
-        return f"{off:+.3g}°"
-    return f"{off:+.3g}° ({off / angle.uncertainty:+.1f}σ)"
+        return _change(off, style, 3)
+    return f"{_change(off, style, 3)} ({off / angle.uncertainty:+.1f}σ)"
+
+
+def _change(degrees: float, style: str, digits: int) -> str:
+    """A change of an angle, with its sign; in degrees, or in degrees, minutes and seconds where these are asked for."""
+    if style != "dms":
+        return f"{degrees:+.{digits}g}°"
+    return ("-" if degrees < 0 else "+") + write_angle(abs(round(degrees, ROUNDED)), style)
 
 
 def print_group(finding: Finding, group: ReflectionGroup) -> None:
@@ -121,7 +137,7 @@ def print_tube(finding: Finding) -> None:
     print_table(rows)
 
 
-def print_ways(title: str, ways: tuple[Suggestion, ...]) -> None:
+def print_ways(title: str, ways: tuple[Suggestion, ...], style: str) -> None:
     """Sets of angles that close, in the order of the pairs, with the change of each."""
     if not ways:
         return
@@ -129,8 +145,8 @@ def print_ways(title: str, ways: tuple[Suggestion, ...]) -> None:
     rows = [("angles", "makes", "chambers between", "change")]
     for way in ways:
         changes = dict(zip(way.pair_names, way.changes, strict=True))
-        change = ", ".join(f"{pair} {changes[pair]:+.4g}°" for pair in way.changed_pairs)
-        rows.append((" ".join(way.texts()), way.name, str(way.chambers_between), change or "none"))
+        change = ", ".join(f"{pair} {_change(changes[pair], style, 4)}" for pair in way.changed_pairs)
+        rows.append((" ".join(way.texts(style)), way.name, str(way.chambers_between), change or "none"))
     print_table(rows)
 
 

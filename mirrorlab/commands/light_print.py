@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from mirrorlab.commands.output import print_table
+from mirrorlab.commands.output import computed, print_table
 
 if TYPE_CHECKING:
     from mirrorlab.optics.images import ImageCount
@@ -54,8 +54,8 @@ def _list(count: ImageCount) -> None:
         print(f"  … and {count.count - MOST_LISTED} more; --csv or --json has them all")
 
 
-def print_tolerance(found: Tolerance) -> None:
-    """Print what is left over, the seams, and what is allowed."""
+def print_tolerance(found: Tolerance, style: str) -> None:
+    """Print what is left over, the seams, and what is allowed; angles in a style of `mirrorlab.angles.write_angle`."""
     print(f"{found.intent.kind}, seams at {found.distance:g} mm: {found.sentence}")
     heads = ["edge", "meant", "actual", "off", "sectors", "left over", "seam mm"]
     if found.limit is not None:
@@ -64,8 +64,8 @@ def print_tolerance(found: Tolerance) -> None:
     for edge in found.edges:
         row = [
             edge.pair,
-            f"{edge.intended:.6g}°",
-            f"{edge.actual:.6g}°",
+            computed(edge.intended, style, ".6g"),
+            computed(edge.actual, style, ".6g"),
             f"{edge.error:+.4f}°",
             str(edge.sectors),
         ]
@@ -76,9 +76,8 @@ def print_tolerance(found: Tolerance) -> None:
     print_table(rows)
     for edge in found.edges:
         if edge.always:
-            print(
-                f"  {edge.pair}: {edge.intended:.6g}° is not 180°/m, so its images meet in a seam even when exact"
-            )
+            meant = computed(edge.intended, style, ".6g")
+            print(f"  {edge.pair}: {meant} is not 180°/m, so its images meet in a seam even when exact")
     if found.whole is not None:
         whole = found.whole
         print(

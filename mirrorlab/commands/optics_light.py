@@ -12,6 +12,7 @@ from mirrorlab.commands.assembly_words import add_dimensions, dimensions_of, kin
 from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
+    add_style,
     arrangement_of,
     numbers,
     plain,
@@ -134,6 +135,7 @@ def add_tolerance(subparsers: Any) -> None:
     )
     parser.add_argument("--draws", type=int, default=10_000, metavar="N", help="assemblies drawn (10000)")
     parser.add_argument("--seed", type=int, default=1, metavar="N", help="the same seed draws the same (1)")
+    add_style(parser)
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_tolerance)
 
@@ -269,7 +271,7 @@ def run_tolerance(args: argparse.Namespace) -> int:
     if args.json:
         print_json({**found.to_dict(), "chances": None if chances is None else chances.to_dict()})
         return 0
-    print_tolerance(found)
+    print_tolerance(found, args.write_as)
     if chances is not None:
         print_chances(chances, found.limit)
     return 0

@@ -9,7 +9,15 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from mirrorlab.commands.assembly_words import add_dimensions, dimensions_of, kind_of
-from mirrorlab.commands.output import UsageError, add_mirrors, arrangement_of, print_json, print_table
+from mirrorlab.commands.output import (
+    UsageError,
+    add_mirrors,
+    add_style,
+    arrangement_of,
+    computed,
+    print_json,
+    print_table,
+)
 
 if TYPE_CHECKING:
     from mirrorlab.optics.chooser import Choice
@@ -253,6 +261,7 @@ def add_choose(subparsers: Any) -> None:
     parser.add_argument(
         "--reflectance", type=float, default=0.9, metavar="R", help="kept by one bounce (0.9)"
     )
+    add_style(parser)
     parser.add_argument("--sort", metavar="KEY", help="images, bright, chambers, angle, depth or area")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_choose)
@@ -286,12 +295,12 @@ def run_choose(args: argparse.Namespace) -> int:
             {"opening_mm": found[0].opening if found else None, "choices": [c.to_dict() for c in found]}
         )
     else:
-        _print_choices(found)
+        _print_choices(found, args.write_as)
     return 0
 
 
-def _print_choices(found: tuple[Choice, ...]) -> None:
-    """The choices for a person."""
+def _print_choices(found: tuple[Choice, ...], style: str) -> None:
+    """The choices for a person, angles in a style of `mirrorlab.angles.write_angle`."""
     import math
 
     head = (
@@ -311,13 +320,13 @@ def _print_choices(found: tuple[Choice, ...]) -> None:
         panels = ", ".join(f"{letter} {w:.0f}×{h:.0f}" for letter, w, h in choice.panels)
         rows.append(
             (
-                closing.name,
+                closing.name_in(style),
                 "endless" if closing.images is None else str(closing.images),
                 str(choice.bright),
                 "endless" if closing.order is None else str(closing.order),
                 str(closing.chambers),
                 closing.symbol,
-                " ".join(f"{math.degrees(angle):.2f}°" for angle in choice.edge_angles) or "–",
+                " ".join(computed(math.degrees(angle), style, ".2f") for angle in choice.edge_angles) or "–",
                 f"{choice.depth:.1f}" if choice.depth else "–",
                 panels or choice.problem,
             )

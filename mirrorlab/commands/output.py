@@ -4,15 +4,19 @@ from __future__ import annotations
 
 import argparse
 import json
+import math
 import re
 import sys
 from collections.abc import Mapping, Sequence
 from typing import Any
 
-from mirrorlab.angles import AngleSettings, split_angles
+from mirrorlab.angles import STYLES, Angle, AngleSettings, split_angles, write_angle
 from mirrorlab.mirrors import Arrangement
 
 SEED_WAYS = ("heights", "point", "place")
+
+ROUNDING = 1e-9
+"""Radians; an angle computed on doubles that is this near to a fraction of π is that fraction."""
 
 
 class UsageError(ValueError):
@@ -67,6 +71,28 @@ def add_seed(parser: argparse.ArgumentParser) -> None:
     seed.add_argument(
         "--place", metavar="NAME", help='seed at a named place: centre, "wall a", "edge ab", "corner bc"'
     )
+
+
+def add_style(parser: argparse.ArgumentParser) -> None:
+    """Add the choice of how angles between mirrors or faces are written in the answer for a person."""
+    parser.add_argument(
+        "--write-as",
+        choices=STYLES,
+        default="degrees",
+        help="how angles are written: degrees (60.5°), pi (2pi/5; in degrees what is no fraction of pi) or dms "
+        "(60°30'00\"); degrees if not given",
+    )
+
+
+def computed(degrees: float, style: str, digits: str) -> str:
+    """An angle computed on doubles, in a style of `write_angle`; a format such as ``.4f`` says its digits in degrees.
+
+    For "pi" an angle that is no fraction of π is written in degrees.
+    """
+    angle = Angle.from_radians(math.radians(degrees), ROUNDING)
+    if style == "degrees" or (style == "pi" and angle.fraction is None):
+        return f"{degrees:{digits}}°"
+    return write_angle(angle, style)
 
 
 def arrangement_of(args: argparse.Namespace) -> Arrangement:

@@ -128,7 +128,11 @@ class FitCandidate:
     @property
     def angle_text(self) -> str:
         """``45°, 60°, 90°``."""
-        return ", ".join(write_angle(f) for f in self.angles)
+        return self.angles_in("degrees")
+
+    def angles_in(self, style: str) -> str:
+        """The angles in a style of `write_angle`."""
+        return ", ".join(write_angle(f, style) for f in self.angles)
 
     @property
     def symbol(self) -> str:
@@ -139,9 +143,13 @@ class FitCandidate:
     @property
     def name(self) -> str:
         """``m-3m (B3) at 45°, 60°, 90°``."""
+        return self.name_in("degrees")
+
+    def name_in(self, style: str) -> str:
+        """The name with its angles in a style of `write_angle`."""
         families = " × ".join(self.finding.families)
         head = self.symbol if self.symbol == families else f"{self.symbol} ({families})"
-        return f"{head} at {self.angle_text}" + (", all through one line" if self.one_line else "")
+        return f"{head} at {self.angles_in(style)}" + (", all through one line" if self.one_line else "")
 
     def to_dict(self) -> dict:
         """Plain JSON."""
@@ -217,19 +225,23 @@ class Fit:
 
     @property
     def sentence(self) -> str:
-        """The answer in words."""
+        """The answer in words, angles in degrees."""
+        return self.sentence_in("degrees")
+
+    def sentence_in(self, style: str) -> str:
+        """The answer in words, angles in a style of `write_angle`."""
         best = self.best
         count = self.degrees_of_freedom
         angles = f"{count} angle{'s' if count != 1 else ''}"
         numbers = f"χ² = {best.chi_squared:.3g} for {angles}, probability {best.probability:.2g}"
         if not best.fits:
-            text = f"No closed arrangement fits; nearest is {best.name}: {numbers}."
+            text = f"No closed arrangement fits; nearest is {best.name_in(style)}: {numbers}."
             if best.misfit:
                 text += f" The misfit is {best.misfit}; the others fit."
         else:
-            text = f"Fits {best.name}: {numbers}."
+            text = f"Fits {best.name_in(style)}: {numbers}."
         if self.tied:
-            names = [one.name for one in self.tied[:3]]
+            names = [one.name_in(style) for one in self.tied[:3]]
             more = f" and {len(self.tied) - 3} more" if len(self.tied) > 3 else ""
             text += f" At this precision it cannot be told from {'; '.join(names)}{more}."
         return text

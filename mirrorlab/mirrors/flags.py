@@ -43,9 +43,11 @@ class Flag:
     mirrors : tuple of int
         The pair, or the cycle in order.
     reason : str
-        A sentence for a person.
+        A sentence for a person, angles in degrees.
     nearest : tuple of Fraction
         The nearest permitted angles as fractions of π (for a pair).
+    angle : Angle or None
+        The angle at fault (for a pair).
     """
 
     code: str
@@ -53,6 +55,13 @@ class Flag:
     letters: str
     reason: str
     nearest: tuple[Fraction, ...] = ()
+    angle: Angle | None = None
+
+    def reason_in(self, style: str) -> str:
+        """The reason with its angles in a style of `write_angle`."""
+        return (
+            self.reason if self.angle is None else _pair_reason(self.letters, self.angle, self.nearest, style)
+        )
 
     def to_dict(self) -> dict[str, object]:
         """Plain JSON."""
@@ -79,17 +88,29 @@ def pair_flags(
         name = letters[i] + letters[j]
         if angle.fraction is None:
             near = tuple(nearby.fraction for nearby in angle.nearest(3))
-            text = f"{name} {angle.text}: no closing fraction; nearest {', '.join(write_angle(f, 'pi') for f in near)}"
-            flags.append(Flag("no-closing-fraction", (i, j), name, text, near))
+            code = "no-closing-fraction"
         elif angle.fraction.denominator not in LATTICE_ORDERS:
             near = permitted_near(angle.fraction)
-            value = four_cos_squared(angle.fraction)
-            text = (
-                f"{name} {write_angle(angle.fraction, 'degrees')}: 4cos² is {value:.4f}, not 0, 1, 2 or 3; "
-                f"nearest permitted {' and '.join(write_angle(f, 'degrees') for f in near)}"
-            )
-            flags.append(Flag("no-lattice", (i, j), name, text, near))
+            code = "no-lattice"
+        else:
+            continue
+        flags.append(Flag(code, (i, j), name, _pair_reason(name, angle, near, "degrees"), near, angle))
     return tuple(flags)
+
+
+def _pair_reason(name: str, angle: Angle, near: tuple[Fraction, ...], style: str) -> str:
+    """What is wrong with a pair, its angles in a style of `write_angle`."""
+    if angle.fraction is None:
+        # the fraction is what is missing, so it stands beside the angle in every style
+        written = [
+            pi if style == "pi" else f"{write_angle(f, style)} ({pi})"
+            for f, pi in ((f, write_angle(f, "pi")) for f in near)
+        ]
+        return f"{name} {angle.text}: no closing fraction; nearest {', '.join(written)}"
+    return (
+        f"{name} {write_angle(angle, style)}: 4cos² is {four_cos_squared(angle.fraction):.4f}, not 0, 1, 2 or 3; "
+        f"nearest permitted {' and '.join(write_angle(f, style) for f in near)}"
+    )
 
 
 def permitted_near(fraction: Fraction) -> tuple[Fraction, ...]:

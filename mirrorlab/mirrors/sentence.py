@@ -8,15 +8,15 @@ if TYPE_CHECKING:
     from mirrorlab.mirrors.finding import Finding
 
 
-def sentence(finding: Finding) -> str:
-    """The finding as one sentence, or two where a way out is known."""
+def sentence(finding: Finding, style: str = "degrees") -> str:
+    """The finding as one sentence, or two where a way out is known, its angle in a style of `write_angle`."""
     return {
         "closed": _closed,
         "closed-subdivided": _closed,
         "open": _open,
         "tube": _tube,
         "unbuildable": _unbuildable,
-    }[finding.kind](finding) + _way_out(finding)
+    }[finding.kind](finding) + _way_out(finding, style)
 
 
 def _group(finding: Finding) -> str:
@@ -77,9 +77,9 @@ def _unbuildable(finding: Finding) -> str:
     return "Cannot be built: no planes have these angles."
 
 
-def _way_out(finding: Finding) -> str:
+def _way_out(finding: Finding, style: str) -> str:
     if not finding.supplements:
         return ""
     way = finding.supplements[0]
     pair = way.changed_pairs[0]
-    return f" With {pair} read as {way.degrees_of(pair)} it closes as {way.name}."
+    return f" With {pair} read as {way.angle_of(pair, style)} it closes as {way.name}."

@@ -67,16 +67,20 @@ class Suggestion:
 
     def degrees_of(self, pair: str) -> str:
         """The suggested angle of a pair, written in degrees."""
-        return write_angle(self.angles[self.pair_names.index(pair)], "degrees")
+        return self.angle_of(pair, "degrees")
 
-    def texts(self) -> tuple[str, ...]:
-        """The angles as text that can be typed."""
-        return tuple(write_angle(f, "pi") for f in self.angles)
+    def angle_of(self, pair: str, style: str) -> str:
+        """The suggested angle of a pair, in a style of `write_angle`."""
+        return write_angle(self.angles[self.pair_names.index(pair)], style)
+
+    def texts(self, style: str = "pi") -> tuple[str, ...]:
+        """The angles as text that can be typed, in a style of `write_angle`."""
+        return tuple(write_angle(f, style) for f in self.angles)
 
     def to_dict(self) -> dict[str, object]:
         """Plain JSON."""
         return {
-            "angles": [write_angle(f, "pi") for f in self.angles],
+            "angles": list(self.texts()),
             "degrees": [float(180 * f) for f in self.angles],
             "changes": list(self.changes),
             "largest_change": self.largest_change,

@@ -21,6 +21,7 @@ from math import gcd
 
 import numpy as np
 
+from mirrorlab.angles import write_angle
 from mirrorlab.mirrors import Arrangement
 from mirrorlab.mirrors.families import parse_family
 from mirrorlab.mirrors.symbols import point_group
@@ -84,7 +85,13 @@ class Closing:
     @property
     def name(self) -> str:
         """For a person: "corner 90° 60° 36°"."""
-        shown = [f"{float(fraction) * 180:.6g}°" for fraction in self.fractions if fraction]
+        return self.name_in("degrees")
+
+    def name_in(self, style: str) -> str:
+        """The name with its angles in a style of `mirrorlab.angles.write_angle`; parallel mirrors are left out."""
+        shown = [write_angle(f, style) for f in self.fractions if f]
+        if style == "degrees":  # a name is read, not typed back: four decimals are enough
+            shown = [f"{float(f) * 180:.6g}°" for f in self.fractions if f]
         return f"{self.kind} {' '.join(shown)}"
 
     def arrangement(self) -> Arrangement:
