@@ -25,6 +25,10 @@ if TYPE_CHECKING:
     from mirrorlab.mirrors.arrangement import Arrangement
 
 
+SPACE = 3
+"""Dimensions of ordinary space."""
+
+
 def buildable(gram: Array, fractions: Fractions) -> int | None:
     """Rank of the Gram matrix, part by part, or None when no planes have these angles.
 
@@ -68,6 +72,8 @@ def decide(arrangement: Arrangement) -> Finding:
     ) -> Finding:
         def suggest() -> tuple[Suggestion, ...]:
             if kind == CLOSED or arrangement.given_normals or arrangement.size < 2:
+                return ()
+            if arrangement.size > SPACE and _stands_in_a_room(kind, rank, arrangement):
                 return ()
             return nearest_closing(arrangement.angles, arrangement.size, arrangement.pair_names, verdict)
 
@@ -115,6 +121,14 @@ def decide(arrangement: Arrangement) -> Finding:
     point = max(corner_points(roots, frame), key=familiar)
     group = build_group(pieces, point, normals, arrangement.letters)
     return finish(SUBDIVIDED, group, between, group.crystallographic)
+
+
+def _stands_in_a_room(kind: str, rank: int, arrangement: Arrangement) -> bool:
+    """Whether mirrors are those of a tube or cell in ordinary space, or were meant so, with a parallel pair.
+
+    As many mirrors that close, four or more, need as many dimensions: nobody can set a room's so.
+    """
+    return (kind == TUBE and rank <= SPACE) or any(angle.fraction == 0 for angle in arrangement.angles)
 
 
 def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array) -> int:

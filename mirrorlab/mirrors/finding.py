@@ -143,7 +143,11 @@ class Finding:
 
     @cached_property
     def suggestions(self) -> tuple[Suggestion, ...]:
-        """The nearest sets of angles that close, by largest change; empty when the kind is "closed"."""
+        """The nearest sets of angles that close and are of use, by largest change; see `mirrorlab.mirrors.usable`.
+
+        Empty when the kind is "closed", and for rooms: four mirrors or more of a tube or cell, or with a parallel
+        pair, since as many that close need more than three dimensions.
+        """
         return self._suggest()
 
     @cached_property

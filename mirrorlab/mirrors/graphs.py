@@ -15,6 +15,8 @@ from itertools import combinations, product
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.mirrors.usable import usable_near
+
 MOST_GRAPHS = 6
 MOST_NODES = 3_000
 """Graphs looked at in one search before the best so far are taken (a quarter of a second for eight mirrors)."""
@@ -27,6 +29,12 @@ POSITIVE = 1e-9
 rounding where nothing is left."""
 
 HALF = Fraction(1, 2)
+CONNECTED = (HALF, Fraction(1, 3), Fraction(1, 4), Fraction(1, 5))
+"""Angles of the chambers of finite groups of rank 3 and more that do not split."""
+
+UNCHANGED = 1e-9
+"""Degrees; a smaller change of an angle is rounding of its fraction."""
+
 Array = NDArray[np.float64]
 Key = tuple[float, float]
 Row = tuple[Key, tuple[Fraction, ...]]
@@ -110,12 +118,17 @@ def _search(typed: Array, size: int) -> list[tuple[Fraction, ...]]:
     return [angles for _, angles in best]
 
 
+def _kept(value: float) -> tuple[Fraction, ...]:
+    """The angle itself, where it is 180°/m: one that stays as typed may be narrower than a changed one."""
+    m = round(180 / value) if value else 0
+    return (Fraction(1, m),) if m > 1 and abs(180 / m - value) <= UNCHANGED else ()
+
+
 def _rows(typed: list[float]) -> list[Row]:
     """Angles of a new mirror with each earlier one, with their largest and total change, smallest first."""
     rows: list[tuple[Key, tuple[Fraction, ...], int]] = [((0.0, 0.0), (), 0)]
     for value in typed:
-        m = 180 / max(value, 0.5)
-        near = {Fraction(1, max(2, k)) for k in (2, 3, 4, 5, math.floor(m), math.ceil(m))}
+        near = {*CONNECTED, *(f for f in usable_near(value) if f.numerator == 1), *_kept(value)}
         changes = [(abs(float(180 * f) - value), f) for f in near]
         rows = [
             ((max(largest, change), total + change), (*row, f), slanted + (f != HALF))

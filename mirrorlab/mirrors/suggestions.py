@@ -1,7 +1,8 @@
 """The nearest sets of angles that close.
 
-For two mirrors every fraction of π closes. For three, every closed and closed-subdivided triangle with angles
-kπ/m is listed once and compared. For more, see `mirrorlab.mirrors.graphs`.
+For two mirrors every fraction of π closes, and for three with two right angles every third angle: there only those
+count that are of use (see `mirrorlab.mirrors.usable`). For other three, every closed and closed-subdivided triangle
+with angles kπ/m is listed once and compared. For more, see `mirrorlab.mirrors.graphs`.
 """
 
 from __future__ import annotations
@@ -20,12 +21,10 @@ from mirrorlab.angles import Angle, write_angle
 from mirrorlab.mirrors.exact import CERTAIN, triangle_rank
 from mirrorlab.mirrors.families import MOST_MIRRORS
 from mirrorlab.mirrors.generation import generate_roots
-from mirrorlab.mirrors.graphs import nearest_graphs
+from mirrorlab.mirrors.graphs import UNCHANGED, nearest_graphs
+from mirrorlab.mirrors.usable import usable_near
 
 MOST_SUGGESTIONS = 6
-UNCHANGED = 1e-9
-"""Degrees; a smaller change of an angle is rounding of its fraction."""
-
 HALF = Fraction(1, 2)
 Decide = Callable[[Sequence[Fraction]], "tuple[str, tuple[str, ...], int | None, int | None, str]"]
 Verdict = tuple[str, tuple[str, ...], int | None, int | None, str]
@@ -99,8 +98,7 @@ def nearest_closing(
     typed = np.array([angle.degrees for angle in angles])
     found: list[tuple[Fraction, ...]]
     if size == 2:
-        found = [(nearby.fraction,) for nearby in angles[0].nearest(MOST_SUGGESTIONS)]
-        found += [(f,) for f in _neighbours(float(typed[0]))]
+        found = [(f,) for f in usable_near(angles[0].degrees)]
     elif size == 3:
         found = _triangles(angles, typed)
     else:
@@ -109,12 +107,6 @@ def nearest_closing(
     result = [s for s in result if s.kind.startswith("closed") and s.largest_change > UNCHANGED]
     result.sort(key=lambda s: (round(s.largest_change, 9), s.kind != "closed", sum(map(abs, s.changes))))
     return tuple(result[:MOST_SUGGESTIONS])
-
-
-def _neighbours(degrees: float) -> tuple[Fraction, Fraction]:
-    """The angles 180°/m on either side of an angle."""
-    m = 180 / max(degrees, 0.5)
-    return Fraction(1, max(2, math.floor(m))), Fraction(1, max(2, math.ceil(m)))
 
 
 def supplements(angles: tuple[Angle, ...], names: tuple[str, ...], decide: Decide) -> tuple[Suggestion, ...]:
@@ -176,10 +168,11 @@ def _triangles(angles: tuple[Angle, ...], typed: NDArray[np.float64]) -> list[tu
         for i, j, k in ((0, 1, 2), (0, 2, 1), (1, 0, 2), (1, 2, 0), (2, 0, 1), (2, 1, 0))
     }
     for k, angle in enumerate(angles):  # two right angles leave the third free
-        near = [angle.fraction] if angle.fraction else [nearby.fraction for nearby in angle.nearest(3)]
-        for f in (*near, *_neighbours(angle.degrees)):
-            if 0 < f < 1:
-                candidates.add(tuple(f if j == k else HALF for j in range(3)))  # type: ignore[arg-type]
+        kept = (
+            (angle.fraction,) if angle.fraction and abs(180 * angle.fraction - typed[k]) <= UNCHANGED else ()
+        )
+        for f in (*kept, *usable_near(angle.degrees)):
+            candidates.add(tuple(f if j == k else HALF for j in range(3)))  # type: ignore[arg-type]
     table = list(candidates)
     values = np.array([[float(180 * f) for f in row] for row in table])
     changes = np.abs(values - typed)

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import itertools
-import math
 from fractions import Fraction as F
 
 import numpy as np
 import pytest
 
 from mirrorlab.mirrors import Arrangement
+from mirrorlab.mirrors.usable import DENOMINATORS, NARROWEST, usable_near
 
 
 @pytest.fixture(scope="module")
@@ -31,13 +31,12 @@ def changes(candidate, typed):
 
 
 def with_two_right_angles(typed):
-    """Two right angles leave the third free: its own value, or the 180°/m beside it."""
-    found = set()
-    for k, value in enumerate(typed):
-        for f in (F(str(value)) / 180, F(1, math.floor(180 / value)), F(1, math.ceil(180 / value))):
-            if f < 1:
-                found.add(tuple(f if i == k else F(1, 2) for i in range(3)))
-    return found
+    """Two right angles leave the third free: its own value, or a usable one beside it."""
+    return {
+        tuple(f if i == k else F(1, 2) for i in range(3))
+        for k, value in enumerate(typed)
+        for f in (F(value, 180), *usable_near(value))
+    }
 
 
 TYPED = [
@@ -106,6 +105,64 @@ def test_two_mirrors():
     narrow = Arrangement.from_angles(["0.2"]).finding().suggestions
     assert narrow
     assert all(s.kind.startswith("closed") for s in narrow)
+
+
+MESSY = [
+    ["0"], ["0.2"], ["2.7123456"], ["7.3"], ["29.7"], ["59.8"], ["60.1234567"], ["133.3"], ["178.9"],
+    ["0", "90", "90"], ["0", "59", "61"], ["90", "90", "0.4"], ["90", "89.7", "12.9"], ["90", "90", "59.8"],
+    ["90.2", "90", "133.1"], ["0", "0", "0"], ["88", "90", "51"], ["0.3", "90", "90", "90", "90", "90"],
+]  # fmt: skip
+
+
+@pytest.mark.parametrize("typed", MESSY, ids=" ".join)
+def test_a_changed_angle_becomes_one_that_is_of_use(typed):
+    found = Arrangement.from_angles(typed).finding().suggestions
+    assert found
+    for suggestion in found:
+        for pair, change, f in zip(suggestion.pair_names, suggestion.changes, suggestion.angles, strict=True):
+            whole_part = f.numerator == 1 and 180 * f >= NARROWEST
+            assert change == pytest.approx(0, abs=1e-9) or f.denominator in DENOMINATORS or whole_part, pair
+
+
+@pytest.mark.parametrize(
+    ("typed", "first"),
+    [
+        (["59.8"], "60°"),
+        (["90", "90", "60.1234567"], "90° 90° 60°"),
+        (["7.3"], "7.2°"),
+        (["0", "90", "90"], "15° 90° 90°"),
+        (["2.7123456"], "3°"),
+        (["51"], "51.428571°"),
+        (["88", "90", "7"], "90° 90° 6.923077°"),  # 7° would cut the region up, and no angle changes more for it
+        (["88", "90", "51"], "90° 90° 51°"),  # an angle that stays as typed may be any
+    ],
+)
+def test_what_a_person_meant_comes_first(typed, first):
+    assert " ".join(Arrangement.from_angles(typed).finding().suggestions[0].texts("degrees")) == first
+
+
+@pytest.mark.parametrize(
+    "typed",
+    ["90 0 90 90 0 90", "0 90 90 90 90 0", "90 60 60 60 60 90", "90 0 90 89 0 90", "90 90 90 90 90 0"],
+)
+def test_nothing_is_suggested_that_needs_more_dimensions_than_a_room_has(typed):
+    assert Arrangement.from_angles(typed.split()).finding().suggestions == ()
+
+
+@pytest.mark.parametrize("value", [0, 0.4, 1.6, 2, 7.3, 29.7, 45, 51, 61, 90, 100, 133.3, 176.5])
+def test_usable_angles_by_trial(value):
+    def beside(options):
+        below = [f for f in options if 180 * f <= value]
+        above = [f for f in options if 180 * f >= value]
+        return {*([max(below)] if below else []), *([min(above)] if above else [])}
+
+    every = {F(k, m) for m in DENOMINATORS for k in range(1, m)}
+    fans = [F(1, m) for m in range(2, 61)]
+    expected = beside(every) | beside([f for f in every if f.denominator <= 6])
+    if value > 1.5:
+        expected |= beside(fans)
+    assert set(usable_near(value)) == expected
+    assert len(usable_near(value)) <= 6
 
 
 def nearest_of_four(typed):
