@@ -23,6 +23,7 @@ from mirrorlab.commands.output import (
     plain,
     print_json,
 )
+from mirrorlab.commands.stereogram_words import add_net, stereogram_options
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.combinations import Combination
@@ -114,9 +115,7 @@ def _parser(subparsers: Any, name: str, description: str, examples: str) -> argp
 
 def _add_picture(parser: argparse.ArgumentParser, what: str) -> None:
     parser.add_argument("--picture", metavar="F", help=f"{what}: .png, .svg or .pdf")
-    parser.add_argument(
-        "--net", choices=("wulff", "schmidt"), help="projection of a stereogram, with its net"
-    )
+    add_net(parser)
 
 
 def run_group(args: argparse.Namespace) -> int:
@@ -149,7 +148,7 @@ def run_group(args: argparse.Namespace) -> int:
         from mirrorlab.drawing.stereogram import group_stereogram
 
         point = None if orbit is None else orbit.points[0] @ group.basis.T
-        written.append(_save(group_stereogram(group, None, point, _options(args)), args.picture))
+        written.append(_save(group_stereogram(group, None, point, stereogram_options(args)), args.picture))
     if args.json:
         print_json(group_dict(group, orbit, args.subgroups, args.forms))
     else:
@@ -176,6 +175,9 @@ def _check_before_writing(args: argparse.Namespace, group: NamedGroup) -> None:
 def _check_picture(args: argparse.Namespace) -> None:
     if args.picture and Path(args.picture).suffix.lower() not in PICTURES:
         msg = f'"{args.picture}": a picture ends in {", ".join(PICTURES)}'
+        raise UsageError(msg)
+    if args.net and not args.picture:
+        msg = "--net is drawn under a picture; say with --picture where to write it"
         raise UsageError(msg)
 
 
@@ -239,7 +241,7 @@ def _form_picture(args: argparse.Namespace, group: NamedGroup, made: Combination
     if args.stereogram or args.net:
         from mirrorlab.drawing.stereogram import group_stereogram
 
-        return group_stereogram(group, made, None, _options(args))
+        return group_stereogram(group, made, None, stereogram_options(args))
     from mirrorlab.drawing.form import form_drawing
 
     return form_drawing(made)
@@ -275,13 +277,6 @@ def _basis(args: argparse.Namespace) -> Any:
     from mirrorlab.crystal.lattices import axes_from_constants
 
     return axes_from_constants(args.cell)
-
-
-def _options(args: argparse.Namespace) -> Any:
-    from mirrorlab.drawing.projection import Projection
-    from mirrorlab.drawing.stereogram import StereogramOptions
-
-    return StereogramOptions(Projection(args.net or "wulff"), underlay=args.net is not None)
 
 
 def _save(drawing: Drawing, path: str) -> Path:

@@ -6,7 +6,7 @@ import argparse
 import re
 import sys
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from mirrorlab.commands.output import (
     UsageError,
@@ -16,16 +16,21 @@ from mirrorlab.commands.output import (
     print_json,
     seed_of,
 )
+from mirrorlab.commands.stereogram_words import add_net, stereogram_options
 from mirrorlab.drawing.model import Drawing
 from mirrorlab.mirrors import Arrangement, Finding, Orbit
 
+if TYPE_CHECKING:
+    from mirrorlab.drawing.stereogram import StereogramOptions
+
 MESHES = (".glb", ".stl", ".obj")
+STEREOGRAM = "stereogram"
 
 EXAMPLES = """examples:
   mirrorlab draw 90 60 45 --out lantern.png
   mirrorlab draw 90 60 36 --heights 1,2,3 --out lantern.svg --size 1600x1600
   mirrorlab draw 60 60 60 --out tube.pdf --look dark
-  mirrorlab draw 90 60 45 --picture stereogram --out stereogram.svg
+  mirrorlab draw 90 60 45 --picture stereogram --net schmidt --out stereogram.svg
   mirrorlab draw --family E7 --picture plane --out e7.svg
   mirrorlab draw 90 60 45 --out lantern.glb
 """
@@ -43,8 +48,11 @@ def add_draw(subparsers: Any) -> None:
     add_mirrors(parser)
     parser.add_argument("--out", required=True, metavar="F", help="the file to write")
     parser.add_argument(
-        "--picture", choices=tuple(MAKERS), help="which picture; by default space, or plane above rank 3"
+        "--picture",
+        choices=(*MAKERS, STEREOGRAM),
+        help="which picture; by default space, or plane above rank 3",
     )
+    add_net(parser)
     add_seed(parser)
     parser.add_argument("--size", default="1200x1200", metavar="WxH", help="pixels (1200x1200)")
     parser.add_argument("--look", choices=("light", "dark"), default="light", help="tints (light)")
@@ -97,17 +105,31 @@ def drawing_of(args: argparse.Namespace) -> Drawing:
         args, {}
     )  # a seed asked for where nothing closes is refused; one that a file keeps is passed over
     orbit = arrangement.orbit(**seed) if asked or (seed and finding.group is not None) else None
-    picture = args.picture or ("plane" if finding.rank > 3 and finding.group is not None else "space")
-    if picture == "flat" and finding.rank > 2:
-        msg = (
-            f"rank {finding.rank} has no flat view; that is of mirrors through one line. Take --picture space"
-        )
-        raise UsageError(msg)
-    drawing = MAKERS[picture](arrangement, finding, orbit)
+    picture = _picture(args, finding)
+    if picture == STEREOGRAM:
+        drawing = _stereogram(arrangement, finding, orbit, stereogram_options(args))
+    else:
+        drawing = MAKERS[picture](arrangement, finding, orbit)
     if not (drawing.faces or drawing.lines or drawing.points):
         msg = f"nothing to draw: {' '.join(drawing.notes) or drawing.title}"
         raise UsageError(msg)
     return drawing
+
+
+def _picture(args: argparse.Namespace, finding: Finding) -> str:
+    """Which picture the words ask for."""
+    if args.net and args.picture not in (None, STEREOGRAM):
+        msg = f"--net is of a stereogram; there is none under --picture {args.picture}"
+        raise UsageError(msg)
+    if args.picture == "flat" and finding.rank > 2:
+        msg = (
+            f"rank {finding.rank} has no flat view; that is of mirrors through one line. Take --picture space"
+        )
+        raise UsageError(msg)
+    if args.net:
+        return STEREOGRAM
+    usual = "plane" if finding.rank > 3 and finding.group is not None else "space"
+    return str(args.picture or usual)
 
 
 def _space(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
@@ -122,10 +144,12 @@ def _flat(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Dr
     return space_drawing(arrangement, finding, orbit, SpaceOptions(flat=True))
 
 
-def _stereogram(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
+def _stereogram(
+    arrangement: Arrangement, finding: Finding, orbit: Orbit | None, options: StereogramOptions
+) -> Drawing:
     from mirrorlab.drawing.stereogram import arrangement_stereogram
 
-    return arrangement_stereogram(arrangement, finding, orbit)
+    return arrangement_stereogram(arrangement, finding, orbit, options=options)
 
 
 def _chamber(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> Drawing:
@@ -140,5 +164,5 @@ def _plane(arrangement: Arrangement, finding: Finding, orbit: Orbit | None) -> D
     return coxeter_drawing(arrangement, finding, orbit)
 
 
-MAKERS = {"space": _space, "flat": _flat, "stereogram": _stereogram, "chamber": _chamber, "plane": _plane}
+MAKERS = {"space": _space, "flat": _flat, "chamber": _chamber, "plane": _plane}
 ADD = {"draw": add_draw}

@@ -148,6 +148,8 @@ def test_candidates_as_json_and_csv(capsys, tmp_path):
         (("group", "m-3m", "--cell", "1,1,2,90,90,90"), "do not have the symmetry m-3m"),
         (("group", "mmm", "--cell", "1,1,2"), "six constants"),
         (("group", "5m", "--forms"), "no lattice"),
+        (("group", "mmm", "--net", "wulff"), "--picture"),
+        (("form", "m-3m", "111", "--net", "wulff"), "--picture"),
         (("form", "m-3m", "1,1"), "2 numbers"),
         (("form", "m-3m", "1,0,-1,0"), "hexagonal axes"),
         (("form", "m-3m", "111:x"), "not a positive number"),

@@ -46,6 +46,7 @@ def test_what_was_drawn_as_json(answer: Answer, tmp_path: Path) -> None:
         ["30", "--picture", "flat"],
         ["30"],
         ["90", "60", "45", "--picture", "stereogram"],
+        ["90", "60", "45", "--net", "wulff"],
         ["90", "60", "45", "--picture", "chamber", "--place", "centre"],
         ["90", "60", "45", "--picture", "plane", "--place", "centre"],
         ["90", "60", "40"],
@@ -65,6 +66,20 @@ def test_a_picture_shows_something(answer: Answer, tmp_path: Path, words: list[s
     assert (image.width(), image.height()) == (240, 200)
     tints = {image.pixel(x, y) for x in range(0, 240, 4) for y in range(0, 200, 4)}
     assert len(tints) > 5
+
+
+def test_a_net_lies_under_the_stereogram(answer: Answer, tmp_path: Path) -> None:
+    pictures = {}
+    for name, words in {
+        "plain": ["--picture", "stereogram"],
+        "wulff": ["--picture", "stereogram", "--net", "wulff"],
+        "schmidt": ["--picture", "stereogram", "--net", "schmidt"],
+        "alone": ["--net", "schmidt"],
+    }.items():
+        assert answer("draw", "90", "60", "45", *words, "--out", str(tmp_path / f"{name}.svg"))[0] == 0
+        pictures[name] = (tmp_path / f"{name}.svg").read_text()
+    assert len(pictures["plain"]) < len(pictures["wulff"])
+    assert pictures["wulff"] != pictures["schmidt"] == pictures["alone"]
 
 
 def test_the_seed_of_a_file_is_drawn(answer: Answer, tmp_path: Path) -> None:
@@ -93,6 +108,11 @@ def test_the_seed_of_a_file_is_drawn(answer: Answer, tmp_path: Path) -> None:
         (["90", "60", "40", "--out", "{}/a.png", "--place", "centre"], "Never closes"),
         (["--family", "E7", "--out", "{}/a.svg", "--picture", "space"], "nothing to draw"),
         (["90", "60", "45", "--out", "{}/a.glb", "--picture", "stereogram"], "no mesh"),
+        (
+            ["90", "60", "45", "--out", "{}/a.svg", "--picture", "chamber", "--net", "wulff"],
+            "--net is of a stereogram",
+        ),
+        (["90", "60", "45", "--out", "{}/a.svg", "--net", "square"], "invalid choice"),
         (["90", "60", "45"], "--out"),
     ],
 )
