@@ -7,7 +7,6 @@ import csv
 import io
 import json
 import os
-import shlex
 import signal
 import subprocess
 import sys
@@ -214,46 +213,6 @@ def test_an_interrupt_of_a_long_orbit_leaves_no_file(tmp_path: Path) -> None:
     assert running.returncode == 130
     assert b"Traceback" not in err
     assert list(tmp_path.iterdir()) == []
-
-
-SPECIMEN = """data_K-7
-_cell_length_a 5.10(1)
-_cell_length_b 7.20(1)
-_cell_length_c 9.30(2)
-_cell_angle_alpha 90
-_cell_angle_beta 90.05(3)
-_cell_angle_gamma 90
-loop_
-_symmetry_equiv_pos_as_xyz
-x,y,z
--x,y,-z
-"""
-LIST = "label,x,y,z\nA,1,2,3\nB,-1,2,3\nC,3,1,2\n"
-
-
-@pytest.mark.parametrize(
-    "verb",
-    [
-        verb.name for verb in VERBS if verb.name not in ("view", "build", "choose")
-    ],  # those have tests of their own
-)
-def test_the_examples_in_the_help_run(
-    answer: Answer, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, verb: str
-) -> None:
-    monkeypatch.chdir(tmp_path)
-    Path("specimen.cif").write_text(SPECIMEN, encoding="utf-8")
-    for name in ("points.csv", "poles.csv", "atoms.csv"):
-        Path(name).write_text(LIST, encoding="utf-8")
-    _, text, _ = answer(verb, "--help")
-    examples = [
-        line.split(None, 1)[1] for line in text.splitlines() if line.startswith(f"  mirrorlab {verb} ")
-    ]
-    assert len(examples) >= 3
-    for example in examples:
-        status, out, err = answer(*shlex.split(example))
-        assert status == 0, f"{example}: {err}"
-        if example.endswith("--json"):
-            json.loads(out)
 
 
 WORDS = st.sampled_from(

@@ -177,11 +177,3 @@ def test_counting_loads_no_window_library_and_no_compiler() -> None:
         subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True).stderr
         == "[]"
     )
-
-
-@pytest.mark.parametrize("verb", ["images", "tolerance", "view"])
-def test_help_has_examples(capsys: pytest.CaptureFixture[str], verb: str) -> None:
-    status, out, _ = run(capsys, verb, "--help")
-    assert status == 0
-    assert f"mirrorlab {verb} " in out
-    assert "examples:" in out

@@ -182,25 +182,6 @@ def test_choose_refuses_nonsense(capsys: pytest.CaptureFixture[str], words: list
     assert err.count("\n") == 1
 
 
-def test_help_has_examples_that_run(capsys: pytest.CaptureFixture[str], tmp_path: Path, qapp: object) -> None:
-    import shlex
-
-    for verb in ("build", "choose"):
-        status, out, _ = run(capsys, verb, "--help")
-        assert status == 0
-        text = out[out.index("examples:") :].replace("\\\n", " ")
-        examples = [
-            shlex.split(line.strip())[1:]
-            for line in text.splitlines()
-            if line.strip().startswith("mirrorlab")
-        ]
-        assert len(examples) >= 3
-        for words in examples:
-            local = [str(tmp_path / w) if w.endswith((".pdf", ".csv", ".dxf", ".svg")) else w for w in words]
-            status, _, err = run(capsys, *local)
-            assert status == 0, (words, err)
-
-
 def test_without_a_pdf_no_window_library_is_loaded(tmp_path: Path) -> None:
     code = (
         "import sys; from mirrorlab.command import main;"
