@@ -6,7 +6,7 @@ import argparse
 from typing import Any
 
 from mirrorlab.commands.finding_print import print_evidence, print_finding
-from mirrorlab.commands.output import add_mirrors, add_style, arrangement_of, print_json
+from mirrorlab.commands.output import add_mirrors, add_style, add_verb, arrangement_of, print_json
 
 EXAMPLES = """examples:
   mirrorlab check 90 60 45
@@ -19,13 +19,8 @@ EXAMPLES = """examples:
 
 def add_check(subparsers: Any) -> None:
     """Add the verb's parser."""
-    parser = subparsers.add_parser(
-        "check",
-        help="what a set of mirrors does",
-        description="Say whether the reflections close up, into which group, and whether a lattice can carry it.",
-        epilog=EXAMPLES,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    what = "Say whether the reflections close up, into which group, and whether a lattice can carry it."
+    parser = add_verb(subparsers, "check", what, EXAMPLES)
     add_mirrors(parser)
     add_style(parser)
     parser.add_argument("--evidence", action="store_true", help="the numbers behind the finding")

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import sys
 from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -15,7 +14,7 @@ from mirrorlab.commands.crystal_cells_print import (
     print_lattice,
     print_planes,
 )
-from mirrorlab.commands.output import UsageError, add_style, plain, print_json
+from mirrorlab.commands.output import UsageError, add_style, add_verb, plain, print_json, say_written
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.cell import Cell
@@ -56,7 +55,7 @@ x, y, z with a label in front and an uncertainty behind where wanted.
 def add_planes(subparsers: Any) -> None:
     """Add the parser of ``planes``."""
     what = "Say of lattice planes which are mirrors, how they lie to the nearest rows, and what they do together."
-    parser = _parser(subparsers, "planes", what, PLANES_EXAMPLES)
+    parser = add_verb(subparsers, "planes", what, PLANES_EXAMPLES)
     _add_cell(parser)
     parser.add_argument(
         "--hkl",
@@ -79,7 +78,7 @@ def add_planes(subparsers: Any) -> None:
 def add_cell(subparsers: Any) -> None:
     """Add the parser of ``cell``."""
     what = "Find all mirrors of a lattice, exact and nearly, and the symmetry they make."
-    parser = _parser(subparsers, "cell", what, CELL_EXAMPLES)
+    parser = add_verb(subparsers, "cell", what, CELL_EXAMPLES)
     parser.add_argument(
         "given",
         nargs="*",
@@ -97,7 +96,7 @@ def add_cell(subparsers: Any) -> None:
 def add_fit(subparsers: Any) -> None:
     """Add the parser of ``fit``."""
     what = "Rank closed arrangements against measured angles; each angle may be its supplement."
-    parser = _parser(subparsers, "fit", what, FIT_EXAMPLES)
+    parser = add_verb(subparsers, "fit", what, FIT_EXAMPLES)
     parser.add_argument(
         "angles", nargs="+", metavar="ANGLE", help="pair by pair: 12, 13, …, 23, …; as 59.8(3)"
     )
@@ -118,7 +117,7 @@ def add_fit(subparsers: Any) -> None:
 def add_compare(subparsers: Any) -> None:
     """Add the parser of ``compare``."""
     what = "Compare a list of points or face poles with a point group, operation by operation."
-    parser = _parser(subparsers, "compare", what, COMPARE_EXAMPLES)
+    parser = add_verb(subparsers, "compare", what, COMPARE_EXAMPLES)
     parser.add_argument("file", metavar="FILE.csv", help="the list")
     parser.add_argument(
         "--group", required=True, metavar="GROUP", help="Hermann–Mauguin or Schoenflies symbol"
@@ -143,13 +142,6 @@ def add_compare(subparsers: Any) -> None:
     )
     _add_output(parser, "write one row an operation as CSV")
     parser.set_defaults(run=run_compare)
-
-
-def _parser(subparsers: Any, name: str, description: str, examples: str) -> argparse.ArgumentParser:
-    parser: argparse.ArgumentParser = subparsers.add_parser(
-        name, description=description, epilog=examples, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
-    return parser
 
 
 def _add_cell(
@@ -229,7 +221,7 @@ def run_planes(args: argparse.Namespace) -> int:
         print_json({**answer, "file": None if file is None else file.to_dict()})
     else:
         print_planes(found)
-    _report(written, () if file is None else file.notes)
+    say_written(written, () if file is None else file.notes)
     return 0
 
 
@@ -253,7 +245,7 @@ def run_cell(args: argparse.Namespace) -> int:
         if file is not None:
             print_file(file)
         print_lattice(found)
-    _report(written, () if file is None else file.notes)
+    say_written(written, () if file is None else file.notes)
     return 0
 
 
@@ -274,7 +266,7 @@ def run_fit(args: argparse.Namespace) -> int:
         print_json(answer)
     else:
         print_fit(found, args.write_as)
-    _report(written, () if args.json else found.notes)
+    say_written(written, () if args.json else found.notes)
     return 0
 
 
@@ -311,15 +303,8 @@ def run_compare(args: argparse.Namespace) -> int:
         print_json(answer)
     else:
         print_comparison(found)
-    _report(written, (*(() if file is None else file.notes), *found.notes))
+    say_written(written, (*(() if file is None else file.notes), *found.notes))
     return 0
-
-
-def _report(written: Sequence[Path], notes: Sequence[str] = ()) -> None:
-    for note in notes:
-        print(f"note: {note}", file=sys.stderr)
-    for path in written:
-        print(f"wrote {path}", file=sys.stderr)
 
 
 ADD = {"planes": add_planes, "cell": add_cell, "fit": add_fit, "compare": add_compare}

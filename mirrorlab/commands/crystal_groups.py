@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import sys
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -18,10 +17,12 @@ from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
     add_style,
+    add_verb,
     arrangement_of,
     numbers,
     plain,
     print_json,
+    say_written,
 )
 from mirrorlab.commands.stereogram_words import add_net, stereogram_options
 
@@ -59,7 +60,7 @@ CANDIDATES_EXAMPLES = """examples:
 
 def add_group(subparsers: Any) -> None:
     """Add the parser of ``group``."""
-    parser = _parser(subparsers, "group", "Show a point group in its setting.", GROUP_EXAMPLES)
+    parser = add_verb(subparsers, "group", "Show a point group in its setting.", GROUP_EXAMPLES)
     parser.add_argument(
         "symbol", metavar="GROUP", help="Hermann–Mauguin or Schoenflies symbol: -43m, 31m, D5h"
     )
@@ -77,7 +78,7 @@ def add_group(subparsers: Any) -> None:
 
 def add_form(subparsers: Any) -> None:
     """Add the parser of ``form``."""
-    parser = _parser(subparsers, "form", "Name the form of a face, or put several together.", FORM_EXAMPLES)
+    parser = add_verb(subparsers, "form", "Name the form of a face, or put several together.", FORM_EXAMPLES)
     parser.add_argument("symbol", metavar="GROUP", help="Hermann–Mauguin or Schoenflies symbol")
     parser.add_argument(
         "faces", metavar="h,k,l[:distance]", nargs="+", help="a face of each form; distance 1 if not given"
@@ -96,7 +97,7 @@ def add_form(subparsers: Any) -> None:
 def add_candidates(subparsers: Any) -> None:
     """Add the parser of ``candidates``."""
     what = "List the point groups that have these mirrors, and what decides between them."
-    parser = _parser(subparsers, "candidates", what, CANDIDATES_EXAMPLES)
+    parser = add_verb(subparsers, "candidates", what, CANDIDATES_EXAMPLES)
     add_mirrors(parser)
     parser.add_argument(
         "--group", metavar="GROUP", help="take the mirrors of this group (1: no mirrors at all)"
@@ -104,13 +105,6 @@ def add_candidates(subparsers: Any) -> None:
     parser.add_argument("--csv", metavar="F", help="write the list as CSV, with its metadata file")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_candidates)
-
-
-def _parser(subparsers: Any, name: str, description: str, examples: str) -> argparse.ArgumentParser:
-    parser: argparse.ArgumentParser = subparsers.add_parser(
-        name, description=description, epilog=examples, formatter_class=argparse.RawDescriptionHelpFormatter
-    )
-    return parser
 
 
 def _add_picture(parser: argparse.ArgumentParser, what: str) -> None:
@@ -155,7 +149,7 @@ def run_group(args: argparse.Namespace) -> int:
         print_group(group, args.subgroups, args.forms, operations=orbit is None and not written)
         if orbit is not None:
             print_orbit(group, orbit, 0 if args.csv else SHOWN)
-    _report(written)
+    say_written(written)
     return 0
 
 
@@ -233,7 +227,7 @@ def run_form(args: argparse.Namespace) -> int:
         print_json(made.to_dict())
     else:
         print_combination(made, not args.csv, args.write_as)
-    _report(written)
+    say_written(written)
     return 0
 
 
@@ -267,7 +261,7 @@ def run_candidates(args: argparse.Namespace) -> int:
         print_json(found.to_dict())
     else:
         print_candidates(found)
-    _report(written)
+    say_written(written)
     return 0
 
 
@@ -283,11 +277,6 @@ def _save(drawing: Drawing, path: str) -> Path:
     from mirrorlab.files.picture import save_picture
 
     return save_picture(drawing, path)
-
-
-def _report(written: list[Path]) -> None:
-    for path in written:
-        print(f"wrote {path}", file=sys.stderr)
 
 
 ADD = {"group": add_group, "form": add_form, "candidates": add_candidates}

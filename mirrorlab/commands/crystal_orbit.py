@@ -3,9 +3,8 @@
 from __future__ import annotations
 
 import argparse
-import sys
 
-from mirrorlab.commands.output import UsageError, print_json, print_table
+from mirrorlab.commands.output import UsageError, print_json, print_table, say_written
 from mirrorlab.crystal.lattices import align, axes_from_constants
 from mirrorlab.mirrors import Finding, Orbit
 
@@ -24,8 +23,7 @@ def print_in_cell(args: argparse.Namespace, finding: Finding, orbit: Orbit) -> i
     if args.csv:
         from mirrorlab.files.crystal_tables import write_fractions
 
-        for path in write_fractions(args.csv, orbit, aligned, basis):
-            print(f"wrote {path}", file=sys.stderr)
+        say_written(write_fractions(args.csv, orbit, aligned, basis))
     if args.json:
         print_json(
             {

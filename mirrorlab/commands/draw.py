@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import re
 import sys
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -12,9 +11,12 @@ from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
     add_seed,
+    add_verb,
     arrangement_and_seed,
     print_json,
+    say_written,
     seed_of,
+    size_of,
 )
 from mirrorlab.commands.stereogram_words import add_net, stereogram_options
 from mirrorlab.drawing.model import Drawing
@@ -38,13 +40,8 @@ EXAMPLES = """examples:
 
 def add_draw(subparsers: Any) -> None:
     """Add the verb's parser."""
-    parser = subparsers.add_parser(
-        "draw",
-        help="a picture of the mirrors, or a mesh",
-        description="Write a picture (PNG, SVG, PDF) or a mesh (GLB, STL, OBJ), chosen by the ending of the file.",
-        epilog=EXAMPLES,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    what = "Write a picture (PNG, SVG, PDF) or a mesh (GLB, STL, OBJ), chosen by the ending of the file."
+    parser = add_verb(subparsers, "draw", what, EXAMPLES)
     add_mirrors(parser)
     parser.add_argument("--out", required=True, metavar="F", help="the file to write")
     parser.add_argument(
@@ -62,10 +59,7 @@ def add_draw(subparsers: Any) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Make the drawing and let the translator for the file's ending write it."""
-    match = re.fullmatch(r"(\d+)[x×](\d+)", args.size)
-    if match is None:
-        msg = f'"{args.size}": not a size; write 1200x800'
-        raise UsageError(msg)
+    size = size_of(args.size)
     drawing = drawing_of(args)
     if Path(args.out).suffix.lower() in MESHES:
         from mirrorlab.files.mesh import save_mesh
@@ -74,7 +68,7 @@ def run(args: argparse.Namespace) -> int:
     else:
         from mirrorlab.files.picture import save_picture
 
-        written = save_picture(drawing, args.out, (int(match[1]), int(match[2])), args.look)
+        written = save_picture(drawing, args.out, size, args.look)
     if args.json:
         print_json(
             {
@@ -86,7 +80,7 @@ def run(args: argparse.Namespace) -> int:
         )
     for note in drawing.notes:
         print(note, file=sys.stderr)
-    print(f"wrote {written}", file=sys.stderr)
+    say_written([written])
     return 0
 
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import argparse
 import math
-import re
 import sys
 from typing import TYPE_CHECKING, Any
 
@@ -13,19 +12,23 @@ from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
     add_style,
+    add_verb,
     arrangement_of,
     numbers,
     plain,
     print_json,
+    say_written,
+    size_of,
 )
 
 if TYPE_CHECKING:
+    from pathlib import Path
+
     import numpy as np
     from numpy.typing import NDArray
 
     from mirrorlab.mirrors import Arrangement
     from mirrorlab.optics.assembly import Assembly
-    from mirrorlab.optics.images import ImageCount
 
 IMAGES_EXAMPLES = """examples:
   mirrorlab images 60
@@ -57,20 +60,6 @@ USUAL: dict[str, dict[str, Any]] = {
 """Dimensions in mm of an assembly for which none were typed: something that is held in the hand."""
 
 
-def _parser(
-    subparsers: Any, name: str, help_: str, description: str, examples: str
-) -> argparse.ArgumentParser:
-    parser: argparse.ArgumentParser = subparsers.add_parser(
-        name,
-        help=help_,
-        description=description,
-        epilog=examples,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
-    add_mirrors(parser)
-    return parser
-
-
 def _add_place(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--actual", type=numbers, metavar="D,D", help="angles in degrees at which the mirrors really stand"
@@ -84,13 +73,9 @@ def _add_place(parser: argparse.ArgumentParser) -> None:
 
 def add_images(subparsers: Any) -> None:
     """Add the parser of ``images``."""
-    parser = _parser(
-        subparsers,
-        "images",
-        "how many images an assembly shows",
-        "How many images of a point light makes in finite mirrors, where, how bright; which are cut or overlap.",
-        IMAGES_EXAMPLES,
-    )
+    what = "How many images of a point light makes in finite mirrors, where, how bright; which are cut or overlap."
+    parser = add_verb(subparsers, "images", what, IMAGES_EXAMPLES)
+    add_mirrors(parser)
     add_dimensions(parser)
     _add_place(parser)
     parser.add_argument(
@@ -107,13 +92,9 @@ def add_images(subparsers: Any) -> None:
 
 def add_tolerance(subparsers: Any) -> None:
     """Add the parser of ``tolerance``."""
-    parser = _parser(
-        subparsers,
-        "tolerance",
-        "how far off an angle may be",
-        "The turn that angles leave over around each edge and the whole corner, and the seam it opens.",
-        TOLERANCE_EXAMPLES,
-    )
+    what = "The turn that angles leave over around each edge and the whole corner, and the seam it opens."
+    parser = add_verb(subparsers, "tolerance", what, TOLERANCE_EXAMPLES)
+    add_mirrors(parser)
     parser.add_argument(
         "--actual",
         type=numbers,
@@ -142,13 +123,9 @@ def add_tolerance(subparsers: Any) -> None:
 
 def add_view(subparsers: Any) -> None:
     """Add the parser of ``view``."""
-    parser = _parser(
-        subparsers,
-        "view",
-        "what the eye sees",
-        "Trace what the eye sees in the mirrors, and write it as a PNG picture.",
-        VIEW_EXAMPLES,
-    )
+    what = "Trace what the eye sees in the mirrors, and write it as a PNG picture."
+    parser = add_verb(subparsers, "view", what, VIEW_EXAMPLES)
+    add_mirrors(parser)
     parser.add_argument("--out", required=True, metavar="F.png", help="the file to write")
     parser.add_argument("--size", default="1280x720", metavar="WxH", help="pixels (1280x720)")
     parser.add_argument("--samples", type=int, default=2, metavar="N", help="N×N rays a pixel, 1 to 8 (2)")
@@ -216,42 +193,17 @@ def run_images(args: argparse.Namespace) -> int:
     arrangement = arrangement_of(args)
     assembly = assembly_of(args, arrangement)
     count = count_images(assembly, None if args.point is None else args.point, args.faintest)
+    written: tuple[Path, ...] = ()
     if args.csv is not None:
-        _write_images(args.csv, assembly, count)
+        from mirrorlab.files.images_table import write_images
+
+        written = write_images(args.csv, assembly, count)
     if args.json:
         print_json({**count.to_dict(), "assembly": assembly.to_dict()})
     else:
         print_images(count, args.list)
-    if args.csv is not None:
-        print(f"wrote {args.csv} and {args.csv}-metadata.json", file=sys.stderr)
+    say_written(written)
     return 0
-
-
-def _write_images(path: str, assembly: Assembly, count: ImageCount) -> None:
-    from mirrorlab.files.table import Column, write_table
-    from mirrorlab.optics.assembly import FRAME
-
-    columns = (
-        Column("image", "integer", "number of the image"),
-        Column("word", "string", "product of reflections; the eye's ray meets the first letter first"),
-        *(Column(name, "double", "coordinate of the image", "mm") for name in "xyz"),
-        Column("parity", "integer", "1 when the image is reversed"),
-        Column("bounces", "integer", "mirrors that the light meets"),
-        Column("brightness", "double", "part of the light that is left"),
-        Column("seen", "integer", "1 when the eye sees it"),
-    )
-    rows = (
-        [k, i.word, *i.position.tolist(), i.parity, i.bounces, i.brightness, int(i.seen)]
-        for k, i in enumerate(count.images, 1)
-    )
-    about = {
-        "title": f"Images in a {assembly.kind}: {count.sentence}",
-        "frame": FRAME,
-        "unit": "mm",
-        "point": count.point.tolist(),
-        "dimensions": dict(assembly.dimensions),
-    }
-    write_table(path, columns, rows, about)
 
 
 def run_tolerance(args: argparse.Namespace) -> int:
@@ -285,12 +237,8 @@ def run_view(args: argparse.Namespace) -> int:
     from mirrorlab.optics.scene import make_scene
     from mirrorlab.optics.tracer import trace
 
-    match = re.fullmatch(r"(\d+)[x×](\d+)", args.size)
-    if match is None:
-        msg = f'"{args.size}": not a size; write 1280x720'
-        raise UsageError(msg)
+    size = size_of(args.size)
     check_view_name(args.out)
-    size = int(match[1]), int(match[2])
     assembly = _with_object(args, assembly_of(args, arrangement_of(args)))
     scene = make_scene(assembly, _picture(args.object), joint=parse_length(args.joint, "joint"))
     pixels = trace(assembly, scene, size, args.samples, _progress if sys.stderr.isatty() else None)
@@ -299,7 +247,7 @@ def run_view(args: argparse.Namespace) -> int:
         print_json(
             {"file": args.out, "size": list(size), "samples": args.samples, "assembly": assembly.to_dict()}
         )
-    print(f"wrote {args.out}", file=sys.stderr)
+    say_written([args.out])
     for caution in cautions_for(Place.EYE, hazards_of(assembly)):
         print(f"{caution.title}: {caution.text}", file=sys.stderr)
     return 0

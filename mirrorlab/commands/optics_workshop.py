@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import sys
 from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -13,10 +12,12 @@ from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
     add_style,
+    add_verb,
     arrangement_of,
     computed,
     print_json,
     print_table,
+    say_written,
 )
 
 if TYPE_CHECKING:
@@ -44,13 +45,8 @@ SUFFIXES = {"layout": (".dxf", ".svg", ".pdf"), "report": (".pdf", ".txt")}
 
 def add_build(subparsers: Any) -> None:
     """Add the parser of ``build``."""
-    parser = subparsers.add_parser(
-        "build",
-        help="panels to cut",
-        description="The true shape of every pane, with bevels and joints: cut list, drawings at 1:1, layout.",
-        epilog=BUILD_EXAMPLES,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    what = "The true shape of every pane, with bevels and joints: cut list, drawings at 1:1, layout."
+    parser = add_verb(subparsers, "build", what, BUILD_EXAMPLES)
     add_mirrors(parser)
     add_dimensions(parser)
     joints = parser.add_argument_group("joints")
@@ -110,8 +106,7 @@ def run_build(args: argparse.Namespace) -> int:
         print_json({**job.to_dict(), "assembly": assembly.to_dict(), "files": written})
     else:
         _print_job(job)
-    for path in written:
-        print(f"wrote {path}", file=sys.stderr)
+    say_written(written)
     return 0
 
 
@@ -238,13 +233,8 @@ def _print_job(job: CutJob) -> None:
 
 def add_choose(subparsers: Any) -> None:
     """Add the parser of ``choose``."""
-    parser = subparsers.add_parser(
-        "choose",
-        help="assemblies that close, by number of images",
-        description="List every wedge, corner and tube whose images close up, made for one opening.",
-        epilog=CHOOSE_EXAMPLES,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    what = "List every wedge, corner and tube whose images close up, made for one opening."
+    parser = add_verb(subparsers, "choose", what, CHOOSE_EXAMPLES)
     parser.add_argument(
         "--opening", required=True, metavar="L", help="longest side of the opening, mm or with a unit"
     )

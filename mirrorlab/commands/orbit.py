@@ -11,10 +11,12 @@ from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
     add_seed,
+    add_verb,
     arrangement_and_seed,
     numbers,
     print_json,
     print_table,
+    say_written,
     seed_of,
 )
 from mirrorlab.mirrors import Finding, Orbit
@@ -35,13 +37,8 @@ EXAMPLES = """examples:
 
 def add_orbit(subparsers: Any) -> None:
     """Add the verb's parser."""
-    parser = subparsers.add_parser(
-        "orbit",
-        help="the images of a point",
-        description="List the images of a seed: coordinates, parity, depth and word.",
-        epilog=EXAMPLES,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    what = "List the images of a seed: coordinates, parity, depth and word."
+    parser = add_verb(subparsers, "orbit", what, EXAMPLES)
     add_mirrors(parser)
     add_seed(parser)
     parser.add_argument("--rotations", action="store_true", help="only images of the rotation subgroup")
@@ -92,8 +89,7 @@ def run(args: argparse.Namespace) -> int:
     else:
         print(f"{finding.sentence}\n")
         print_orbit(orbit, 0 if written else SHOWN)
-    for path in written:
-        print(f"wrote {path}", file=sys.stderr)
+    say_written(written)
     return 0
 
 

@@ -7,7 +7,7 @@ import json
 import math
 import re
 import sys
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from typing import Any
 
 from mirrorlab.angles import STYLES, Angle, AngleSettings, split_angles, write_angle
@@ -35,6 +35,14 @@ def numbers(text: str) -> list[float]:
     except ValueError:
         msg = f'"{plain(text)}": not a list of numbers; write 1,2,3'
         raise argparse.ArgumentTypeError(msg) from None
+
+
+def add_verb(subparsers: Any, name: str, description: str, examples: str) -> argparse.ArgumentParser:
+    """Add the parser of a verb; its examples stand below its options as they are written."""
+    parser: argparse.ArgumentParser = subparsers.add_parser(
+        name, description=description, epilog=examples, formatter_class=argparse.RawDescriptionHelpFormatter
+    )
+    return parser
 
 
 def add_mirrors(parser: argparse.ArgumentParser) -> None:
@@ -124,10 +132,27 @@ def arrangement_and_seed(args: argparse.Namespace) -> tuple[Arrangement, Mapping
     return Arrangement.from_angles(angles, settings), {}
 
 
+def size_of(text: str) -> tuple[int, int]:
+    """Width and height in pixels, from a text such as 1200x800."""
+    match = re.fullmatch(r"(\d+)[x×](\d+)", text)
+    if match is None:
+        msg = f'"{text}": not a size; write 1200x800'
+        raise UsageError(msg)
+    return int(match[1]), int(match[2])
+
+
 def seed_of(args: argparse.Namespace, kept: Mapping[str, Any]) -> dict[str, Any]:
     """Where the seed is: as the words say, else as the file keeps it, else empty."""
     given = {key: getattr(args, key) for key in SEED_WAYS if getattr(args, key) is not None}
     return given or {key: kept[key] for key in SEED_WAYS if kept.get(key) is not None}
+
+
+def say_written(written: Iterable[object], notes: Iterable[str] = ()) -> None:
+    """Say on standard error what is to be noted and which files were written."""
+    for note in notes:
+        print(f"note: {note}", file=sys.stderr)
+    for path in written:
+        print(f"wrote {path}", file=sys.stderr)
 
 
 def print_json(value: Mapping[str, Any]) -> None:

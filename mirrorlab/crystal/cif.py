@@ -20,6 +20,7 @@ from numpy.typing import NDArray
 
 from mirrorlab.crystal.cell import Cell, cell_from_texts
 from mirrorlab.crystal.cif_symmetry import SymmetryError, SymmetryItems, read_symmetry
+from mirrorlab.crystal.file_bytes import file_bytes
 from mirrorlab.crystal.lattice_axes import nearest_basis
 from mirrorlab.crystal.lattices import CellError
 from mirrorlab.crystal.operations import CrystalError, operation, write_triplet
@@ -150,16 +151,8 @@ def read_cif(path: str | os.PathLike[str], block: str | None = None) -> CrystalF
     CifError
         The file cannot be read, is no CIF, or lacks a usable cell or symmetry; the message names the line or the item.
     """
-    target = Path(path)
-    try:
-        if target.stat().st_size > LARGEST_FILE:
-            msg = f"{target.name}: larger than {LARGEST_FILE // 1_000_000} MB; give the file with cell and symmetry"
-            raise CifError(msg)
-        content = target.read_bytes()
-    except OSError as error:
-        msg = f"{target}: cannot be read ({error.strerror})"
-        raise CifError(msg) from error
-    return parse_cif(content, target.name, block)
+    content = file_bytes(path, LARGEST_FILE, "give the file with cell and symmetry", CifError)
+    return parse_cif(content, Path(path).name, block)
 
 
 def parse_cif(content: bytes | str, source: str = "CIF", block: str | None = None) -> CrystalFile:

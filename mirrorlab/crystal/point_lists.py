@@ -19,6 +19,7 @@ from pathlib import Path
 import numpy as np
 from numpy.typing import NDArray
 
+from mirrorlab.crystal.file_bytes import file_bytes
 from mirrorlab.crystal.measured import Measured, NumberError, parse_measured
 from mirrorlab.crystal.operations import CrystalError
 
@@ -122,20 +123,12 @@ class PointList:
 
 def read_points(path: str | os.PathLike[str]) -> PointList:
     """Read a list from a CSV file; see `parse_points`."""
-    target = Path(path)
-    try:
-        if target.stat().st_size > LARGEST_LIST:
-            msg = f"{target.name}: larger than {LARGEST_LIST // 1_000_000} MB; at most {MOST_POINTS} points"
-            raise PointListError(msg)
-        content = target.read_bytes()
-    except OSError as error:
-        msg = f"{target}: cannot be read ({error.strerror})"
-        raise PointListError(msg) from error
+    content = file_bytes(path, LARGEST_LIST, f"at most {MOST_POINTS} points", PointListError)
     try:
         text = content.decode("utf-8-sig")
     except UnicodeDecodeError:
         text = content.decode("latin-1")
-    return parse_points(text, target.name)
+    return parse_points(text, Path(path).name)
 
 
 def parse_points(text: str, source: str = "list") -> PointList:

@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-import os
 from collections.abc import Iterable
-from pathlib import Path
 from typing import TYPE_CHECKING
 
 from mirrorlab.angles import write_angle
+from mirrorlab.files.crystal_columns import OPERATION, SYMBOL, TRIPLET, PathLike, Paths
 from mirrorlab.files.table import Column, write_table
 
 if TYPE_CHECKING:
@@ -16,9 +15,6 @@ if TYPE_CHECKING:
     from mirrorlab.crystal.lattice_mirrors import LatticeSymmetry
     from mirrorlab.crystal.normal_rows import Row
     from mirrorlab.crystal.planes import Planes
-
-PathLike = str | os.PathLike[str]
-Paths = tuple[Path, Path]
 
 _PLANE = (
     Column("plane", "string", "indices of the plane"),
@@ -39,7 +35,7 @@ def _plane_row(label: str, indices: tuple[int, int, int], row: Row) -> list[obje
         row.obliquity,
         row.uncertainty,
         row.twin_index,
-        str(row.exact).lower(),
+        row.exact,
     ]
 
 
@@ -112,13 +108,13 @@ def write_fit(path: PathLike, fit: Fit) -> Paths:
             rank,
             one.symbol,
             one.finding.kind,
-            str(one.one_line).lower(),
+            one.one_line,
             *(write_angle(f) for f in one.angles),
             *one.pulls,
             one.chi_squared,
             one.probability,
             one.misfit,
-            str(one in fit.tied).lower(),
+            one in fit.tied,
         ]
         for rank, one in enumerate(fit.candidates, 1)
     )
@@ -134,9 +130,9 @@ def write_fit(path: PathLike, fit: Fit) -> Paths:
 def write_comparison(path: PathLike, found: Comparison) -> Paths:
     """Write one row an operation."""
     columns = (
-        Column("operation", "integer", "number in the list of the group"),
-        Column("symbol", "string", "with its axis or plane"),
-        Column("triplet", "string", "image of x,y,z"),
+        OPERATION,
+        SYMBOL,
+        TRIPLET,
         Column("survives", "boolean", "every point has a partner within what is allowed"),
         Column("rms", "double", "of the deviations", found.unit),
         Column("largest", "double", "deviation", found.unit),
@@ -148,7 +144,7 @@ def write_comparison(path: PathLike, found: Comparison) -> Paths:
             one.index + 1,
             one.text,
             one.triplet,
-            str(one.survives).lower(),
+            one.survives,
             one.rms,
             one.largest,
             one.worst,
@@ -162,8 +158,8 @@ def write_comparison(path: PathLike, found: Comparison) -> Paths:
 def write_matches(path: PathLike, found: Comparison) -> Paths:
     """Write one row for each point under each operation."""
     columns = (
-        Column("operation", "integer", "number in the list of the group"),
-        Column("symbol", "string", "with its axis or plane"),
+        OPERATION,
+        SYMBOL,
         Column("point", "string", "label"),
         Column("line", "integer", "of the point in its file"),
         Column("partner", "string", "point it is moved to; empty where there is none"),

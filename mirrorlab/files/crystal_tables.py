@@ -2,10 +2,6 @@
 
 from __future__ import annotations
 
-import os
-from collections.abc import Sequence
-from pathlib import Path
-
 import numpy as np
 from numpy.typing import NDArray
 
@@ -14,21 +10,26 @@ from mirrorlab.crystal.combinations import Combination
 from mirrorlab.crystal.lattices import Alignment
 from mirrorlab.crystal.pointgroups import NamedGroup
 from mirrorlab.crystal.positions import GroupOrbit
+from mirrorlab.files.crystal_columns import (
+    OPERATION,
+    SYMBOL,
+    TRIPLET,
+    PathLike,
+    Paths,
+    about_setting,
+    fraction_columns,
+)
+from mirrorlab.files.orbit_table import image_columns, orbit_rows
 from mirrorlab.files.table import Column, write_table
 from mirrorlab.mirrors import Orbit
-
-Paths = tuple[Path, Path]
-PathLike = str | os.PathLike[str]
 
 
 def write_operations(path: PathLike, group: NamedGroup) -> Paths:
     """Write the operations of a group: number, symbol with its place, triplet, matrix row by row."""
     columns = (
-        Column("operation", "integer", "number of the operation; 1 is the identity"),
-        Column(
-            "symbol", "string", "rotation or rotoinversion with its axis [uvw], mirror with its plane (hkl)"
-        ),
-        Column("triplet", "string", "image of x,y,z"),
+        OPERATION,
+        SYMBOL,
+        TRIPLET,
         *(Column(f"m{i}{j}", "double", "entry of the matrix") for i in (1, 2, 3) for j in (1, 2, 3)),
     )
     rows = (
@@ -47,13 +48,13 @@ def write_group_orbit(
     cartesian = orbit.points @ np.asarray(frame).T
     columns = (
         Column("point", "integer", "number of the point; 1 is the one given"),
-        *(Column(name, "double", f"coordinate in {group.axes}", "fraction of the axis") for name in "xyz"),
+        *fraction_columns(group),
         *(
             Column(f"{name}_cartesian", "double", "a along x, b in the xy plane", "unit of the cell")
             for name in "xyz"
         ),
         Column("operation", "string", "operation that leads there"),
-        Column("triplet", "string", "image of x,y,z"),
+        TRIPLET,
     )
     rows = (
         [number, *point, *flat, group.operations[index].text, group.operations[index].triplet]
@@ -62,10 +63,7 @@ def write_group_orbit(
         )
     )
     about = {
-        "title": f"Points equivalent under {group.setting}",
-        "group": group.setting,
-        "axes": group.axes,
-        "cell axes as columns": np.asarray(frame).tolist(),
+        **about_setting(f"Points equivalent under {group.setting}", group, basis),
         "site symmetry": orbit.site_symmetry,
         "multiplicity": len(orbit.points),
     }
@@ -98,10 +96,9 @@ def write_faces(path: PathLike, combination: Combination) -> Paths:
         for k, form in enumerate(combination.owners.tolist())
     )
     about = {
-        "title": f"Faces of forms of {combination.group.setting}",
-        "group": combination.group.setting,
-        "axes": combination.group.axes,
-        "cell axes as columns": combination.basis.tolist(),
+        **about_setting(
+            f"Faces of forms of {combination.group.setting}", combination.group, combination.basis
+        ),
         "closed": combination.closed,
     }
     return write_table(path, columns, rows, about)
@@ -139,30 +136,10 @@ def write_fractions(
     path: PathLike, orbit: Orbit, alignment: Alignment, basis: NDArray[np.float64] | None = None
 ) -> Paths:
     """Write the images of a seed as fractions of a cell, in the standard setting of their group."""
-    fractions = alignment.fractions(orbit.points, basis)
-    columns = (
-        Column("image", "integer", "number of the image; 1 is the seed"),
-        *(
-            Column(name, "double", f"coordinate in {alignment.group.axes}", "fraction of the axis")
-            for name in "xyz"
-        ),
-        Column("parity", "integer", "0 for an even number of reflections, 1 for an odd one"),
-        Column("depth", "integer", "fewest reflections that lead from the seed to the image"),
-        Column("word", "string", "product of reflections, the last letter first"),
-    )
-    rows: Sequence[list[object]] = [
-        [k, *point, parity, depth, word]
-        for k, (point, parity, depth, word) in enumerate(
-            zip(fractions.tolist(), orbit.parity.tolist(), orbit.depth.tolist(), orbit.words(), strict=True),
-            1,
-        )
-    ]
-    frame = alignment.group.basis if basis is None else np.asarray(basis)
+    group = alignment.group
     about = {
-        "title": f"Images of a seed in the standard setting of {alignment.group.setting}",
-        "group": alignment.group.setting,
-        "axes": alignment.group.axes,
-        "cell axes as columns": frame.tolist(),
+        **about_setting(f"Images of a seed in the standard setting of {group.setting}", group, basis),
         "rotation from the frame of the arrangement": alignment.rotation.tolist(),
     }
-    return write_table(path, columns, rows, about)
+    rows = orbit_rows(orbit, alignment.fractions(orbit.points, basis))
+    return write_table(path, image_columns(fraction_columns(group)), rows, about)

@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import os
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from pathlib import Path
 
 import numpy as np
+from numpy.typing import NDArray
 
 from mirrorlab.files.table import Column, write_table
 from mirrorlab.files.whole import make_whole
@@ -23,26 +24,36 @@ def coordinate_names(dimension: int) -> tuple[str, ...]:
 
 
 def orbit_columns(orbit: Orbit) -> tuple[Column, ...]:
-    """The columns: image, coordinates, parity, depth, word."""
+    """The columns of images in the frame of the arrangement."""
+    names = coordinate_names(orbit.points.shape[1])
+    return image_columns([Column(name, "double", "coordinate of the image") for name in names])
+
+
+def image_columns(coordinates: Sequence[Column]) -> tuple[Column, ...]:
+    """The columns of images whose coordinates have these columns: image, coordinates, parity, depth, word."""
     return (
         Column("image", "integer", "number of the image; 1 is the seed"),
-        *(
-            Column(name, "double", "coordinate of the image")
-            for name in coordinate_names(orbit.points.shape[1])
-        ),
+        *coordinates,
         Column("parity", "integer", "0 for an even number of reflections, 1 for an odd one"),
         Column("depth", "integer", "fewest reflections that lead from the seed to the image"),
         Column("word", "string", "product of reflections, the last letter first; empty for the seed"),
     )
 
 
-def orbit_rows(orbit: Orbit) -> Iterator[list[object]]:
-    """The rows, one an image; a stretch of them at a time, so that a long orbit is not held twice."""
+def orbit_rows(orbit: Orbit, points: NDArray[np.float64] | None = None) -> Iterator[list[object]]:
+    """The rows, one an image; a stretch of them at a time, so that a long orbit is not held twice.
+
+    Parameters
+    ----------
+    points : ndarray, shape (N, d), optional
+        Coordinates in another frame than the arrangement's.
+    """
     words = orbit.words()
+    points = orbit.points if points is None else points
     for start in range(0, len(orbit), STRETCH):
         part = slice(start, start + STRETCH)
         columns = (
-            orbit.points[part].tolist(),
+            points[part].tolist(),
             orbit.parity[part].tolist(),
             orbit.depth[part].tolist(),
             words[part],
