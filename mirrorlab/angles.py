@@ -61,11 +61,10 @@ class AngleSettings:
 
 @dataclass(frozen=True, slots=True)
 class Nearby:
-    """A fraction of π near an angle: how far it is from the value, in degrees and in standard uncertainties."""
+    """A fraction of π near an angle, and how far it is from the value, in degrees."""
 
     fraction: Fraction
     deviation_degrees: float
-    deviation_sigmas: float | None
 
 
 @dataclass(frozen=True, slots=True)
@@ -112,12 +111,7 @@ class Angle:
         for limit in (6, 12, 36, 120, most):
             near = value.limit_denominator(min(limit, most))
             found[near if near < 1 else 1 - Fraction(1, min(limit, most))] = None
-        result = []
-        for near in list(found)[:count]:
-            off = float(near * 180) - self.degrees
-            sigmas = off / self.uncertainty if self.source == "measured" and self.uncertainty else None
-            result.append(Nearby(near, off, sigmas))
-        return tuple(result)
+        return tuple(Nearby(near, float(near * 180) - self.degrees) for near in list(found)[:count])
 
     @classmethod
     def from_radians(cls, value: float, tolerance: float, settings: AngleSettings = AngleSettings()) -> Angle:

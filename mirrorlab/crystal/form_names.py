@@ -89,13 +89,6 @@ _GREEK = {
     9: "enneagonal", 10: "decagonal", 11: "hendecagonal", 12: "dodecagonal",
 }  # fmt: skip
 
-CRYSTALLOGRAPHIC_NAMES = frozenset(
-    {names[0] for (_, symmetry, _), names in _UNIQUE.items() if "5" not in symmetry}
-    | {names[0] for (_, symmetry, _, _), names in _SHAPED.items() if "5" not in symmetry}
-    | {"pedion", "pinacoid", "dihedron"}
-)
-"""The 47 names; dome and sphenoid are the two kinds of dihedron."""
-
 
 def needs_shape(faces: int, eigensymmetry: GroupName) -> bool:
     """Whether the number of faces and the eigensymmetry leave several forms."""

@@ -12,7 +12,7 @@ from PySide6.QtCore import QBuffer, QByteArray, QIODevice, QMarginsF, QRectF, QS
 from PySide6.QtGui import QGuiApplication, QImage, QPageSize, QPainter, QPdfWriter
 
 from mirrorlab.drawing.camera import Camera, home_camera
-from mirrorlab.drawing.look import LIGHT_LOOK, Look, named_look
+from mirrorlab.drawing.look import LIGHT_LOOK, named_look
 from mirrorlab.drawing.model import Drawing
 from mirrorlab.drawing.prepared import Prepared
 from mirrorlab.files.picture_marks import tint
@@ -100,17 +100,6 @@ def ensure_application() -> None:
         return
     screenless = ["-platform", "offscreen"] if sys.platform.startswith("linux") else []
     ensure_application.kept = QGuiApplication(["mirrorlab", *screenless])  # type: ignore[attr-defined]
-
-
-def paint_image(
-    drawing: Drawing, width: int, height: int, look: Look, camera: Camera | None = None
-) -> QImage:
-    """Paint a drawing into an image with the look's pixels."""
-    image = QImage(width, height, QImage.Format.Format_ARGB32_Premultiplied)
-    image.fill(tint(look.ground))
-    with painting(image) as painter:
-        paint_drawing(painter, Prepared(drawing), Sight(camera or home_camera(drawing), width, height, look))
-    return image
 
 
 def _paint(painter: QPainter, prepared: Prepared, sight: Sight, ground: bool) -> None:

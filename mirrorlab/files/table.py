@@ -9,7 +9,6 @@ References
 from __future__ import annotations
 
 import csv
-import io
 import json
 import math
 import os
@@ -71,13 +70,6 @@ def write_table(
     beside = target.with_name(target.name + "-metadata.json")
     table_path, metadata_path = make_together([(target, write), (beside, describe)])
     return table_path, metadata_path
-
-
-def table_text(columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> str:
-    """The table as RFC 4180 text, with CRLF line ends."""
-    buffer = io.StringIO(newline="")
-    _write_rows(buffer, columns, rows)
-    return buffer.getvalue()
 
 
 def _write_rows(stream: TextIO, columns: Sequence[Column], rows: Iterable[Sequence[object]]) -> None:

@@ -117,14 +117,6 @@ class Family:
         return self.letter != "H" and (self.letter != "I" or self.m in (2, 3, 4, 6))
 
     @property
-    def diagram_symmetries(self) -> int:
-        """Number of automorphisms of the Coxeter–Dynkin graph with its labels."""
-        if self.letter == "D" and self.rank == 4:
-            return 6
-        doubled = (self.letter == "A" and self.rank > 1) or self.letter in "DFI" or self.name == "E6"
-        return 2 if doubled else 1
-
-    @property
     def edges(self) -> tuple[tuple[int, int, int], ...]:
         """Edges (i, j, m) of the Coxeter–Dynkin graph, nodes from 0 in Bourbaki's order, H5-end first."""
         n = self.rank

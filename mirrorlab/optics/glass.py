@@ -24,16 +24,14 @@ GLASS_DENSITY = 2500.0
 
 
 class Order(StrEnum):
-    """Which pane runs past which in butted joints."""
+    """Which pane runs past which in butted joints.
+
+    ``ROUND``: each runs past the next and stands on the one before, so that equal panels stay equal. ``FIRST``: an
+    earlier letter runs past every later one.
+    """
 
     ROUND = "round"
     FIRST = "first"
-
-
-ORDER_WORDS = {
-    Order.ROUND: "each pane runs past the next and stands on the one before, so that equal panels stay equal",
-    Order.FIRST: "an earlier letter runs past every later one",
-}
 
 
 @dataclass(frozen=True, slots=True)
@@ -44,7 +42,7 @@ class JointSettings:
     ----------
     kind : JointKind
     order : Order
-        See `ORDER_WORDS`; only butted joints ask for it.
+        See `Order`; only butted joints ask for it.
     gap : float
         mm of clearance at every joint for tape or sealant.
     """
@@ -103,11 +101,6 @@ class GlassPanel:
     def clear_height(self) -> float:
         """Height of the clear face above the coated one, along the mirror side's normal, mm."""
         return self.thickness if self.surface is Surface.SECOND else -self.thickness
-
-    @property
-    def has_bevels(self) -> bool:
-        """Whether any side needs grinding to an angle."""
-        return any(side.longer_face for side in self.sides)
 
     @property
     def weight(self) -> float:

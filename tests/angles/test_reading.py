@@ -76,13 +76,6 @@ def test_sixty_is_not_guessed_from_59_9() -> None:
     assert nearest[Fraction(1, 3)].deviation_degrees == pytest.approx(0.1)
 
 
-def test_deviation_in_sigmas_where_there_are_any() -> None:
-    near = parse_angle("58.0(2)", AngleSettings(max_denominator=6)).nearest(1)[0]
-    assert near.fraction == Fraction(1, 3)
-    assert near.deviation_sigmas == pytest.approx(10)
-    assert parse_angle("58.03", AngleSettings(max_denominator=6)).nearest(1)[0].deviation_sigmas is None
-
-
 def test_an_exact_angle_beyond_the_largest_denominator_has_no_closing_fraction() -> None:
     assert parse_angle("pi/1000").fraction is None
     assert parse_angle("pi/1000", AngleSettings(max_denominator=1000)).fraction == Fraction(1, 1000)

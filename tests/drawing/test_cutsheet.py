@@ -133,7 +133,7 @@ def test_letters_marks_ruler_and_cautions_are_there(job):
 
 def test_bevels_are_marked_where_there_are_any(job):
     layers = {stroke.layer for stroke in cut_sheet(job).strokes}
-    assert (Layer.BEVEL in layers) == any(pane.has_bevels for pane in job.panes)
+    assert (Layer.BEVEL in layers) == any(side.longer_face for pane in job.panes for side in pane.sides)
 
 
 def test_kerf_path_lies_half_a_kerf_outside():

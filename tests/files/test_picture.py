@@ -24,7 +24,6 @@ from mirrorlab.drawing.space import space_drawing
 from mirrorlab.files.picture import (
     SMALLEST_SCALE,
     PictureError,
-    paint_image,
     save_picture,
 )
 from mirrorlab.files.whole import FileError
@@ -177,15 +176,15 @@ def test_an_error_while_painting_is_only_an_error(
     assert not list(tmp_path.iterdir())
 
 
-def test_every_kind_of_drawing_is_painted():
+def test_every_kind_of_drawing_is_painted(tmp_path: Path):
     """No kind of part raises, and each leaves ink."""
     for what in (["60"], ["60", "60", "60"], ["90", "60", "50"], ["90", "60", "72"]):
         arrangement = ml.Arrangement.from_angles(what)
         finding = arrangement.finding()
         orbit = arrangement.orbit(place="centre") if finding.group else None
-        image = paint_image(space_drawing(arrangement, finding, orbit), 200, 200, LIGHT_LOOK)
-        assert len(np.unique(pixels(image).reshape(-1, 4), axis=0)) > 20
-    empty = pixels(paint_image(Drawing("nothing"), 50, 50, LIGHT_LOOK))
+        file = save_picture(space_drawing(arrangement, finding, orbit), tmp_path / "p.png", (200, 200))
+        assert len(np.unique(pixels(QImage(str(file))).reshape(-1, 4), axis=0)) > 20
+    empty = pixels(QImage(str(save_picture(Drawing("nothing"), tmp_path / "n.png", (50, 50)))))
     assert len(np.unique(empty.reshape(-1, 4), axis=0)) == 1
 
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import csv
-import io
 import json
 import os
 import re
@@ -16,7 +15,7 @@ from hypothesis import strategies as st
 
 from mirrorlab import Arrangement
 from mirrorlab.files.orbit_table import STRETCH, orbit_rows, write_orbit, write_points
-from mirrorlab.files.table import Column, table_text, write_table
+from mirrorlab.files.table import Column, write_table
 from mirrorlab.files.whole import FileError, make_whole, write_whole
 
 LANTERN = Arrangement.from_angles(["90", "60", "36"])
@@ -112,9 +111,11 @@ def test_column_names_fit_a_uri_template(tmp_path: Path) -> None:
 @given(
     st.lists(st.tuples(st.floats(allow_nan=False), st.text(st.characters(exclude_categories=["Cs", "Cc"]))))
 )
-def test_any_row_reads_back(rows: list[tuple[float, str]]) -> None:
-    text = table_text([Column("x", "double"), Column("word")], rows)
-    read = list(csv.reader(io.StringIO(text, newline="")))
+def test_any_row_reads_back(tmp_path_factory: pytest.TempPathFactory, rows: list[tuple[float, str]]) -> None:
+    target = tmp_path_factory.getbasetemp() / "rows.csv"
+    write_table(target, [Column("x", "double"), Column("word")], rows, {})
+    with target.open(encoding="utf-8", newline="") as stream:
+        read = list(csv.reader(stream))
     assert [(float(x), word) for x, word in read[1:]] == rows
 
 

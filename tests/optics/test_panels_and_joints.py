@@ -269,7 +269,7 @@ def test_zero_thickness_leaves_the_ideal_shape():
     for kind in JointKind:
         for pane in make_panes(flat, 0.0, [Surface.FIRST] * 3, JointSettings(kind)):
             assert np.allclose(pane.blank, pane.flat.outline)
-            assert not pane.has_bevels
+            assert not any(side.longer_face for side in pane.sides)
 
 
 def test_too_thick_glass_is_named():
