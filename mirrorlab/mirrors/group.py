@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 
 from mirrorlab.mirrors.chamber import SAME_MIRROR, generic_point, same_mirrors, simple_of
 from mirrorlab.mirrors.families import Family, recognise
-from mirrorlab.mirrors.walk import walk
+from mirrorlab.mirrors.walk import Walk, walk
 
 OUTSIDE = 1e-12
 """A point this part of its size behind a wall is reflected; nearer is rounding, and would be reflected for ever."""
@@ -175,10 +175,14 @@ class ReflectionGroup:
         return self._elements
 
     @cached_property
+    def whole_walk(self) -> Walk:
+        """The walk over all chambers, from the middle of the first."""
+        inside = self.corners.sum(axis=0) if self.rank else np.zeros(self.dimension)
+        return walk(self.simple, inside, self.order)
+
+    @cached_property
     def _elements(self) -> tuple[Array, NDArray[np.int64]]:
-        d = self.dimension
-        inside = self.corners.sum(axis=0) if self.rank else np.zeros(d)
-        steps = walk(self.simple, inside, self.order)
+        d, steps = self.dimension, self.whole_walk
         matrices = np.empty((self.order, d, d))
         matrices[0] = np.eye(d)
         reflections = np.eye(d) - 2 * np.einsum("ri,rj->rij", self.simple, self.simple)

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from mirrorlab.mirrors.group import ReflectionGroup, TooLarge, components_of
+from mirrorlab.mirrors.group import MOST_ELEMENTS, ReflectionGroup, TooLarge, components_of
 from mirrorlab.mirrors.symbols import PointGroup, point_group, rotation_group
 from mirrorlab.mirrors.walk import Array, Ints, Progress, Walk, walk
 
@@ -179,7 +179,10 @@ def make_orbit(
     if size > limit:
         what = "images"
         raise TooLarge(what, size, size * (group.dimension * 8 + 32), limit)
-    steps = walk(group.simple, place, size, progress)
+    if walls or progress is not None or size > MOST_ELEMENTS:
+        steps = walk(group.simple, place, size, progress)
+    else:  # the elements take the same walk, so whoever draws the chambers as well has it already
+        steps = group.whole_walk.led_from(group.simple, place)
     kept = None
     if rotations and not on_mirror:
         kept = np.flatnonzero(steps.depth % 2 == 0)

@@ -11,10 +11,13 @@ References
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
+
+AT_ONCE = 4096
+"""Up to so many images of one depth are led on from all walls in one step; more, wall by wall, to save memory."""
 
 ON_WALL = 1e-9
 """Heights below this part of the largest are 0: seeds are snapped to walls at 1e-6, and rounding is about 1e-15."""
@@ -40,6 +43,20 @@ class Walk:
     mirror: Ints
     depth: Ints
     levels: tuple[tuple[int, int], ...]
+
+    def led_from(self, simple: Array, dominant: Array) -> Walk:
+        """The same walk from another point off all walls: which mirror leads where is the same for all of them."""
+        points = np.empty_like(self.points)
+        points[0] = dominant
+        for start, stop in self.levels[1:]:
+            _reflect(points, simple, self.parent, self.mirror, start, stop)
+        return replace(self, points=points)
+
+
+def _reflect(points: Array, simple: Array, parent: Ints, mirror: Ints, start: int, stop: int) -> None:
+    """Fill in the images of one depth."""
+    old, normals = points[parent[start:stop]], simple[mirror[start:stop]]
+    points[start:stop] = old - 2 * np.einsum("ij,ij->i", old, normals)[:, None] * normals
 
 
 def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = None) -> Walk:
@@ -71,26 +88,20 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
     half = 0.5 * float(heights[heights > 0].min(initial=np.inf))
     while True:
         start, stop = levels[-1]
-        new_heights, new_parent, new_mirror = [], [], []
-        for i in range(rank):
-            ahead = np.flatnonzero(frontier[:, i] > half)
-            image = frontier[ahead] - frontier[ahead, i, None] * two_gram[i]
-            kept = (image[:, i + 1 :] > -half).all(axis=1)
-            new_heights.append(image[kept])
-            new_parent.append(ahead[kept] + start)
-            new_mirror.append(np.full(int(kept.sum()), i, dtype=np.int64))
-        frontier = np.concatenate(new_heights) if new_heights else np.empty((0, rank))
+        few = len(frontier) <= AT_ONCE
+        found = [_through_all(frontier, two_gram, half)] if few else []
+        found += [_through(i, frontier, two_gram, half) for i in range(0 if few else rank)]
+        frontier, ahead, mirrors = (np.concatenate(parts) for parts in zip(*found, strict=True))
         if not len(frontier):
             break
         end = stop + len(frontier)
         if end > size:
             msg = f"the walk met more than the {size} images that the order allows"
             raise AssertionError(msg)
-        parent[stop:end] = np.concatenate(new_parent)
-        mirror[stop:end] = np.concatenate(new_mirror)
+        parent[stop:end] = ahead + start
+        mirror[stop:end] = mirrors
         depth[stop:end] = len(levels)
-        old, normals = points[parent[stop:end]], simple[mirror[stop:end]]
-        points[stop:end] = old - 2 * (old * normals).sum(axis=1, keepdims=True) * normals
+        _reflect(points, simple, parent, mirror, stop, end)
         levels.append((stop, end))
         if progress is not None and progress(end, size) is False:
             raise OrbitCancelled
@@ -98,3 +109,20 @@ def walk(simple: Array, dominant: Array, size: int, progress: Progress | None = 
         msg = f"the walk met {levels[-1][1]} images, not the {size} that the order gives"
         raise AssertionError(msg)
     return Walk(points, parent, mirror, depth, tuple(levels))
+
+
+def _through(i: int, frontier: Array, two_gram: Array, half: float) -> tuple[Array, Ints, Ints]:
+    """Images that wall i leads to: their heights, the row of `frontier` each comes from, and the wall."""
+    ahead = np.flatnonzero(frontier[:, i] > half)
+    image = frontier[ahead] - frontier[ahead, i, None] * two_gram[i]
+    kept = (image[:, i + 1 :] > -half).all(axis=1)
+    return image[kept], ahead[kept], np.full(int(kept.sum()), i, dtype=np.int64)
+
+
+def _through_all(frontier: Array, two_gram: Array, half: float) -> tuple[Array, Ints, Ints]:
+    """The same for all walls, in a few steps whatever the rank."""
+    walls = np.arange(len(two_gram))
+    mirrors, ahead = np.nonzero(half < frontier.T)
+    image = frontier[ahead] - frontier[ahead, mirrors, None] * two_gram[mirrors]
+    kept = ((image > -half) | (walls <= mirrors[:, None])).all(axis=1)
+    return image[kept], ahead[kept], mirrors[kept]

@@ -270,3 +270,15 @@ def test_given_normals_keep_their_frame():
     }
     assert keys_of(orbit.points) == signed
     assert "given normals" in orbit.frame
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_the_walk_kept_for_the_elements_leads_to_the_same_images(name):
+    """With a progress callback the orbit takes a walk of its own, without one that of the elements."""
+    arrangement = Arrangement.from_family(name)
+    heights = [0.3 + 0.17 * k for k in range(arrangement.size)]
+    kept = arrangement.orbit(heights=heights)
+    own = arrangement.orbit(heights=heights, progress=lambda *_: None)
+    np.testing.assert_allclose(kept.points, own.points, atol=1e-12)
+    assert kept.words() == own.words()
+    assert kept.depth.tolist() == own.depth.tolist()
