@@ -16,8 +16,8 @@ from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.theming import theming
 
 HEIGHT = 196
-SOON = 80
-"""Milliseconds after which the small map follows: what one types into comes first."""
+SOON = 40
+"""Milliseconds after which the small map follows: the picture on the stage comes first."""
 
 ROOM = 0.84
 """Zoom of the small map: leaves room for the letters and angles around the chamber."""

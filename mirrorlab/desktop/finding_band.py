@@ -11,8 +11,9 @@ from mirrorlab.desktop import symbols
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.evidence import EvidenceSheet
 from mirrorlab.desktop.marks import FindingMark
-from mirrorlab.desktop.parts import button, label, rule
-from mirrorlab.desktop.symbols import Run, SymbolText
+from mirrorlab.desktop.parts import Elided, button, label, rule
+from mirrorlab.desktop.steady import Steady
+from mirrorlab.desktop.symbol_strip import Named, SymbolStrip
 from mirrorlab.desktop.theming import arrow, theming
 from mirrorlab.mirrors import Finding
 
@@ -33,30 +34,11 @@ SYMBOL_SIZE = 25
 """Points of the group's symbols: to be read across a table."""
 
 
+MOST_FLAGS = "Evidence, 9 flags"
+"""The button is as wide as this whatever it says."""
+
 HEAD_HEIGHT = 84
 """Pixels; the same with and without symbols, so that nothing below jumps while one types."""
-
-
-class _Named(QWidget):
-    """A symbol with what it is beneath it."""
-
-    def __init__(self, caption: str, size: float) -> None:
-        super().__init__()
-        self.symbol = SymbolText(size)
-        self.caption = label(caption, "small")
-        column = QVBoxLayout(self)
-        column.setContentsMargins(0, 0, 0, 0)
-        column.setSpacing(0)
-        column.addStretch(1)
-        column.addWidget(self.symbol, 0, Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignBottom)
-        column.addWidget(self.caption, 0, Qt.AlignmentFlag.AlignHCenter)
-
-    def show_runs(self, runs: tuple[Run, ...], caption: str = "") -> None:
-        """Show a symbol; none hides it with its caption."""
-        self.symbol.set_runs(runs)
-        if caption:
-            self.caption.setText(caption)
-        self.setVisible(bool(runs))
 
 
 class FindingBand(QFrame):
@@ -76,15 +58,14 @@ class FindingBand(QFrame):
         self.setProperty("kind", "panel")
         self.document = document
         self.mark = FindingMark(46)
-        self.headline = label("", "large")
-        self.sentence = label("", "", wrap=True)
-        self.sentence.setTextFormat(Qt.TextFormat.RichText)
-        self.sentence.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
-        self.sentence.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self.group = _Named("Hermann–Mauguin", SYMBOL_SIZE)
-        self.schoenflies = _Named("Schoenflies", SYMBOL_SIZE)
-        self.family = _Named("family", SYMBOL_SIZE)
-        self.toggle = button("Evidence", "quiet", "Numbers to check by hand, flags and suggestions")
+        self.headline = Elided("", "large")
+        words = label("", "", wrap=True)
+        words.setTextFormat(Qt.TextFormat.RichText)
+        words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        words.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.sentence = Steady(words)
+        self.symbols = SymbolStrip(SYMBOL_SIZE)
+        self.toggle = button(MOST_FLAGS, "quiet", "Numbers to check by hand, flags and suggestions")
         self.toggle.setCheckable(True)
         self.toggle.setLayoutDirection(Qt.LayoutDirection.RightToLeft)
         self.toggle.toggled.connect(self._unfold)
@@ -109,10 +90,10 @@ class FindingBand(QFrame):
         row.setSpacing(14)
         row.addWidget(self.mark)
         row.addLayout(words, 1)
-        for named in (self.group, self.schoenflies, self.family):
-            row.addWidget(named, 0, Qt.AlignmentFlag.AlignBottom)
-            row.addSpacing(8)
+        row.addWidget(self.symbols, 0, Qt.AlignmentFlag.AlignBottom)
         row.addWidget(self.toggle)
+        self.toggle.ensurePolished()
+        self.toggle.setFixedSize(self.toggle.sizeHint())
         head = QWidget()
         head.setLayout(row)
         head.setMinimumHeight(HEAD_HEIGHT)
@@ -129,23 +110,9 @@ class FindingBand(QFrame):
         self.mark.set_kind(finding.kind)
         self.headline.setText(HEADLINES[finding.kind])
         self.sentence.setText(sentence_html(finding))
-        self._show_symbols(finding)
+        self.symbols.show_symbols(symbols_of(finding))
         count = len(finding.flags)
         self.toggle.setText("Evidence" if not count else f"Evidence, {count} flag{'s' if count > 1 else ''}")
-
-    def _show_symbols(self, finding: Finding) -> None:
-        group = finding.point_group
-        tube = finding.tube
-        if group is not None:
-            self.group.show_runs(symbols.hermann_mauguin(group.hermann_mauguin), "Hermann–Mauguin")
-            self.schoenflies.show_runs(symbols.schoenflies(group.schoenflies))
-        else:
-            plane = tube.plane_group if tube is not None else None
-            self.group.show_runs(symbols.hermann_mauguin(plane or ""), "plane group")
-            self.schoenflies.show_runs(())
-        self.family.show_runs(
-            symbols.families(finding.families), "family" if len(finding.families) < 2 else "families"
-        )
 
     def _unfold(self, shown: bool) -> None:
         self.sheet.setVisible(shown)
@@ -154,6 +121,21 @@ class FindingBand(QFrame):
 
     def _point_arrow(self) -> None:
         self.toggle.setIcon(arrow("up" if self.toggle.isChecked() else "down"))
+
+
+def symbols_of(finding: Finding) -> tuple[Named, ...]:
+    """The symbols of a finding's group, and of its families."""
+    group, tube = finding.point_group, finding.tube
+    if group is not None:
+        names = [
+            Named(symbols.hermann_mauguin(group.hermann_mauguin), "Hermann–Mauguin"),
+            Named(symbols.schoenflies(group.schoenflies), "Schoenflies"),
+        ]
+    else:
+        plane = (tube.plane_group if tube is not None else None) or ""
+        names = [Named(symbols.hermann_mauguin(plane), "plane group")]
+    caption = "family" if len(finding.families) < 2 else "families"
+    return (*names, Named(symbols.families(finding.families), caption))
 
 
 def sentence_html(finding: Finding) -> str:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from PySide6.QtCore import QEvent, Qt, Signal
+from PySide6.QtCore import QEvent, QSize, Qt, Signal
 from PySide6.QtGui import QKeyEvent, QKeySequence, QPainter, QPaintEvent
 from PySide6.QtWidgets import (
     QButtonGroup,
@@ -32,21 +32,41 @@ def label(text: str = "", kind: str = "", wrap: bool = False) -> QLabel:
 
 
 class Elided(QLabel):
-    """A label of one line that ends in "…" where there is no room, with the whole text as its hint."""
+    """A label of one line that ends in "…" where there is no room, with the whole text as its hint.
+
+    It keeps its text to itself: whatever it says, it takes the room it is given.
+    """
 
     def __init__(self, text: str = "", kind: str = "") -> None:
-        super().__init__(text)
+        super().__init__()
+        self._text = ""
         if kind:
             set_kind(self, kind)
-        self.setTextFormat(Qt.TextFormat.PlainText)
-        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Fixed)
+        self.setText(text)
+
+    def text(self) -> str:
+        return self._text
+
+    def setText(self, text: str) -> None:
+        if text != self._text:
+            self._text = text
+            self.setAccessibleName(text)
+            self.update()
+
+    def sizeHint(self) -> QSize:
+        metrics = self.fontMetrics()
+        return QSize(metrics.averageCharWidth(), metrics.height())
+
+    def minimumSizeHint(self) -> QSize:
+        return self.sizeHint()
 
     def paintEvent(self, event: QPaintEvent) -> None:
-        painter = QPainter(self)
-        shown = self.fontMetrics().elidedText(self.text(), Qt.TextElideMode.ElideRight, self.width())
-        hint = self.text() if shown != self.text() else ""
+        shown = self.fontMetrics().elidedText(self._text, Qt.TextElideMode.ElideRight, self.width())
+        hint = self._text if shown != self._text else ""
         if self.toolTip() != hint:
             self.setToolTip(hint)
+        painter = QPainter(self)
         painter.setFont(self.font())
         painter.setPen(self.palette().color(self.foregroundRole()))
         painter.drawText(self.rect(), int(self.alignment()), shown)

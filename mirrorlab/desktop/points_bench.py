@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 
 import numpy as np
-from PySide6.QtCore import QSignalBlocker, Signal
+from PySide6.QtCore import QSignalBlocker, QTimer, Signal
 from PySide6.QtWidgets import QGridLayout, QHBoxLayout, QSpinBox, QVBoxLayout, QWidget
 
 from mirrorlab.desktop import symbols
@@ -20,6 +20,8 @@ from mirrorlab.desktop.words import PARITIES
 from mirrorlab.mirrors import Orbit
 
 AXES = ("x", "y", "z")
+SOON = 80
+"""Milliseconds after which the bench follows other mirrors: what one types into comes first."""
 
 
 class PointsBench(Bench):
@@ -59,9 +61,13 @@ class PointsBench(Bench):
                 ("mesh", "Mesh", "The picture on the stage as a mesh: GLB, STL or OBJ"),
             )
         }
+        self._soon = QTimer(self)
+        self._soon.setSingleShot(True)
+        self._soon.setInterval(SOON)
+        self._soon.timeout.connect(self._show_rest)
         self._lay_out()
         self.group.chosen.connect(self._choose_group)
-        document.arrangement_changed.connect(self.watch)
+        document.arrangement_changed.connect(self._follow)
         document.seed_changed.connect(self.watch)
         document.settings_changed.connect(self.watch)
 
@@ -108,11 +114,28 @@ class PointsBench(Bench):
         return self.document.orbit_note if orbit is None else orbit.frame
 
     def refresh(self) -> None:
+        self._show_rows()
+        self._show_rest()
+
+    def _follow(self) -> None:
+        """Other mirrors: the table goes with finding and picture; what is on the bench itself comes after them."""
+        if not self.isVisible():
+            self.watch()
+            return
+        self._show_rows()
+        if not self._soon.isActive():  # so that it follows while one types on and on, too
+            self._soon.start()
+
+    def _show_rows(self) -> None:
         orbit = self.document.orbit
         if orbit is None:
             self._model.set_columns(pair_columns(self.document), None)
         else:
             self._model.set_columns(image_columns(orbit), "image")
+
+    def _show_rest(self) -> None:
+        self._soon.stop()
+        orbit = self.document.orbit
         self.seed.refresh()
         self.map.refresh()
         self.group.choose(1 if self.document.seed.rotations else 0)

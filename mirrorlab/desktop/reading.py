@@ -9,7 +9,8 @@ from mirrorlab.angles import Angle
 from mirrorlab.desktop.angle_text import mark_of, plain_text, pretty
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.marks import FINE, NO_FRACTION, NO_LATTICE, WRONG, ReadingMark
-from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.parts import Elided, button, label
+from mirrorlab.desktop.steady import Steady
 from mirrorlab.desktop.stylesheet import set_kind
 from mirrorlab.desktop.triangle import Triangle
 
@@ -25,9 +26,10 @@ class PairReading(QFrame):
         set_kind(self, "card")
         self.document, self.triangle = document, triangle
         self.mark = ReadingMark(12)
-        self.title = label("", "heading")
-        self.words = label("", "", wrap=True)
-        self.words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.title = Elided("", "heading")
+        words = label("", "", wrap=True)
+        words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.words = Steady(words)
         self.offers = QWidget()
         self._row = QHBoxLayout(self.offers)
         self._row.setContentsMargins(0, 2, 0, 0)
@@ -60,7 +62,7 @@ class PairReading(QFrame):
         error = self.triangle.error_of(pair)
         mark = WRONG if error else mark_of(finding, (i, j), angle)
         self.mark.set_mark(mark)
-        set_kind(self.words, "wrong" if error else "")
+        set_kind(self.words.label, "wrong" if error else "")
         self.title.setText(f"{name}: {_TITLES[mark]}")
         self.words.setText(error or in_words(angle, self.document.settings.notation))
         self._offer(angle, mark)

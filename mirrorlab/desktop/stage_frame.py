@@ -17,7 +17,7 @@ from PySide6.QtWidgets import (
 
 from mirrorlab.desktop.bench import NoPicture
 from mirrorlab.desktop.document import Document
-from mirrorlab.desktop.parts import Elided, button, label
+from mirrorlab.desktop.parts import Elided, button
 from mirrorlab.desktop.pictures import Shelf
 from mirrorlab.desktop.seeding import drag
 from mirrorlab.desktop.stage import StageView, make_view
@@ -29,27 +29,8 @@ from mirrorlab.drawing.model import Drawing, Key
 HINTED = frozenset({"image", "seed", "mirror"})
 """Parts of a picture that are told beside the pointer as well as in the status line."""
 
-
-class Nothing(QWidget):
-    """What stands on the stage where there is no picture: what it would be, and why there is none."""
-
-    def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
-        self.title = label("", "large")
-        self.reason = label("", "muted", wrap=True)
-        column = QVBoxLayout(self)
-        column.setContentsMargins(48, 24, 48, 24)
-        column.setSpacing(6)
-        column.addStretch(1)
-        for part in (self.title, self.reason):
-            part.setAlignment(Qt.AlignmentFlag.AlignHCenter)
-            column.addWidget(part)
-        column.addStretch(1)
-
-    def say(self, title: str, reason: str) -> None:
-        """Show a title and a reason."""
-        self.title.setText(title)
-        self.reason.setText(reason)
+WIDEST_NAME = 15
+"""Characters of the widest picture's name; the chooser's width does not depend on which pictures there are."""
 
 
 class Pane(QFrame):
@@ -63,6 +44,11 @@ class Pane(QFrame):
         What is under the pointer.
     chosen(str)
         Another picture was chosen by the user.
+
+    Attributes
+    ----------
+    words : (str, str) or None
+        What is said where there is no picture: what it would be, and why there is none.
     """
 
     says = Signal(str)
@@ -81,12 +67,12 @@ class Pane(QFrame):
         self._gesture = ""
         self.chooser = QComboBox()
         set_kind(self.chooser, "quiet")
-        self.chooser.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
+        self.chooser.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
+        self.chooser.setMinimumContentsLength(WIDEST_NAME)
         self.chooser.setAccessibleName("picture")
         self.note = Elided("", "small")
-        self.empty = Nothing()
+        self.words: tuple[str, str] | None = None
         self.stack = QStackedWidget()
-        self.stack.addWidget(self.empty)
         self.head = QHBoxLayout()
         self.head.setContentsMargins(6, 3, 6, 3)
         self.head.setSpacing(6)
@@ -151,13 +137,13 @@ class Pane(QFrame):
             self.chooser.setCurrentText(name)
 
     def _show_empty(self, title: str, reason: str) -> None:
-        self.drawing = None
+        self.drawing, self.words = None, (title, reason)
         self.note.setText("")
-        self.empty.say(title, reason)
-        self.stack.setCurrentWidget(self.empty)
+        self._view().say(title, reason)
+        self.stack.setCurrentWidget(self.view)
 
     def _show_widget(self, name: str, widget: QWidget) -> None:
-        self.drawing = None
+        self.drawing = self.words = None
         if name not in self._widgets:
             self._widgets[name] = widget
             self.stack.addWidget(widget)
@@ -168,7 +154,16 @@ class Pane(QFrame):
         if not (drawing.faces or drawing.lines or drawing.points):
             self._show_empty(drawing.title, "\n".join(drawing.notes))
             return
-        self.drawing = drawing
+        self.drawing, self.words = drawing, None
+        self.note.setText("; ".join(drawing.notes))
+        self.note.setToolTip(drawing.frame)
+        view = self._view()
+        view.set_drawing(drawing)
+        view.set_selection(self.document.selection)
+        self.stack.setCurrentWidget(view)
+
+    def _view(self) -> StageView:
+        """The view of drawings, made when first needed."""
         if self.view is None:
             self.view = make_view(theming().theme)
             self.view.hint_of = self._hint
@@ -177,11 +172,7 @@ class Pane(QFrame):
             self.view.seed_grabbed.connect(self._grab)
             self.view.seed_dragged.connect(self._drag)
             self.stack.addWidget(self.view)
-        self.note.setText("; ".join(drawing.notes))
-        self.note.setToolTip(drawing.frame)
-        self.view.set_drawing(drawing)
-        self.view.set_selection(self.document.selection)
-        self.stack.setCurrentWidget(self.view)
+        return self.view
 
     def _show_selection(self) -> None:
         if self.view is not None and self.drawing is not None:

@@ -5,13 +5,15 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+from functools import lru_cache
 from html import escape
 
-from PySide6.QtCore import QPointF, QSize, Qt
+from PySide6.QtCore import QPointF, QRectF, QSize, Qt
 from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from mirrorlab.desktop.theming import theming
+from mirrorlab.files.picture_sight import painting
 
 LOWERED = 0.66
 """Size of an index beside its letter, about what book printing takes."""
@@ -109,22 +111,65 @@ def as_spoken(runs: Iterable[Run]) -> str:
     return " ".join(f"bar {run.text}" if run.barred else run.text for run in runs)
 
 
+def run_font(run: Run, size: float) -> tuple[QFont, QFontMetricsF]:
+    """The font of a run in a symbol of this size in points, and its measures."""
+    points = size * (LOWERED if run.lowered else 1.0)
+    return _font(theming().theme.fonts.display, points, run.slanted)
+
+
+@lru_cache(maxsize=64)
+def _font(families: tuple[str, ...], points: float, slanted: bool) -> tuple[QFont, QFontMetricsF]:
+    font = QFont(list(families))
+    font.setPointSizeF(points)
+    font.setItalic(slanted)
+    return font, QFontMetricsF(font)
+
+
+def symbol_size(runs: Iterable[Run], size: float) -> QSize:
+    """Pixels that a symbol takes."""
+    height = run_font(Run(""), size)[1].height()
+    width = sum(run_font(r, size)[1].horizontalAdvance(r.text) for r in runs)
+    return QSize(round(width + 0.12 * height), round(height * 1.12))
+
+
+def draw_symbol(painter: QPainter, runs: Iterable[Run], size: float, box: QRectF, tint: QColor) -> None:
+    """Draw a symbol from the left of a box, half way up, its overbars at the right height."""
+    whole = run_font(Run(""), size)[1]
+    base = box.top() + (box.height() - whole.height()) / 2 + whole.ascent() + 0.05 * whole.height()
+    x = box.left()
+    for run in runs:
+        font, metrics = run_font(run, size)
+        painter.setFont(font)
+        painter.setPen(tint)
+        drop = 0.22 * whole.xHeight() + 0.1 * whole.ascent() if run.lowered else 0.0
+        painter.drawText(QPointF(x, base + drop), run.text)
+        wide = metrics.horizontalAdvance(run.text)
+        if run.barred:
+            top = base - metrics.tightBoundingRect(run.text).height() - BAR_GAP * whole.height()
+            weight = max(1.2, BAR_WEIGHT * whole.height())
+            pen = QPen(tint, weight)
+            pen.setCapStyle(Qt.PenCapStyle.FlatCap)
+            painter.setPen(pen)
+            inset = 0.06 * wide
+            painter.drawLine(
+                QPointF(x + inset, top - weight / 2), QPointF(x + wide - inset, top - weight / 2)
+            )
+        x += wide
+
+
 class SymbolText(QWidget):
-    """A symbol in large type, its overbars drawn at the right height.
+    """A symbol in large type.
 
     Parameters
     ----------
     size : float
         Points.
-    tint : str
-        Name of the `Theme` tint it is written in.
     """
 
-    def __init__(self, size: float, tint: str = "text", parent: QWidget | None = None) -> None:
+    def __init__(self, size: float, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._runs: tuple[Run, ...] = ()
         self._size = size
-        self._tint = tint
         self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
         theming().changed.connect(self.update)
 
@@ -144,44 +189,13 @@ class SymbolText(QWidget):
         """What is shown."""
         return self._runs
 
-    def _font(self, run: Run) -> QFont:
-        font = QFont(list(theming().theme.fonts.display))
-        font.setPointSizeF(self._size * (LOWERED if run.lowered else 1.0))
-        font.setItalic(run.slanted)
-        return font
-
     def sizeHint(self) -> QSize:
-        metrics = QFontMetricsF(self._font(Run("")))
-        width = sum(QFontMetricsF(self._font(r)).horizontalAdvance(r.text) for r in self._runs)
-        return QSize(round(width + 0.12 * metrics.height()), round(metrics.height() * 1.12))
+        return symbol_size(self._runs, self._size)
 
     def minimumSizeHint(self) -> QSize:
         return self.sizeHint()
 
     def paintEvent(self, event: QPaintEvent) -> None:
-        painter = QPainter(self)
-        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        tint = QColor(getattr(theming().theme, self._tint))
-        whole = QFontMetricsF(self._font(Run("")))
-        base = (self.height() - whole.height()) / 2 + whole.ascent() + 0.05 * whole.height()
-        x = 0.0
-        for run in self._runs:
-            font = self._font(run)
-            metrics = QFontMetricsF(font)
-            painter.setFont(font)
-            painter.setPen(tint)
-            drop = 0.22 * whole.xHeight() + 0.1 * whole.ascent() if run.lowered else 0.0
-            painter.drawText(QPointF(x, base + drop), run.text)
-            wide = metrics.horizontalAdvance(run.text)
-            if run.barred:
-                top = base - metrics.tightBoundingRect(run.text).height() - BAR_GAP * whole.height()
-                weight = max(1.2, BAR_WEIGHT * whole.height())
-                pen = QPen(tint, weight)
-                pen.setCapStyle(Qt.PenCapStyle.FlatCap)
-                painter.setPen(pen)
-                inset = 0.06 * wide
-                painter.drawLine(
-                    QPointF(x + inset, top - weight / 2), QPointF(x + wide - inset, top - weight / 2)
-                )
-            x += wide
-        painter.end()
+        with painting(self) as painter:
+            painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+            draw_symbol(painter, self._runs, self._size, QRectF(self.rect()), QColor(theming().theme.text))

@@ -3,15 +3,12 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QItemSelectionModel, QModelIndex, Qt, Signal
-from PySide6.QtGui import QColor, QGuiApplication, QKeyEvent, QKeySequence, QPainter
+from PySide6.QtGui import QColor, QGuiApplication, QKeyEvent, QKeySequence, QPaintEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QFrame,
     QHBoxLayout,
     QHeaderView,
-    QStyle,
-    QStyledItemDelegate,
-    QStyleOptionViewItem,
     QTableView,
     QVBoxLayout,
     QWidget,
@@ -21,7 +18,9 @@ from mirrorlab.desktop.bench import Bench
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Elided, button, label
 from mirrorlab.desktop.rows import RowsModel
+from mirrorlab.desktop.steady import Steady
 from mirrorlab.desktop.theming import theming
+from mirrorlab.files.picture_sight import painting
 
 ROW_HEIGHT = 22
 SAMPLED_ROWS = 60
@@ -32,41 +31,16 @@ MOST_COPIED = 200_000
 """More rows than this fit no clipboard; they are for a file."""
 
 
-class PlainCells(QStyledItemDelegate):
-    """Paints a cell's text and nothing else: the stylesheet's own way takes several times as long, and all
-    cells in sight are painted at every keystroke in the triangle."""
-
-    INSET = 10
-    WIDE = 12
-    """Pixels that no character is wider than; shorter texts need not be measured."""
-
-    def __init__(self, parent: QWidget) -> None:
-        super().__init__(parent)
-        self._wear()
-        theming().changed.connect(self._wear)
-
-    def _wear(self) -> None:
-        theme = theming().theme
-        self._chosen, self._other = QColor(theme.select), QColor(theme.panel)
-        self._text = QColor(theme.text)
-
-    def paint(self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex) -> None:
-        if option.state & QStyle.StateFlag.State_Selected:
-            painter.fillRect(option.rect, self._chosen)
-        elif index.row() % 2:
-            painter.fillRect(option.rect, self._other)
-        box = option.rect.adjusted(self.INSET, 0, -self.INSET, 0)
-        model = index.model()
-        text = model.text_at(index.row(), index.column())
-        if self.WIDE * len(text) > box.width() and option.fontMetrics.horizontalAdvance(text) > box.width():
-            text = option.fontMetrics.elidedText(text, Qt.TextElideMode.ElideRight, box.width())
-        painter.setFont(option.font)
-        painter.setPen(self._text)
-        painter.drawText(box, model.alignment_at(index.column()), text)
+INSET, WIDE = 10, 12
+"""Pixels left free beside a cell's text, and pixels that no character is wider than: shorter texts need not be
+measured."""
 
 
 class Rows(QTableView):
     """The view itself; Ctrl+C copies the chosen rows.
+
+    It paints its cells itself: Qt's way, a delegate and a style for each cell, takes several times as long, and
+    all cells in sight are painted at every keystroke in the triangle.
 
     Signals
     -------
@@ -99,7 +73,37 @@ class Rows(QTableView):
         head.setSortIndicator(-1, Qt.SortOrder.AscendingOrder)
         head.setMinimumSectionSize(40)
         self.setSortingEnabled(True)
-        self.setItemDelegate(PlainCells(self))
+        theming().changed.connect(self.viewport().update)
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        theme, model = theming().theme, self.model()
+        area = event.rect()
+        with painting(self.viewport()) as painter:
+            painter.fillRect(area, QColor(theme.raised))
+            if not isinstance(model, RowsModel) or not model.rowCount():
+                return
+            first = max(0, self.rowAt(area.top()))
+            last = self.rowAt(area.bottom())
+            rows = range(first, model.rowCount() if last < 0 else last + 1)
+            chosen = {index.row() for index in self.selectionModel().selectedRows()}
+            tops = [self.rowViewportPosition(row) for row in rows]
+            for row, top in zip(rows, tops, strict=True):
+                if row in chosen or row % 2:
+                    tint = theme.select if row in chosen else theme.panel
+                    painter.fillRect(0, top, self.viewport().width(), ROW_HEIGHT, QColor(tint))
+            painter.setFont(self.font())
+            painter.setPen(QColor(theme.text))
+            metrics = self.fontMetrics()
+            for column in range(model.columnCount()):
+                left, wide = self.columnViewportPosition(column), self.columnWidth(column) - 2 * INSET
+                if left > area.right() or left + wide + 2 * INSET < area.left():
+                    continue
+                side = model.alignment_at(column)
+                for row, top in zip(rows, tops, strict=True):
+                    text = model.text_at(row, column)
+                    if WIDE * len(text) > wide and metrics.horizontalAdvance(text) > wide:
+                        text = metrics.elidedText(text, Qt.TextElideMode.ElideRight, wide)
+                    painter.drawText(left + INSET, top, wide, ROW_HEIGHT, side, text)
 
     def leaveEvent(self, event: QEvent) -> None:
         super().leaveEvent(event)
@@ -137,7 +141,7 @@ class TablePanel(QFrame):
         self.setProperty("kind", "panel")
         self.document = document
         self.bench: Bench | None = None
-        self.title = label("", "heading")
+        self.title = Steady(label("", "heading"))
         self.note = Elided("", "muted")
         self.rows = Rows()
         self.empty = label("", "muted", wrap=True)

@@ -46,11 +46,12 @@ class Window(QMainWindow):
         super().__init__(parent)
         self.document, self.settings = document, settings
         document.setParent(self)
+        self.benches = BenchColumn(document)
+        # The stage is told first of every change: OpenGL then draws while the others answer.
+        self.stage = StageFrame(document, Shelf(document, self.benches.slots, self.benches.bench))
         self.band = FindingBand(document)
         self.notice = Notice()
         self.mirrors = MirrorsPanel(document)
-        self.benches = BenchColumn(document)
-        self.stage = StageFrame(document, Shelf(document, self.benches.slots, self.benches.bench))
         self.table = TablePanel(document)
         self.status = StatusLine(document.work)
         self.setStatusBar(self.status)

@@ -34,10 +34,7 @@ def hidden(prepared: Prepared, camera: Camera, points: Array, lift: float = LIFT
     towards /= np.linalg.norm(towards, axis=1, keepdims=True)
     start = points + lift * camera.radius * towards
     result = behind_ball(start, towards) if prepared.has_ball else np.zeros(count, dtype=bool)
-    rest = prepared.solid
-    if prepared.has_ball:
-        rest = rest & ~np.array(prepared.curved)[prepared.block_of]
-    corners = prepared.corners[rest]
+    corners = prepared.plane_corners
     if 0 < len(corners) * count <= MOST_TESTS:
         result |= behind_triangles(start, towards, corners)
     return result

@@ -118,9 +118,21 @@ class Prepared:
         return ~sheer[self.block_of] if len(sheer) else np.zeros(0, dtype=bool)
 
     @cached_property
+    def plane_corners(self) -> Array:
+        """Corners of the solid triangles that are no part of the ball, shape (T, 3, 3)."""
+        parts = [
+            faces.vertices[faces.triangles]
+            for faces, curved in zip(self.drawing.faces, self.curved, strict=True)
+            if not curved and faces.role not in SHEER_ROLES
+        ]
+        return np.concatenate(parts) if parts else np.zeros((0, 3, 3))
+
+    @cached_property
     def bare(self) -> bool:
         """Whether there is nothing solid, so that lines lie on the ground and the far half shows."""
-        return not bool(self.solid.any()) and all(f.role is not Role.PANEL for f in self.drawing.faces)
+        faces = [faces for faces in self.drawing.faces if len(faces.triangles)]
+        solid = any(f.role not in SHEER_ROLES for f in faces)
+        return not solid and all(f.role is not Role.PANEL for f in self.drawing.faces)
 
     def key_of(self, triangle: int) -> Key:
         """Key of a triangle counted over all blocks."""

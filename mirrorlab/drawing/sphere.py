@@ -82,7 +82,7 @@ def _turns(steps: int) -> tuple[Array, Array]:
     return np.cos(t)[:, None], np.sin(t)[:, None]
 
 
-def circles(normals: Array, radius: float = 1.0, steps: int = 120) -> Array:
+def circles(normals: Array, radius: float = 1.0, steps: int = 96) -> Array:
     """Points of the circles about the origin in planes with these unit normals.
 
     Parameters

@@ -39,8 +39,8 @@ def test_lowered_indices() -> None:
 def test_band_shows_the_group(window: Window) -> None:
     band = window.band
     assert band.headline.text() == "Closed"
-    assert band.group.symbol.accessibleName() == "m bar 3 m"
-    assert band.schoenflies.symbol.isVisible()
+    assert band.symbols.accessibleName() == "Hermann–Mauguin: m bar 3 m; Schoenflies: O h; family: B 3"
+    assert band.symbols.width() == band.symbols.sizeHint().width() > 0
     assert "48 images" in band.sentence.text()
 
 

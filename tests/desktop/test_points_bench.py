@@ -112,11 +112,19 @@ def test_the_seed_is_dragged_in_the_map_as_one_step(window: Window, bench: Point
     assert window.document.seed.heights == (1, 2, 3)
 
 
-def test_the_map_hides_where_there_is_none(window: Window, bench: PointsBench) -> None:
+def test_the_map_hides_where_there_is_none(window: Window, bench: PointsBench, qtbot: QtBot) -> None:
     window.document.put_sheet(Arrangement.from_family("A4"), "A4")
-    assert not bench.map.isVisible()
+    qtbot.waitUntil(lambda: not bench.map.isVisible())
     window.document.undo_stack.undo()
-    assert bench.map.isVisible()
+    qtbot.waitUntil(bench.map.isVisible)
+
+
+def test_the_bench_follows_other_mirrors_after_the_table(
+    window: Window, bench: PointsBench, qtbot: QtBot
+) -> None:
+    window.document.set_angle(2, "36")
+    assert window.table.title.text() == "120 images"
+    qtbot.waitUntil(lambda: bench.facts.values["Order of the group"].text() == "120")
 
 
 def test_the_limit_of_images_can_be_raised_in_place(window: Window, bench: PointsBench, qtbot: QtBot) -> None:
@@ -124,7 +132,7 @@ def test_the_limit_of_images_can_be_raised_in_place(window: Window, bench: Point
     bench.limit.box.setValue(1000)
     window.document.put_sheet(Arrangement.from_family("F4"), "F4")
     assert "1,152 images" in window.document.orbit_note
-    assert bench.limit.isVisible()
+    qtbot.waitUntil(bench.limit.isVisible)
     bench.limit.box.setValue(2000)
     qtbot.waitUntil(lambda: window.document.orbit is not None)
     assert window.table.title.text() == "1,152 images"

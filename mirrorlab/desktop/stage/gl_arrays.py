@@ -32,14 +32,16 @@ class FaceArrays:
     Attributes
     ----------
     data : ndarray of FACE_TYPE, shape (V,)
-    solid : ndarray of uint32, shape (3·T,)
-        Corners of the triangles that hide what is behind them.
+    ball, solid : ndarray of uint32, shape (3·T,)
+        Corners of the triangles of the ball, seen from outside only, and of the other triangles that hide what
+        is behind them.
     sheer : ndarray of uint32, shape (S, 3)
     middles : ndarray, shape (S, 3)
         Middle of each sheer triangle.
     """
 
     data: NDArray[np.void]
+    ball: NDArray[np.uint32]
     solid: NDArray[np.uint32]
     sheer: NDArray[np.uint32]
     middles: NDArray[np.float64]
@@ -50,7 +52,7 @@ def face_arrays(prepared: Prepared, look: Look) -> FaceArrays:
     blocks = [faces for faces in prepared.drawing.faces if len(faces.triangles)]
     ball = [faces for faces in blocks if on_ball(prepared.drawing, faces)]
     plane = [faces for faces in blocks if not any(faces is other for other in ball)]
-    parts, solid, first = [], [], 0
+    parts, outside, first = [], [], 0
     for faces in ball:
         data = np.empty(len(faces.vertices), dtype=FACE_TYPE)
         data["position"] = faces.vertices
@@ -58,20 +60,21 @@ def face_arrays(prepared: Prepared, look: Look) -> FaceArrays:
         data["color"] = _color(look, faces)
         data["ball"] = 1.0
         parts.append(data)
-        solid.append((faces.triangles + first).astype(np.uint32).ravel())
+        outside.append((faces.triangles + first).astype(np.uint32).ravel())
         first += len(data)
     none = np.zeros(0, dtype=np.uint32)
-    sheer, middles = none.reshape(0, 3), np.zeros((0, 3))
+    solid, sheer, middles = none, none.reshape(0, 3), np.zeros((0, 3))
     if plane:
         data, corners = _plane(plane, look)
         parts.append(data)
         triangles = (first + np.arange(3 * len(corners), dtype=np.uint32)).reshape(-1, 3)
         see_through = np.repeat([f.role in SHEER_ROLES for f in plane], [len(f.triangles) for f in plane])
-        solid.append(triangles[~see_through].ravel())
+        solid = triangles[~see_through].ravel()
         sheer, middles = triangles[see_through], corners[see_through].mean(axis=1)
     return FaceArrays(
         np.concatenate(parts) if parts else np.zeros(0, dtype=FACE_TYPE),
-        np.concatenate(solid) if solid else none,
+        np.concatenate(outside) if outside else none,
+        solid,
         sheer,
         middles,
     )

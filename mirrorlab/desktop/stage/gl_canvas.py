@@ -59,6 +59,7 @@ class Canvas:
             yield
         finally:
             self._frame.release()
+            GL.glFlush()
 
     def image(self) -> QImage:
         """What was drawn, its first row at the top; the context must be current."""

@@ -106,7 +106,13 @@ class _Program:
 
 
 class DrawingItem(GLGraphicsItem):
-    """Faces and lines of a drawing. Solid faces first, then sheer ones from back to front, then lines."""
+    """Faces and lines of a drawing. Solid faces first, then sheer ones from back to front, then lines.
+
+    Attributes
+    ----------
+    matrices : tuple of 2 ndarrays, shape (4, 4)
+        From the drawing to the eye, and from there to the picture.
+    """
 
     def __init__(self) -> None:
         super().__init__()
@@ -115,9 +121,12 @@ class DrawingItem(GLGraphicsItem):
         self._prepared: Prepared | None = None
         self._look: Look | None = None
         self._camera: Camera | None = None
+        self.matrices = (np.eye(4), np.eye(4))
         self._ordered_for: Camera | None = None
         vertex, index = QOpenGLBuffer.Type.VertexBuffer, QOpenGLBuffer.Type.IndexBuffer
-        self._face_data, self._solid, self._sheer = _Buffer(vertex), _Buffer(index), _Buffer(index)
+        self._face_data, self._ball, self._solid, self._sheer = (
+            _Buffer(kind) for kind in (vertex, index, index, index)
+        )
         self._line_data, self._line_index = _Buffer(vertex), _Buffer(index)
         self._face_program: _Program | None = None
         self._line_program: _Program | None = None
@@ -134,6 +143,7 @@ class DrawingItem(GLGraphicsItem):
         if not same:
             self._faces = face_arrays(prepared, look)
             self._face_data.put(self._faces.data)
+            self._ball.put(self._faces.ball)
             self._solid.put(self._faces.solid)
             self._ordered_for = None
         data, index = line_arrays(prepared.drawing.lines, cut, look, prepared.bare)
@@ -158,12 +168,16 @@ class DrawingItem(GLGraphicsItem):
 
     def forget_context(self) -> None:
         """Give back what lies on the card, to be sent again to the next; the context must be current."""
-        for buffer in (self._face_data, self._solid, self._sheer, self._line_data, self._line_index):
+        for buffer in self._buffers():
             buffer.destroy()
         for program in (self._face_program, self._line_program):
             if program is not None:
                 GL.glDeleteProgram(program.number)
         self._face_program = self._line_program = None
+
+    def _buffers(self) -> tuple[_Buffer, ...]:
+        faces = (self._face_data, self._ball, self._solid, self._sheer)
+        return (*faces, self._line_data, self._line_index)
 
     def paint(self) -> None:
         if self._prepared is None or self._camera is None or self._faces is None:
@@ -191,7 +205,7 @@ class DrawingItem(GLGraphicsItem):
         return float(max(1, view.width())), float(max(1, view.height()))
 
     def _use(self, program: _Program) -> None:
-        view, projection = self._camera.matrices(*self._size())
+        view, projection = self.matrices
         GL.glUseProgram(program.number)
         program.set_matrix("u_view", view)
         program.set_matrix("u_projection", projection)
@@ -206,11 +220,14 @@ class DrawingItem(GLGraphicsItem):
         program.set("u_parallel", 0.0 if self._camera.field > 0 else 1.0)
 
     def _paint_solid(self) -> None:
-        if not self._solid.count:
+        if not (self._ball.count or self._solid.count):
             return
         self._use_faces()
         GL.glEnable(GL.GL_POLYGON_OFFSET_FILL)  # lines on a face stand before it
         GL.glPolygonOffset(1.0, 1.0)
+        GL.glEnable(GL.GL_CULL_FACE)  # of the ball, only the near side is seen
+        _draw(self._face_data, FACE_TYPE, FACE_FIELDS, self._ball)
+        GL.glDisable(GL.GL_CULL_FACE)
         _draw(self._face_data, FACE_TYPE, FACE_FIELDS, self._solid)
         GL.glDisable(GL.GL_POLYGON_OFFSET_FILL)
         GL.glUseProgram(0)
@@ -252,6 +269,8 @@ class DrawingItem(GLGraphicsItem):
 def _draw(data: _Buffer, kind: np.dtype, fields: tuple[tuple[str, str], ...], index: _Buffer) -> None:
     import ctypes
 
+    if not index.count:
+        return
     data.bind()
     for place, (_, name) in enumerate(fields):
         field, offset = kind.fields[name][:2]

@@ -41,6 +41,10 @@ class Card:
         return 0 if any(word in name for word in SOFTWARE) else SAMPLES
 
 
+THREADS_SWITCH = "LP_NUM_THREADS"
+"""In how many threads Mesa's renderer on the processor draws, if the user has not said so."""
+
+
 @lru_cache(maxsize=1)
 def card() -> Card:
     """What draws with OpenGL here, tried once."""
@@ -58,6 +62,8 @@ def try_opengl() -> Card:
         return Card(f"{PAINTER_SWITCH}=1 asks for pictures without OpenGL")
     if QGuiApplication.instance() is None:
         return Card("there is no application yet")
+    # Drawing goes on while the window answers a key; on all cores it would take the window's own.
+    os.environ.setdefault(THREADS_SWITCH, str(max(1, (os.cpu_count() or 1) - 1)))
     context = QOpenGLContext()
     context.setFormat(surface_format())
     if not context.create():

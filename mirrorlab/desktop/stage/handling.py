@@ -70,6 +70,7 @@ class Handling:
         self._camera: Camera = home_camera(EMPTY)
         self._moved = False
         self._cut: tuple[Drawing, Look, float, Strokes] | None = None
+        self._said: tuple[str, ...] = ()
         self._selection: frozenset[Key] = frozenset()
         self._hover: Key | None = None
         self._pointer: QPointF | None = None
@@ -104,8 +105,11 @@ class Handling:
 
     def set_drawing(self, drawing: Drawing) -> None:
         """Show a drawing. Where the user has turned or zoomed the picture before, it stays so."""
-        before = self._prepared.drawing
+        before, said = self._prepared.drawing, self._said
+        self._said = ()
         if drawing is before:
+            if said:
+                self.update()
             return
         self._prepared = Prepared(drawing)
         home = home_camera(drawing)
@@ -119,6 +123,12 @@ class Handling:
         self.setAccessibleDescription(". ".join((drawing.title, *drawing.notes)))
         self._put_camera(home)
         self.refresh_view()
+
+    def say(self, title: str, reason: str) -> None:
+        """Show words instead of the drawing, until another is set; the camera stays."""
+        self._said = (title, reason)
+        self.setAccessibleDescription(f"{title}. {reason}")
+        self.update()
 
     def set_look(self, look: Any) -> None:
         """Change tints and sizes: a Look, a Theme or "light" or "dark"."""
@@ -184,15 +194,33 @@ class Handling:
             self._hover,
         )
 
-    def paint_extras(self, painter: QPainter) -> None:
-        """What only a view has: words beside the pointer, a sentence where there is nothing to draw, the focus."""
+    def paint_words(self, painter: QPainter) -> bool:
+        """Paint the words that stand where there is no picture; whether there are any."""
         drawing = self._prepared.drawing
+        said = self._said
+        if not said and drawing.title and not (drawing.faces or drawing.lines or drawing.points):
+            said = (drawing.title, "\n".join(drawing.notes))
+        if not said:
+            return False
+        painter.fillRect(self.rect(), tint(self._look.ground))
+        font = QFont(list(self._look.label_fonts))
+        font.setPointSizeF(1.5 * self.font().pointSizeF())
+        middle = Qt.AlignmentFlag.AlignHCenter | Qt.TextFlag.TextWordWrap
+        box = self.rect().adjusted(48, 24, -48, -24)
+        title = QFontMetricsF(font).boundingRect(box, int(middle), said[0]).height()
+        reason = QFontMetricsF(self.font()).boundingRect(box, int(middle), said[1]).height()
+        box.setTop(box.top() + max(0, round((box.height() - title - reason) / 2)))
+        painter.setFont(font)
+        painter.setPen(tint(self._look.ink))
+        painter.drawText(box, int(middle), said[0])
+        painter.setFont(self.font())
+        painter.setPen(tint(self._look.muted))
+        painter.drawText(box.adjusted(0, round(title) + 6, 0, 0), int(middle), said[1])
+        return True
+
+    def paint_extras(self, painter: QPainter) -> None:
+        """What only a view has: words beside the pointer, the focus."""
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        if not (drawing.faces or drawing.lines or drawing.points) and drawing.title:
-            painter.setPen(tint(self._look.muted))
-            words = "\n".join((drawing.title, *drawing.notes))
-            flags = Qt.AlignmentFlag.AlignCenter | Qt.TextFlag.TextWordWrap
-            painter.drawText(self.rect().adjusted(40, 40, -40, -40), int(flags), words)
         words = ""
         if self.hint_of is not None and self._hover is not None and self._pointer is not None:
             words = self.hint_of(self._hover)
@@ -229,6 +257,8 @@ class Handling:
 
     def pick_at(self, x: float, y: float) -> Key | None:
         """What is seen at a pixel of the view."""
+        if self._said:
+            return None
         hit = pick(self._prepared, self._camera, x, y, *self._area())
         return None if hit is None else hit.key
 
@@ -236,9 +266,7 @@ class Handling:
         at = event.position()
         self._press, self._last = at, at
         self._dragging = False
-        self._holds_seed = event.button() == Mouse.LeftButton and near_seed(
-            self._prepared, self._camera, at.x(), at.y(), *self._area()
-        )
+        self._holds_seed = event.button() == Mouse.LeftButton and self._near_seed(at)
         if self._holds_seed:
             self.setCursor(Qt.CursorShape.ClosedHandCursor)
         event.accept()
@@ -283,8 +311,7 @@ class Handling:
         self._say_hover(None)
 
     def _hover_at(self, at: QPointF) -> None:
-        over_seed = near_seed(self._prepared, self._camera, at.x(), at.y(), *self._area())
-        self.setCursor(Qt.CursorShape.OpenHandCursor if over_seed else Qt.CursorShape.ArrowCursor)
+        self.setCursor(Qt.CursorShape.OpenHandCursor if self._near_seed(at) else Qt.CursorShape.ArrowCursor)
         self._say_hover(self.pick_at(at.x(), at.y()))
         if self.hint_of is not None and self._hover is not None:
             self.update()
@@ -294,6 +321,9 @@ class Handling:
             self._hover = key
             self.hovered.emit(key)
             self.update()
+
+    def _near_seed(self, at: QPointF) -> bool:
+        return not self._said and near_seed(self._prepared, self._camera, at.x(), at.y(), *self._area())
 
     def _drag_seed(self, at: QPointF) -> None:
         place = seed_at(self._prepared, self._camera, at.x(), at.y(), *self._area())

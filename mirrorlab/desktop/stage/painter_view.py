@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
-from PySide6.QtCore import Signal
+from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QPaintEvent
 from PySide6.QtWidgets import QWidget
 
@@ -27,6 +27,7 @@ class PainterView(Handling, QWidget):
 
     def __init__(self, look: Any = LIGHT_LOOK, parent: QWidget | None = None) -> None:
         QWidget.__init__(self, parent)
+        self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)  # what lies below need not be painted
         self.start_handling(look)
 
     def refresh_view(self) -> None:
@@ -35,6 +36,7 @@ class PainterView(Handling, QWidget):
 
     def paintEvent(self, event: QPaintEvent) -> None:
         with painting(self) as painter:
-            painter.fillRect(self.rect(), tint(self._look.ground))
-            paint_drawing(painter, self._prepared, self.sight(), self.cut_strokes())
+            if not self.paint_words(painter):
+                painter.fillRect(self.rect(), tint(self._look.ground))
+                paint_drawing(painter, self._prepared, self.sight(), self.cut_strokes())
             self.paint_extras(painter)

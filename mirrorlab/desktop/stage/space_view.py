@@ -6,8 +6,8 @@ from typing import Any
 
 import numpy as np
 from pyqtgraph.opengl.GLViewWidget import GLViewMixin
-from PySide6.QtCore import QSize, Signal
-from PySide6.QtGui import QImage, QMatrix4x4, QOpenGLContext, QPaintEvent, QResizeEvent
+from PySide6.QtCore import QSize, Qt, Signal
+from PySide6.QtGui import QImage, QMatrix4x4, QOpenGLContext, QPaintEvent
 from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.stage.gl_canvas import Canvas
@@ -32,9 +32,11 @@ class SpaceView(Handling, GLViewMixin, QWidget):
     def __init__(self, look: Any = LIGHT_LOOK, parent: QWidget | None = None) -> None:
         self._canvas = Canvas(card().samples)
         self._ready = False
+        self._drawn: QSize | None = None
         self._faces: QImage | None = None
         GLViewMixin.__init__(self, parent)
         self._item = DrawingItem()
+        self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)  # what lies below need not be painted
         self.start_handling(look)
         self.addItem(self._item)
         self.refresh_view()
@@ -42,19 +44,21 @@ class SpaceView(Handling, GLViewMixin, QWidget):
         self.destroyed.connect(lambda: _give_back(canvas, item))
 
     def refresh_view(self) -> None:
-        """Fill the item's buffers with the drawing."""
-        self._faces = None
+        """Fill the item's buffers with the drawing, and begin to draw: it goes on while others answer the change."""
+        self._forget()
         self.setBackgroundColor(self._look.ground)
         self._item.set_drawing(self._prepared, self._look, self.cut_strokes())
         self._item.set_camera(self._camera)
+        if self.isVisible() and self._canvas.make_current():
+            self._draw()
+            self._canvas.done_current()
 
     def camera_moved(self) -> None:
-        self._faces = None
+        self._forget()
         self._item.set_camera(self._camera)
 
-    def resizeEvent(self, event: QResizeEvent) -> None:
-        self._faces = None
-        super().resizeEvent(event)
+    def _forget(self) -> None:
+        self._drawn = self._faces = None
 
     # -- what pyqtgraph's items ask their view for ---------------------------------------------------
 
@@ -67,42 +71,49 @@ class SpaceView(Handling, GLViewMixin, QWidget):
         return self._canvas.context
 
     def viewMatrix(self) -> QMatrix4x4:
-        return QMatrix4x4(*self._camera.matrices(*self._area())[0].ravel().tolist())
+        return QMatrix4x4(*self._item.matrices[0].ravel().tolist())
 
     def projectionMatrix(self, region: Any, viewport: Any) -> QMatrix4x4:
-        return QMatrix4x4(*self._camera.matrices(*self._area())[1].ravel().tolist())
+        return QMatrix4x4(*self._item.matrices[1].ravel().tolist())
 
     # -- painting ------------------------------------------------------------------------------------
 
     def paintEvent(self, event: QPaintEvent) -> None:
-        faces = self.faces()
         with painting(self) as painter:
-            painter.drawImage(0, 0, faces)
-            paint_over(painter, self._prepared, self.sight())
+            if not self.paint_words(painter):
+                painter.drawImage(0, 0, self.faces())
+                paint_over(painter, self._prepared, self.sight())
             self.paint_extras(painter)
 
     def faces(self) -> QImage:
         """Faces and lines as OpenGL draws them; null where it cannot. Drawn anew only when something else is seen."""
-        dots = self.devicePixelRatioF()
-        size = QSize(max(1, self.deviceWidth()), max(1, self.deviceHeight()))
-        if self._faces is not None and self._faces.size() == size:
+        if self._faces is not None and self._faces.size() == self._dots():
             return self._faces
         if not self._canvas.make_current():
             return QImage()
-        try:
-            if not self._ready:
-                self.initializeGL()
-                self._ready = True
-            with self._canvas.drawn_on(size):
-                self.paintGL()
-            # Nothing shows through the ground, and a picture without transparency is laid down faster.
-            image = self._canvas.image()
-            image.reinterpretAsFormat(QImage.Format.Format_RGB32)
-        finally:
-            self._canvas.done_current()
-        image.setDevicePixelRatio(dots)
+        if self._drawn != self._dots():
+            self._draw()
+        # Nothing shows through the ground, and a picture without transparency is laid down faster.
+        image = self._canvas.image()
+        self._canvas.done_current()
+        image.reinterpretAsFormat(QImage.Format.Format_RGB32)
+        image.setDevicePixelRatio(self.devicePixelRatioF())
         self._faces = image
         return image
+
+    def _dots(self) -> QSize:
+        return QSize(max(1, self.deviceWidth()), max(1, self.deviceHeight()))
+
+    def _draw(self) -> None:
+        """Have OpenGL draw; the context must be current. It need not be done when this returns."""
+        if not self._ready:
+            self.initializeGL()
+            self._ready = True
+        size = self._dots()
+        self._item.matrices = self._camera.matrices(*self._area())
+        with self._canvas.drawn_on(size):
+            self.paintGL()
+        self._drawn = size
 
     def has_picture(self) -> bool:
         """Whether OpenGL works: a context, and an image that is not empty."""

@@ -92,6 +92,10 @@ class StageView(QWidget):
         if view is self._space and self.isVisible() and not self._tested:
             QTimer.singleShot(0, self._test)
 
+    def say(self, title: str, reason: str) -> None:
+        """Show words instead of a drawing, until one is set."""
+        self.current.say(title, reason)
+
     def set_look(self, look: Any) -> None:
         """Change tints and sizes: a Look, a Theme or "light" or "dark"."""
         self._look = named_look(look)

@@ -132,8 +132,10 @@ def test_edges_and_faces_as_rows_and_as_files(window, section, type_into, tmp_pa
 def test_without_a_form_the_stage_says_how_to_type_one(window, section):
     section("Forms")
     window.stage.left.choose("Form")
-    assert "Type a face" in window.stage.left.empty.reason.text()
-    assert window.stage.left.empty.isVisible()
+    title, reason = window.stage.left.words
+    assert title == "Form"
+    assert "Type a face" in reason
+    assert window.stage.left.stack.currentWidget() is window.stage.left.view
 
 
 def test_settings_of_the_stereogram(window, bench, section):
