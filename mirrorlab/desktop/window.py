@@ -130,8 +130,11 @@ class Window(QMainWindow):
 
     def _show_title(self) -> None:
         name = self.document.path.name if self.document.path else self.document.name
-        self.setWindowTitle(f"{name or 'New arrangement'}[*] – Mirrorlab")
-        self.setWindowModified(self.document.altered)
+        title = f"{name or 'New arrangement'}[*] – Mirrorlab"
+        if title != self.windowTitle():  # telling the window system takes milliseconds
+            self.setWindowTitle(title)
+        if self.document.altered != self.isWindowModified():
+            self.setWindowModified(self.document.altered)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)

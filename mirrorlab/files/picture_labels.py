@@ -23,13 +23,9 @@ RIM = 3.2
 """Width of the band of ground about other writing, in the look's pixels."""
 
 
-def label_font(look: Look, size: float, italic: bool = False) -> QFont:
-    """The font of labels, `size` in pixels."""
-    return _font(look.label_fonts, max(1, round(size)), italic)
-
-
 @lru_cache(maxsize=64)
-def _font(families: tuple[str, ...], size: int, italic: bool) -> QFont:
+def label_font(families: tuple[str, ...], size: int, italic: bool = False) -> QFont:
+    """The font of labels, `size` in pixels."""
     font = QFont()
     font.setFamilies(list(families))
     font.setPixelSize(size)
@@ -54,13 +50,13 @@ def label_box(x: float, y: float, label: Label, look: Look, scale: float = 1.0) 
 
 @lru_cache(maxsize=512)
 def _text_box(text: str, families: tuple[str, ...], size: int) -> QRectF:
-    return QFontMetricsF(_font(families, size, False)).tightBoundingRect(text)
+    return QFontMetricsF(label_font(families, size)).tightBoundingRect(text)
 
 
 @lru_cache(maxsize=512)
 def _outline(text: str, families: tuple[str, ...], size: int, italic: bool, rim: float) -> QPainterPath:
     """Outline of a text about the origin, or, with a rim, of the band around it. Making them takes longest."""
-    font = _font(families, size, italic)
+    font = label_font(families, size, italic)
     metrics = QFontMetricsF(font)
     box = metrics.tightBoundingRect(text) if italic else metrics.boundingRect(text)
     path = QPainterPath()

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
+
 import numpy as np
 from PySide6.QtCore import QPointF, Qt
 from PySide6.QtGui import QPainter, QPainterPath, QPen
@@ -26,19 +28,24 @@ def draw_triad(
         return
     middle = QPointF(ROOM * scale, height - ROOM * scale)
     axes = camera.axes.T  # one row an axis: right, up, towards the eye
-    font = label_font(look, 12.0 * scale, italic=True)
     for k in np.argsort(axes[:, 2], kind="stable").tolist():
         x, y, near = axes[k].tolist()
         alpha = 0.85 if near > -0.2 else 0.5
         tip = middle + QPointF(x, -y) * LENGTH * scale
         painter.setPen(QPen(tint(look.muted, alpha), 1.3 * scale))
         painter.drawLine(middle, tip)
-        path = QPainterPath()
-        path.addText(0, 0, font, NAMES[k])
-        box = path.boundingRect()
+        path = _letter(NAMES[k], look.label_fonts, max(1, round(12.0 * scale)))
         size = float(np.hypot(x, y))
         away = QPointF(x, -y) / size if size > 0.25 else QPointF(0.7, -0.7)
-        path.translate(tip + away * 8.5 * scale - box.center())
+        path = path.translated(tip + away * 8.5 * scale)
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(tint(look.muted, alpha))
         painter.drawPath(path)
+
+
+@lru_cache(maxsize=64)
+def _letter(name: str, families: tuple[str, ...], size: int) -> QPainterPath:
+    """A letter's outline about the origin."""
+    path = QPainterPath()
+    path.addText(0, 0, label_font(families, size, True), name)
+    return path.translated(-path.boundingRect().center())

@@ -2,9 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-from contextlib import contextmanager
-
 from OpenGL import GL
 from PySide6.QtCore import QSize
 from PySide6.QtGui import QImage, QOffscreenSurface, QOpenGLContext
@@ -44,8 +41,7 @@ class Canvas:
         """Let the context go."""
         self.context.doneCurrent()
 
-    @contextmanager
-    def drawn_on(self, size: QSize) -> Iterator[None]:
+    def lead(self, size: QSize) -> None:
         """Lead what OpenGL draws to a framebuffer of `size` pixels; the context must be current."""
         if self._frame is None or self._frame.size() != size:
             wanted = QOpenGLFramebufferObjectFormat()
@@ -55,11 +51,6 @@ class Canvas:
             self._frame = QOpenGLFramebufferObject(size, wanted)
         self._frame.bind()
         GL.glViewport(0, 0, size.width(), size.height())
-        try:
-            yield
-        finally:
-            self._frame.release()
-            GL.glFlush()
 
     def image(self) -> QImage:
         """What was drawn, its first row at the top; the context must be current."""

@@ -111,8 +111,8 @@ class SpaceView(Handling, GLViewMixin, QWidget):
             self._ready = True
         size = self._dots()
         self._item.matrices = self._camera.matrices(*self._area())
-        with self._canvas.drawn_on(size):
-            self.paintGL()
+        self._canvas.lead(size)
+        self.paintGL()
         self._drawn = size
 
     def has_picture(self) -> bool:
