@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import asdict, dataclass, fields
+from dataclasses import dataclass
 from typing import Any
 
 from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.typed_state import from_plain, to_plain
 
 CONSTANTS = ("a", "b", "c", "α", "β", "γ")
 
@@ -86,8 +87,7 @@ class CrystalState:
 
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON."""
-        plain = asdict(self)
-        return {key: list(value) if isinstance(value, tuple) else value for key, value in plain.items()}
+        return to_plain(self)
 
 
 EMPTY = CrystalState()
@@ -103,24 +103,5 @@ def crystal_state(document: Document) -> CrystalState:
 
 def from_mapping(plain: Mapping[str, Any]) -> CrystalState:
     """A value from plain JSON."""
-    kept: dict[str, Any] = {}
-    for one in fields(CrystalState):
-        before = getattr(EMPTY, one.name)
-        found = plain.get(one.name, before)
-        if isinstance(before, tuple):
-            texts = isinstance(found, list | tuple) and all(isinstance(text, str) for text in found)
-            found = tuple(found) if texts else before
-        elif isinstance(before, bool):
-            found = found if isinstance(found, bool) else before
-        elif isinstance(before, float):
-            usable = isinstance(found, int | float) and not isinstance(found, bool) and 0 <= found < 1e6
-            found = float(found) if usable else before
-        elif not isinstance(found, str):
-            found = before
-        kept[one.name] = found
-    if len(kept["constants"]) != len(CONSTANTS):
-        kept["constants"] = EMPTY.constants
-    for name, accepted in (("net", NETS), ("orientation", ORIENTATIONS)):
-        if kept[name] not in accepted:
-            kept[name] = getattr(EMPTY, name)
-    return CrystalState(**kept)
+    words = {"net": NETS, "orientation": ORIENTATIONS}
+    return from_plain(EMPTY, plain, words, {"constants": len(CONSTANTS)}, long={"list_text"})

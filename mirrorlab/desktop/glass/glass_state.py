@@ -3,15 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import asdict, dataclass, fields
+from dataclasses import dataclass
 from typing import Any
 
 from mirrorlab.desktop.document import Document
-
-LONGEST_TEXT = 4096
-"""Characters of one typed text that are read back from a file; a path is the longest of them."""
-
-MOST_TEXTS = 64
+from mirrorlab.desktop.typed_state import from_plain, to_plain
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,9 +89,7 @@ class GlassState:
 
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON."""
-        return {
-            key: list(value) if isinstance(value, tuple) else value for key, value in asdict(self).items()
-        }
+        return to_plain(self)
 
     def nth(self, name: str, index: int) -> str:
         """One of the texts of a tuple, "" beyond its end."""
@@ -140,24 +134,4 @@ def glass_state(document: Document) -> GlassState:
 
 def from_mapping(plain: Mapping[str, Any]) -> GlassState:
     """A value from plain JSON."""
-    kept: dict[str, Any] = {}
-    for one in fields(GlassState):
-        before = getattr(EMPTY, one.name)
-        found = plain.get(one.name, before)
-        if isinstance(before, tuple):
-            usable = (
-                isinstance(found, list | tuple) and len(found) <= MOST_TEXTS and all(map(_is_text, found))
-            )
-            usable = usable and len(found) == LENGTHS.get(one.name, len(found))
-            found = tuple(found) if usable else before
-        elif isinstance(before, bool):
-            found = found if isinstance(found, bool) else before
-        else:
-            usable = _is_text(found) and found in WORDS.get(one.name, (found,))
-            found = found if usable else before
-        kept[one.name] = found
-    return GlassState(**kept)
-
-
-def _is_text(found: object) -> bool:
-    return isinstance(found, str) and len(found) <= LONGEST_TEXT
+    return from_plain(EMPTY, plain, WORDS, LENGTHS)
