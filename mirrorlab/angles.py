@@ -203,7 +203,7 @@ def _read(typed: str) -> tuple[Fraction, Fraction, str]:
         raise AngleError(msg)
     if "," in text:
         if text.count(",") > 1 or "." in text:
-            msg = f'"{typed}": one decimal sign at most, a point or a comma; {ACCEPTED}'
+            msg = f'"{typed}": one decimal sign at most, and several angles have spaces between them; {ACCEPTED}'
             raise AngleError(msg)
         text = text.replace(",", ".")
     bracketed = _BRACKETED.match(text)

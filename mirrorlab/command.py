@@ -89,18 +89,31 @@ def _run(words: list[str]) -> int:
         prog="mirrorlab",
         usage="mirrorlab [FILE]\n       mirrorlab VERB ... [--help]\n       mirrorlab [--help] [--version]",
         description="Angles between mirrors in; finite group, images, chambers, point groups and panels out.",
-        epilog=EXAMPLES,
+        epilog=f"{verbs_by_whom()}\n{EXAMPLES}",
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
     parser.add_argument("--version", action="version", version=f"mirrorlab {__version__}")
-    subparsers = parser.add_subparsers(metavar="VERB", prog="mirrorlab", parser_class=Parser, required=True)
+    subparsers = parser.add_subparsers(
+        metavar="VERB", prog="mirrorlab", parser_class=Parser, required=True, help="one of those below"
+    )
     for verb in VERBS:
         if words[0] == verb.name:
             importlib.import_module(verb.module).ADD[verb.name](subparsers)
         else:
-            subparsers.add_parser(verb.name, help=verb.summary)
+            subparsers.add_parser(verb.name)
     args = parser.parse_args(words)
     return int(args.run(args))
+
+
+def verbs_by_whom() -> str:
+    """The verbs with a line each, under whom they are for."""
+    width = max(len(verb.name) for verb in VERBS)
+    lines = []
+    for whom in dict.fromkeys(verb.whom for verb in VERBS):
+        lines.append(f"for {whom}:")
+        lines += [f"  {verb.name:{width}}  {verb.summary}" for verb in VERBS if verb.whom == whom]
+        lines.append("")
+    return "\n".join(lines)
 
 
 def open_window(path: str | None) -> int:

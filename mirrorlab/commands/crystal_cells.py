@@ -98,7 +98,10 @@ def add_fit(subparsers: Any) -> None:
     what = "Rank closed arrangements against measured angles; each angle may be its supplement."
     parser = add_verb(subparsers, "fit", what, FIT_EXAMPLES)
     parser.add_argument(
-        "angles", nargs="+", metavar="ANGLE", help="pair by pair: 12, 13, …, 23, …; as 59.8(3)"
+        "angles",
+        nargs="+",
+        metavar="ANGLE",
+        help="measured angles pair by pair: ab, ac, …, bc, …; as 59.8(3)",
     )
     parser.add_argument(
         "--sigma", type=float, metavar="DEG", help="standard uncertainty of angles without one"
@@ -126,7 +129,8 @@ def add_compare(subparsers: Any) -> None:
         "--tolerance",
         type=float,
         metavar="T",
-        help="largest deviation: in the list's unit, degrees for poles",
+        help="largest deviation: in the list's unit, degrees for poles; if not given, from the uncertainties in the "
+        "list, else 1 percent of its radius or 1 degree",
     )
     turn = parser.add_mutually_exclusive_group()
     turn.add_argument("--refine", action="store_true", help="turn the list to obey the group best")

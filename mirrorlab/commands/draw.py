@@ -47,7 +47,9 @@ def add_draw(subparsers: Any) -> None:
     parser.add_argument(
         "--picture",
         choices=(*MAKERS, STEREOGRAM),
-        help="which picture; by default space, or plane above rank 3",
+        help="space: mirrors and chambers in 3D; flat: mirrors through one line, seen along it; chamber: flat map of "
+        "one chamber; plane: mirrors and images projected on the Coxeter plane, for any rank; stereogram: mirrors, "
+        "axes and images as poles. By default space, or plane above rank 3",
     )
     add_net(parser)
     add_seed(parser)

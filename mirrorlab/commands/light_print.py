@@ -17,7 +17,7 @@ BAR = 40
 MOST_LISTED = 60
 
 
-def print_images(count: ImageCount, listed: bool) -> None:
+def print_images(count: ImageCount, listed: bool, notes: tuple[str, ...]) -> None:
     """Print how many images there are, how bright, and what the seams do."""
     print(count.sentence)
     if count.rule is not None:
@@ -38,7 +38,7 @@ def print_images(count: ImageCount, listed: bool) -> None:
         )
     if listed:
         _list(count)
-    for note in count.notes:
+    for note in (*notes, *count.notes):
         print(f"\nnote: {note}")
 
 

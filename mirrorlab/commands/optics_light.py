@@ -7,7 +7,7 @@ import math
 import sys
 from typing import TYPE_CHECKING, Any
 
-from mirrorlab.commands.assembly_words import add_dimensions, dimensions_of, kind_of
+from mirrorlab.commands.assembly_words import USUAL, add_dimensions, dimensions_of, usual_words
 from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
@@ -52,13 +52,6 @@ VIEW_EXAMPLES = """examples:
   mirrorlab view 90 45 45 --length 200 --sides 60 --object photo.jpg --out mine.png
 """
 
-USUAL: dict[str, dict[str, Any]] = {
-    "wedge": {"length": 200.0, "depth": 60.0},
-    "corner": {"depth": 150.0},
-    "tube": {"length": 200.0, "sides": [50.0]},
-}
-"""Dimensions in mm of an assembly for which none were typed: something that is held in the hand."""
-
 
 def _add_place(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
@@ -67,8 +60,15 @@ def _add_place(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--look", choices=("along", "into"), help="a wedge: along its edge, or into it from the side"
     )
-    parser.add_argument("--eye", type=numbers, metavar="x,y,z", help="where the eye is, in mm")
-    parser.add_argument("--target", type=numbers, metavar="x,y,z", help="what it looks at, in mm")
+    parser.add_argument(
+        "--eye",
+        type=numbers,
+        metavar="x,y,z",
+        help="where the eye is, in mm: x right, y up, z towards the eye, 0 at the far end or the corner's point",
+    )
+    parser.add_argument(
+        "--target", type=numbers, metavar="x,y,z", help="what it looks at, in mm, on the same axes"
+    )
 
 
 def add_images(subparsers: Any) -> None:
@@ -76,7 +76,7 @@ def add_images(subparsers: Any) -> None:
     what = "How many images of a point light makes in finite mirrors, where, how bright; which are cut or overlap."
     parser = add_verb(subparsers, "images", what, IMAGES_EXAMPLES)
     add_mirrors(parser)
-    add_dimensions(parser)
+    add_dimensions(parser, usual=True)
     _add_place(parser)
     parser.add_argument(
         "--point", type=numbers, metavar="x,y,z", help="the point, in mm; by default on the object"
@@ -109,10 +109,16 @@ def add_tolerance(subparsers: Any) -> None:
     )
     parser.add_argument("--seam", metavar="L", help="largest seam wanted: says how far off angles may be")
     parser.add_argument(
-        "--chance", type=float, metavar="D", help="draw errors of this size at random, in degrees"
+        "--chance",
+        type=float,
+        metavar="D",
+        help="draw errors at random, in degrees: their standard deviation, or with --spread uniform the largest",
     )
     parser.add_argument(
-        "--spread", choices=("normal", "uniform"), default="normal", help="of the errors drawn (normal)"
+        "--spread",
+        choices=("normal", "uniform"),
+        default="normal",
+        help="how the errors drawn are spread (normal)",
     )
     parser.add_argument("--draws", type=int, default=10_000, metavar="N", help="assemblies drawn (10000)")
     parser.add_argument("--seed", type=int, default=1, metavar="N", help="the same seed draws the same (1)")
@@ -129,12 +135,14 @@ def add_view(subparsers: Any) -> None:
     parser.add_argument("--out", required=True, metavar="F.png", help="the file to write")
     parser.add_argument("--size", default="1280x720", metavar="WxH", help="pixels (1280x720)")
     parser.add_argument("--samples", type=int, default=2, metavar="N", help="N×N rays a pixel, 1 to 8 (2)")
-    add_dimensions(parser)
+    add_dimensions(parser, usual=True)
     _add_place(parser)
     parser.add_argument("--field", type=float, metavar="DEG", help="field of view across the shorter side")
     what = parser.add_argument_group("object")
     what.add_argument(
-        "--object", metavar="NAME|FILE", help="a picture file, or a pattern: lantern glass, pennant …"
+        "--object",
+        metavar="NAME|FILE",
+        help="a picture file, or a pattern: lantern glass, lantern globe, pennant, ruled card",
     )
     what.add_argument("--at", type=numbers, metavar="x,y,z", help="stand it free between the mirrors, in mm")
     what.add_argument(
@@ -151,17 +159,20 @@ def add_view(subparsers: Any) -> None:
     parser.set_defaults(run=run_view)
 
 
-def assembly_of(args: argparse.Namespace, arrangement: Arrangement) -> Assembly:
-    """The assembly that the words say; usual dimensions where none were typed."""
+def assembly_of(args: argparse.Namespace, arrangement: Arrangement) -> tuple[Assembly, tuple[str, ...]]:
+    """The assembly that the words say, with the usual dimensions and a note of them where none were typed."""
     import numpy as np
 
     from mirrorlab.optics.build import assembly_for, with_angles
+    from mirrorlab.optics.kinds import kind_of
     from mirrorlab.optics.lengths import AssemblyError
 
     kind = kind_of(arrangement)
+    notes: tuple[str, ...] = ()
     if all(getattr(args, name) is None for name in ("length", "depth", "sides", "opening")):
+        notes = (f"no dimensions given; taken: {usual_words(kind)}",)
         for name, value in USUAL[kind].items():
-            setattr(args, name, ",".join(map(str, value)) if isinstance(value, list) else str(value))
+            setattr(args, name, value)
     dimensions = dimensions_of(args, kind)
     if args.look is not None:
         if kind != "wedge":
@@ -182,7 +193,7 @@ def assembly_of(args: argparse.Namespace, arrangement: Arrangement) -> Assembly:
             None if args.target is None else np.array(args.target),
             field_of_view=None if field is None else math.radians(field),
         )
-    return assembly
+    return assembly, notes
 
 
 def run_images(args: argparse.Namespace) -> int:
@@ -191,7 +202,7 @@ def run_images(args: argparse.Namespace) -> int:
     from mirrorlab.optics.images import count_images
 
     arrangement = arrangement_of(args)
-    assembly = assembly_of(args, arrangement)
+    assembly, notes = assembly_of(args, arrangement)
     count = count_images(assembly, None if args.point is None else args.point, args.faintest)
     written: tuple[Path, ...] = ()
     if args.csv is not None:
@@ -201,7 +212,7 @@ def run_images(args: argparse.Namespace) -> int:
     if args.json:
         print_json({**count.to_dict(), "assembly": assembly.to_dict()})
     else:
-        print_images(count, args.list)
+        print_images(count, args.list, notes)
     say_written(written)
     return 0
 
@@ -239,7 +250,8 @@ def run_view(args: argparse.Namespace) -> int:
 
     size = size_of(args.size)
     check_view_name(args.out)
-    assembly = _with_object(args, assembly_of(args, arrangement_of(args)))
+    bare, notes = assembly_of(args, arrangement_of(args))
+    assembly = _with_object(args, bare)
     scene = make_scene(assembly, _picture(args.object), joint=parse_length(args.joint, "joint"))
     pixels = trace(assembly, scene, size, args.samples, _progress if sys.stderr.isatty() else None)
     save_view(args.out, pixels)
@@ -247,7 +259,7 @@ def run_view(args: argparse.Namespace) -> int:
         print_json(
             {"file": args.out, "size": list(size), "samples": args.samples, "assembly": assembly.to_dict()}
         )
-    say_written([args.out])
+    say_written([args.out], notes)
     for caution in cautions_for(Place.EYE, hazards_of(assembly)):
         print(f"{caution.title}: {caution.text}", file=sys.stderr)
     return 0

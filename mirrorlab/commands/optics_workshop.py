@@ -7,7 +7,7 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
-from mirrorlab.commands.assembly_words import add_dimensions, dimensions_of, kind_of
+from mirrorlab.commands.assembly_words import add_dimensions, dimensions_of
 from mirrorlab.commands.output import (
     UsageError,
     add_mirrors,
@@ -50,16 +50,29 @@ def add_build(subparsers: Any) -> None:
     add_mirrors(parser)
     add_dimensions(parser)
     joints = parser.add_argument_group("joints")
-    joints.add_argument("--joint", default="mitred", metavar="KIND", help="mitred, butted or square")
     joints.add_argument(
-        "--order", default="round", help="butted: which runs past, round (each its next) or first"
+        "--joint",
+        default="mitred",
+        metavar="KIND",
+        help="mitred (both edges bevelled to meet), butted (one pane runs past the other) or square "
+        "(edges cut square, the groove filled); mitred if not given",
+    )
+    joints.add_argument(
+        "--order",
+        default="round",
+        help="butted: which runs past: round (each past its next) or first (an earlier letter past "
+        "every later one); round if not given",
     )
     joints.add_argument("--gap", default="0", metavar="L", help="room for tape or sealant")
     stock = parser.add_argument_group("stock sheets")
     stock.add_argument("--stock", metavar="WxH", help="size of a stock sheet: 1200x800, 48inx32in")
     stock.add_argument("--margin", default="10", metavar="L", help="kept free along the sheet's edges (10)")
     stock.add_argument("--kerf", default="0", metavar="L", help="what a cut takes away (0)")
-    stock.add_argument("--cutting", default="straight", help="straight (score and snap) or free (saw, jet)")
+    stock.add_argument(
+        "--cutting",
+        default="straight",
+        help="straight (score and snap) or free (saw, jet); straight if not given",
+    )
     stock.add_argument("--copies", type=int, default=1, metavar="N", help="assemblies to make (1)")
     files = parser.add_argument_group("files")
     files.add_argument(
@@ -72,8 +85,8 @@ def add_build(subparsers: Any) -> None:
         "--layout", metavar="F", help="layout on stock sheets: .dxf, .svg (1:1) or .pdf (reduced)"
     )
     files.add_argument("--report", metavar="F", help="assembly, figures and cautions: .pdf or .txt")
-    files.add_argument("--page", default="A4", help="paper of PDF files: A4, A3 or Letter")
-    files.add_argument("--unit", default="mm", choices=("mm", "in"), help="what lengths are written in")
+    files.add_argument("--page", default="A4", help="paper of PDF files: A4, A3 or Letter (A4)")
+    files.add_argument("--unit", default="mm", choices=("mm", "in"), help="what lengths are written in (mm)")
     files.add_argument("--title", default="", help="of the drawings")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_build)
@@ -85,6 +98,7 @@ def run_build(args: argparse.Namespace) -> int:
     from mirrorlab.optics.build import assembly_for
     from mirrorlab.optics.cutjob import make_cut_job
     from mirrorlab.optics.glass import JointSettings
+    from mirrorlab.optics.kinds import kind_of
     from mirrorlab.optics.lengths import parse_length
     from mirrorlab.optics.report import job_report
 
@@ -252,7 +266,11 @@ def add_choose(subparsers: Any) -> None:
         "--reflectance", type=float, default=0.9, metavar="R", help="kept by one bounce (0.9)"
     )
     add_style(parser)
-    parser.add_argument("--sort", metavar="KEY", help="images, bright, chambers, angle, depth or area")
+    parser.add_argument(
+        "--sort",
+        metavar="KEY",
+        help="images, bright, chambers, angle, depth or area; if not given, by kind, or by nearness to --images",
+    )
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_choose)
 
@@ -323,7 +341,8 @@ def _print_choices(found: tuple[Choice, ...], style: str) -> None:
         )
     print_table(rows)
     print("\nimages: seen beside the object; bright: those that keep a tenth of their light or more;")
-    print("between: chambers between the mirrors, 1 when the images fit together for every eye")
+    print("between: chambers between the mirrors, 1 when the images fit together for every eye;")
+    print("angles at the point: of a corner's panels, where they meet")
 
 
 ADD = {"build": add_build, "choose": add_choose}

@@ -47,11 +47,17 @@ def add_verb(subparsers: Any, name: str, description: str, examples: str) -> arg
 
 def add_mirrors(parser: argparse.ArgumentParser) -> None:
     """Add the ways to say which mirrors are meant."""
-    parser.add_argument("angles", nargs="*", metavar="ANGLE", help="angles pair by pair: ab, ac, …, bc, …")
-    parser.add_argument("--family", metavar="NAME", help="walls of a named group: E7, A1xI2(5)")
-    parser.add_argument("--file", metavar="FILE", help="an arrangement file")
     parser.add_argument(
-        "--normals", metavar="x,y,z", nargs="+", type=numbers, help="mirrors through one point"
+        "angles",
+        nargs="*",
+        metavar="ANGLE",
+        help="angles between the mirrors a, b, c, … pair by pair: ab, ac, …, bc, …; each in degrees (60, 59.9(2)), "
+        "degrees, minutes and seconds (54d44m8s), a fraction of pi (2pi/5) or radians (1.0472rad)",
+    )
+    parser.add_argument("--family", metavar="NAME", help="walls of a named group: E7, A1xI2(5)")
+    parser.add_argument("--file", metavar="FILE", help="an arrangement file, as the window saves it")
+    parser.add_argument(
+        "--normals", metavar="x,y,z", nargs="+", type=numbers, help="normals of mirrors through one point"
     )
     parser.add_argument(
         "--max-denominator",
@@ -71,7 +77,8 @@ def add_mirrors(parser: argparse.ArgumentParser) -> None:
 
 def add_seed(parser: argparse.ArgumentParser) -> None:
     """Add the ways to say where the seed is."""
-    seed = parser.add_mutually_exclusive_group()
+    group = parser.add_argument_group("seed", "the point whose images are made, given in one of these ways")
+    seed = group.add_mutually_exclusive_group()
     seed.add_argument(
         "--heights", type=numbers, metavar="1,2,3", help="seed by its distances from a, b, c, …"
     )

@@ -178,8 +178,13 @@ def parse_symbol(text: str) -> tuple[GroupName, str]:
         return _hermann_mauguin(SETTINGS[plain]), plain
     name = _schoenflies(plain) or _hermann_mauguin(plain)
     if name is None:
+        space = (
+            " (of a space group, write the point group)"
+            if re.match(r"[PABCIFR][-\d]|[PABCIFR][mnabcde]", plain)
+            else ""
+        )
         msg = (
-            f'"{text}": not a point group; write a Hermann–Mauguin symbol (-43m, m-3m, 31m, -10m2, m-3-5) '
+            f'"{text}": not a point group{space}; write a Hermann–Mauguin symbol (-43m, m-3m, 31m, -10m2, m-3-5) '
             "or a Schoenflies symbol (Td, D3d, C5v, Ih)"
         )
         raise SymbolError(msg)

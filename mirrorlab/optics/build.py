@@ -9,6 +9,7 @@ from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.build_corner import corner
 from mirrorlab.optics.build_tube import tube
 from mirrorlab.optics.build_wedge import wedge
+from mirrorlab.optics.kinds import kind_of
 from mirrorlab.optics.lengths import AssemblyError
 from mirrorlab.optics.mirror import MirrorSpec
 
@@ -26,19 +27,10 @@ def assembly_for(arrangement: Arrangement, **dimensions: Any) -> Assembly:
     AssemblyError
         Mirrors that make none of these, or a dimension at fault.
     """
-    n = arrangement.size
-    rank = 0 if arrangement.normals is None else arrangement.normals.shape[1]
-    if n == 2:
+    kind = kind_of(arrangement)
+    if kind == "wedge":
         return wedge(arrangement.angles[0], **dimensions)
-    if n == 3 and rank == 3:
-        return corner(arrangement.angles, **dimensions)
-    if n in (3, 4) and rank == 2 and not arrangement.given_normals:
-        return tube(arrangement.angles, **dimensions)
-    msg = (
-        f"{n} mirrors of rank {rank}: an assembly has two mirrors, three that meet in a point, or three or"
-        " four around one direction"
-    )
-    raise AssemblyError(msg, "angles")
+    return (corner if kind == "corner" else tube)(arrangement.angles, **dimensions)
 
 
 def assembly_from(dimensions: Mapping[str, Any]) -> Assembly:

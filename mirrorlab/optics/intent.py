@@ -8,6 +8,7 @@ from fractions import Fraction
 from itertools import permutations
 from typing import TYPE_CHECKING
 
+from mirrorlab.optics.kinds import kind_of
 from mirrorlab.optics.lengths import AssemblyError
 from mirrorlab.optics.stand import standing_angle
 
@@ -61,15 +62,14 @@ def intent_of(arrangement: Arrangement) -> tuple[Intent, tuple[float, ...]]:
     AssemblyError
         Mirrors that make no assembly, or have no closing angles near.
     """
-    rank = 0 if arrangement.normals is None else arrangement.normals.shape[1]
-    kind = _kind(arrangement.size, rank, arrangement.given_normals)
+    kind = kind_of(arrangement)
     pairs = _joined_pairs(arrangement.size)
     places = [arrangement.pairs.index(pair) for pair in pairs]
     typed = [arrangement.angles[place] for place in places]
     names = tuple(arrangement.letters[i] + arrangement.letters[j] for i, j in pairs)
     degrees = [math.degrees(standing_angle(angle)) for angle in typed]
     meant = tuple(angle.fraction for angle in typed if angle.fraction is not None)
-    seamless = _seamless(kind, degrees)
+    seamless = _seamless_corner(arrangement) if kind == "corner" else _seamless(kind, degrees)
     closes = len(meant) == len(typed) and (kind != "corner" or arrangement.finding().group is not None)
     if seamless is not None:
         meant = seamless
@@ -89,10 +89,13 @@ def intent_of(arrangement: Arrangement) -> tuple[Intent, tuple[float, ...]]:
     return Intent(kind, names, meant), tuple(actual)
 
 
+def _seamless_corner(arrangement: Arrangement) -> tuple[Fraction, ...] | None:
+    """The nearest angles that close without a seam: single ones that divide 180° need not close together."""
+    near = (s for s in arrangement.finding().suggestions if s.kind == "closed" and s.largest_change <= NEAR)
+    return next((tuple(s.angles) for s in near), None)
+
+
 def _seamless(kind: str, degrees: list[float]) -> tuple[Fraction, ...] | None:
-    # Corners are decided by the finding: single angles that divide 180° need not close together.
-    if kind == "corner":
-        return None
     if kind == "wedge":
         tried: list[tuple[int, ...]] = [(max(2, round(180 / degrees[0])),)]
     elif len(degrees) == 4:
@@ -107,20 +110,6 @@ def _seamless(kind: str, degrees: list[float]) -> tuple[Fraction, ...] | None:
 
 def _furthest(degrees: list[float], fractions: tuple[Fraction, ...]) -> float:
     return max(abs(d - 180 * float(f)) for d, f in zip(degrees, fractions, strict=True))
-
-
-def _kind(size: int, rank: int, given_normals: bool) -> str:
-    if size == 2:
-        return "wedge"
-    if size == 3 and rank == 3:
-        return "corner"
-    if size in (3, 4) and rank == 2 and not given_normals:
-        return "tube"
-    msg = (
-        f"{size} mirrors of rank {rank}: an assembly has two mirrors, three that meet in a point, or three or"
-        " four around one direction"
-    )
-    raise AssemblyError(msg, "angles")
 
 
 def _joined_pairs(size: int) -> list[tuple[int, int]]:

@@ -143,6 +143,7 @@ def test_candidates_as_json_and_csv(capsys, tmp_path):
     [
         (("group", "xx"), '"xx": not a point group'),
         (("group", ""), "not a point group"),
+        (("group", "Fm-3m"), "of a space group, write the point group"),
         (("group", "D500h"), "up to order 1440"),
         (("group", "m-3m", "--point", "1,2"), "three finite coordinates"),
         (("group", "m-3m", "--cell", "1,1,2,90,90,90"), "do not have the symmetry m-3m"),

@@ -177,3 +177,18 @@ def test_counting_loads_no_window_library_and_no_compiler() -> None:
         subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True).stderr
         == "[]"
     )
+
+
+@pytest.mark.parametrize(
+    ("angles", "taken"),
+    [("60", "--length 200 --depth 60"), ("90 60 45", "--depth 150"), ("60 60 60", "--length 200 --sides 50")],
+)
+def test_dimensions_that_were_not_given_are_said(
+    capsys: pytest.CaptureFixture[str], angles: str, taken: str
+) -> None:
+    _, out, _ = run(capsys, "images", *angles.split())
+    assert f"note: no dimensions given; taken: {taken}\n" in out
+    assert taken in run(capsys, "images", "--help")[1].replace("\n ", "")
+    _, typed, _ = run(capsys, "images", *angles.split(), *taken.split())
+    assert "no dimensions given" not in typed
+    assert typed == out.replace(f"\nnote: no dimensions given; taken: {taken}\n", "")

@@ -121,6 +121,8 @@ def test_going_around_the_corner_is_worse_than_around_an_edge() -> None:
         (["72"], "wedge", [(2, 5)], [0]),
         (["90", "60", "36.3"], "corner", [(1, 2), (1, 3), (1, 5)], [0, 0, 0.3]),
         (["90.2", "59.9", "45"], "corner", [(1, 2), (1, 3), (1, 4)], [0.2, -0.1, 0]),
+        (["90", "90", "59.8"], "corner", [(1, 2), (1, 2), (1, 3)], [0, 0, -0.2]),
+        (["72", "60", "60"], "corner", [(2, 5), (1, 3), (1, 3)], [0, 0, 0]),
         (["60", "60", "60"], "tube", [(1, 3)] * 3, [0, 0, 0]),
         (["90", "45", "45"], "tube", [(1, 2), (1, 4), (1, 4)], [0, 0, 0]),
         (["91", "30", "59"], "tube", [(1, 2), (1, 6), (1, 3)], [1, 0, -1]),
@@ -133,6 +135,11 @@ def test_what_was_meant(typed: list[str], kind: str, fractions, errors) -> None:
     assert intent.fractions == tuple(Fraction(*f) for f in fractions)
     found = np.degrees(np.array(actual) - np.array(intent.radians))
     assert found == pytest.approx(errors, abs=1e-9)
+
+
+def test_what_no_planes_make_is_said_so() -> None:
+    with pytest.raises(optics.AssemblyError, match="no planes have these angles"):
+        optics.intent_of(ml.Arrangement.from_angles(["50", "50", "50"]))
 
 
 def test_star_angles_have_a_seam_even_when_exact() -> None:
