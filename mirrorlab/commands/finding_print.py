@@ -5,7 +5,7 @@ from __future__ import annotations
 from mirrorlab.angles import Angle, write_angle
 from mirrorlab.commands.output import print_table
 from mirrorlab.mirrors import Arrangement, Finding, ReflectionGroup
-from mirrorlab.mirrors.sentence import sentence
+from mirrorlab.mirrors.sentence import moved_words, sentence
 from mirrorlab.mirrors.suggestions import Suggestion
 
 ROUNDED = 9
@@ -133,7 +133,7 @@ def print_tube(finding: Finding) -> None:
         symbols = tube.moved_point_group
         names = " × ".join(tube.moved_families)
         text = names if symbols is None else f"{symbols.hermann_mauguin} ({names})"
-        rows.append(("moved through one point", f"{text}, order {tube.moved_order}"))
+        rows.append((moved_words(finding.rank), f"{text}, order {tube.moved_order}"))
     print_table(rows)
 
 

@@ -65,12 +65,16 @@ def _tube(finding: Finding) -> str:
         families = " × ".join(tube.moved_families)
         symbol = tube.moved_point_group
         name = families if symbol is None else f"{symbol.hermann_mauguin} ({families})"
-        where = {1: "onto one another", 2: "through one line"}.get(finding.rank, "through one point")
-        moved = f"; moved {where} the same planes make {name}"
+        moved = f"; {moved_words(finding.rank)} the same planes make {name}"
     bounded = all(part.singular for part in finding.parts)
     heads = {1: "Parallel mirrors", 2: "A tube" if bounded else "A tube open on one side"}
     head = heads.get(finding.rank, "A cell" if bounded else "A cell open on one side")
     return f"{head}: {how}{plane}{moved}."
+
+
+def moved_words(rank: int) -> str:
+    """How the planes of a tube of a rank are moved to make a finite group."""
+    return "moved " + {1: "onto one another", 2: "through one line"}.get(rank, "through one point")
 
 
 def _unbuildable(finding: Finding) -> str:

@@ -49,6 +49,22 @@ def test_every_kind_can_be_printed_whole(answer: Answer, words: list[str]) -> No
     assert all(line == line.rstrip() for line in lines)
 
 
+@pytest.mark.parametrize(
+    ("words", "moved"),
+    [
+        (["0"], "moved onto one another"),
+        (["60", "60", "60"], "moved through one line"),
+        (["90", "60", "60", "60", "60", "90"], "moved through one point"),
+    ],
+)
+def test_the_table_moves_the_mirrors_where_the_sentence_does(
+    answer: Answer, words: list[str], moved: str
+) -> None:
+    lines = answer("check", *words)[1].splitlines()
+    assert f"; {moved} the same planes make" in lines[0]
+    assert [line for line in lines[1:] if line.startswith(f"  {moved}  ")]
+
+
 def test_a_measured_angle_shows_how_far_off_it_is(answer: Answer) -> None:
     _, out, _ = answer("check", "59.9(2)", "60.0", "59.93")
     rows = [line.split() for line in out.splitlines() if re.match(r"  [abc]{2} ", line)]
