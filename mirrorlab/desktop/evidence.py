@@ -87,7 +87,7 @@ class EvidenceSheet(QFrame):
             return
         self.flags.drop_last()
         if not suggestions:
-            self.flags.add(label("No set of angles that closes was found nearby.", "muted", wrap=True))
+            self.flags.add(label("No other set of angles that closes or tiles was found nearby.", "muted", wrap=True))
             return
         box = QWidget()
         grid = QGridLayout(box)
@@ -239,5 +239,6 @@ def suggestion_html(suggestion: Suggestion, notation: str) -> tuple[str, str, st
     symbol, _, _ = suggestion.name.partition(" (")
     spatial = "(" in suggestion.name
     runs = symbols.hermann_mauguin(symbol) if spatial else symbols.families(suggestion.families)
-    cut = "" if suggestion.kind == "closed" else ", subdivided"
+    cut = " tube" if suggestion.kind == "tube" else ""
+    cut += ", subdivided" if (suggestion.chambers_between or 1) > 1 else ""
     return " ".join(angles), symbols.as_html(runs) + cut, f"by {suggestion.largest_change:.3g}°"

@@ -26,7 +26,7 @@ from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.words import describe
 from mirrorlab.drawing.model import Drawing, Key
 
-HINTED = frozenset({"image", "seed", "mirror"})
+HINTED = frozenset({"image", "seed", "mirror", "listed"})
 """Parts of a picture that are told beside the pointer as well as in the status line."""
 
 WIDEST_NAME = 15

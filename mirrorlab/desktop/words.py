@@ -89,6 +89,7 @@ _TELLERS = {
     "axis": _crystal("axis"),
     "equivalent": _crystal("equivalent"),
     "group mirror": _crystal("group mirror"),
+    "listed": _crystal("listed"),
 }
 
 

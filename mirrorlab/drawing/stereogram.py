@@ -7,13 +7,14 @@ Mirrors are bold great circles, axes carry their trade symbols, upper points are
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import lru_cache
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from mirrorlab.crystal.combinations import Combination
+from mirrorlab.crystal.comparison import Comparison
 from mirrorlab.crystal.identify import Element, elements_of
 from mirrorlab.crystal.indices import printed
 from mirrorlab.crystal.lattices import Alignment
@@ -147,6 +148,38 @@ def arrangement_stereogram(
     return parts.drawing("Stereogram", frame)
 
 
+def list_stereogram(comparison: Comparison, options: StereogramOptions = DEFAULT) -> Drawing:
+    """A list of points or poles and what it obeys of a group, in the group's setting.
+
+    Mirrors that the list does not obey are flagged, and so are points that more operations of the group leave without
+    a partner than they leave most of the points. Axes are those of the largest group that survives. Points at the centre have no direction and are left
+    out.
+
+    Returns
+    -------
+    Drawing
+        Keys: ("generated", k) by row of ``group.mirror_normals``, ("axis", k), ("listed", k) by point of the list.
+    """
+    group = comparison.group
+    survives = [one.survives for one in comparison.operations]
+    parts = _Parts(options)
+    parts.underlay()
+    for k, (normal, mirror) in enumerate(zip(group.mirror_normals, group.mirrors, strict=True)):
+        holds = survives[group.operations.index(mirror)]
+        parts.mirror(normal, Role.GENERATED_MIRROR if holds else Role.FLAGGED, ("generated", k))
+    kept = group.cartesian[list(comparison.subgroup)]
+    if options.axes:
+        parts.axes(elements_of(kept), bool((np.abs(kept + np.eye(3)).max(axis=(1, 2)) < _SAME).any()))
+    if options.points:
+        parts.listed(comparison)
+    if options.labels:
+        parts.setting(group.basis)
+    drawing = parts.drawing(f"{comparison.points.source} and {group.setting}", group.axes)
+    flagged = any(part.role is Role.FLAGGED for part in (*drawing.lines, *drawing.points))
+    said = "flagged: mirrors that the list does not obey, points that stand apart"
+    return replace(drawing, notes=(said,) if flagged else ())
+
+
 @lru_cache(maxsize=64)
 def _clear_for(group: NamedGroup, projection: Projection) -> Array:
     return clear_direction(group.cartesian, projection)
@@ -248,6 +281,25 @@ class _Parts:
                     self.points.append(Points(Role.FACE, places[rows], keys, symbol, form))
         if self.options.labels:
             self._label_poles(combination, places, upper)
+
+    def listed(self, comparison: Comparison) -> None:
+        directed = np.flatnonzero(np.linalg.norm(comparison.coordinates, axis=1) > _SAME)
+        if not len(directed):
+            return
+        places, upper = self.projection.project(comparison.coordinates[directed])
+        names = comparison.points.labels
+        lonely = np.sum([one.partner < 0 for one in comparison.operations], axis=0)
+        alone = (lonely > np.median(lonely))[directed]
+        for symbol, side in (("o", ~upper), ("+", upper)):
+            for role, those in ((Role.FACE, ~alone), (Role.FLAGGED, alone)):
+                rows = np.flatnonzero(side & those)
+                if len(rows):
+                    keys = tuple(("listed", int(directed[k])) for k in rows)
+                    self.points.append(Points(role, places[rows], keys, symbol))
+        if not self.options.labels or len(directed) > MOST_LABELS:
+            return
+        for k, place in zip(directed.tolist(), places, strict=True):
+            self.labels.append(Label(names[k], place + np.array([0.0, 0.06, 0.0]), Role.FACE, ("listed", k)))
 
     def _label_poles(self, combination: Combination, places: Array, upper: NDArray[np.bool_]) -> None:
         few = int(upper.sum()) <= MOST_LABELS

@@ -7,7 +7,9 @@ from hypothesis import strategies as st
 
 import mirrorlab as ml
 from mirrorlab.crystal.combinations import combination
+from mirrorlab.crystal.compare import compare_points
 from mirrorlab.crystal.lattices import align
+from mirrorlab.crystal.point_lists import parse_points
 from mirrorlab.crystal.pointgroups import point_group
 from mirrorlab.drawing.form import form_drawing
 from mirrorlab.drawing.model import Role
@@ -17,6 +19,7 @@ from mirrorlab.drawing.stereogram import (
     arrangement_stereogram,
     clear_direction,
     group_stereogram,
+    list_stereogram,
 )
 
 FAMILIES = [["90", "60", "45"], ["90", "60", "36"], ["90", "90", "60"], ["60"], []]
@@ -197,3 +200,32 @@ def test_form_drawing(symbol, faces):
     assert sum(line.key[0] == "edge" for line in drawing.lines) == len(made.solid.edges)
     assert np.linalg.norm(drawing.faces[0].vertices, axis=1).max() == pytest.approx(1)
     assert ("open" in " ".join(drawing.notes)) == (not made.closed)
+
+
+def test_a_list_with_one_point_moved_flags_it_and_the_mirrors_it_breaks():
+    """All images of a point of mmm, the last one moved: mirrors break, and only the moved point stands apart."""
+    signs = np.array(np.meshgrid([1, -1], [1, -1], [1, -1])).reshape(3, -1).T
+    rows = signs * [0.3, 0.5, 0.9]
+    rows[-1] *= [1.2, 0.9, 1.0]
+    text = "label,x,y,z\n" + "".join(f"P{k},{x},{y},{z}\n" for k, (x, y, z) in enumerate(rows))
+    drawing = list_stereogram(compare_points(parse_points(text, "K-7"), "mmm", 0.01))
+    assert "K-7" in drawing.title
+    assert [line.role for line in drawing.lines if line.key[0] == "generated"] == [Role.FLAGGED] * 3
+    listed = {key: block.role for block in drawing.points for key in block.keys if key[0] == "listed"}
+    assert [k for (_, k), role in sorted(listed.items()) if role is Role.FLAGGED] == [7]
+    assert len(listed) == 8
+    assert drawing.notes
+    for block in drawing.points:
+        for (kind, k), place in zip(block.keys, block.positions, strict=True):
+            if kind == "listed":
+                np.testing.assert_allclose(place, Projection().project(rows[k])[0][0], atol=1e-9)
+
+
+def test_a_list_that_obeys_flags_nothing():
+    text = "label,x,y,z\n" + "".join(
+        f"P{k},{s},{t},0.5\n" for k, (s, t) in enumerate([(1, 1), (1, -1), (-1, 1), (-1, -1)])
+    )
+    drawing = list_stereogram(compare_points(parse_points(text, "K-8"), "mm2", 0.01))
+    assert not any(part.role is Role.FLAGGED for part in (*drawing.lines, *drawing.points))
+    assert not drawing.notes
+    assert any(block.role is Role.AXIS and block.symbol == "2" for block in drawing.points)

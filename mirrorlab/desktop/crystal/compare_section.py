@@ -2,21 +2,21 @@
 
 from __future__ import annotations
 
-from functools import lru_cache, partial
+from collections.abc import Hashable
+from functools import partial
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from PySide6.QtCore import QSignalBlocker
 from PySide6.QtWidgets import QCheckBox, QHBoxLayout, QWidget
 
-from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.crystal.symbols import typographic
 from mirrorlab.desktop import symbols
 from mirrorlab.desktop.bench_parts import FactRows, LineField
 from mirrorlab.desktop.crystal.answered_section import AnsweredSection
 from mirrorlab.desktop.crystal.crystal_parts import Choice
 from mirrorlab.desktop.crystal.crystal_state import ORIENTATIONS
-from mirrorlab.desktop.crystal.workings import Working, cell_basis
+from mirrorlab.desktop.crystal.workings import Working, cell_basis, read_list
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column
@@ -161,6 +161,11 @@ class CompareSection(AnsweredSection):
         if not bad and self.rows.current == UNREAD:
             self.rows.choose(OPERATIONS)
 
+    def _answered(self, question: Hashable, answer: Any) -> None:
+        super()._answered(question, answer)
+        if self.state.marks == "list":
+            self.document.crystal_changed.emit()  # the stereogram has waited for it
+
     # -- showing -----------------------------------------------------------------------------------
 
     def show_answer(self) -> None:
@@ -207,7 +212,7 @@ class CompareSection(AnsweredSection):
             self.title = f"{len(found.surviving)} of {found.group.order} operations survive"
             self.note = f"of {typographic(found.group.setting)}; deviations in {_unit(found)}"
         else:
-            self.model.set_columns(point_columns(found))
+            self.model.set_columns(point_columns(found), "listed")
             self.title = f"{len(found.points.labels)} {found.points.what}"
             self.note = f"turned to the standard setting, Cartesian; deviations in {_unit(found)}"
         self.rows_changed.emit()
@@ -217,17 +222,6 @@ class CompareSection(AnsweredSection):
     def _work_with_survivor(self) -> None:
         if self.answer is not None:
             self.change(f"group {self.answer.symbol}", group=self.answer.symbol)
-
-
-@lru_cache(maxsize=4)
-def read_list(text: str, source: str) -> PointList | str:
-    """The list, or why it cannot be read."""
-    from mirrorlab.crystal.point_lists import parse_points
-
-    try:
-        return parse_points(text, source)
-    except CrystalError as error:
-        return str(error)
 
 
 def _frozen(basis: Any) -> bytes:

@@ -14,7 +14,7 @@ from mirrorlab.desktop.crystal import crystal_pictures, libraries
 from mirrorlab.desktop.crystal.cell_section import CellSection
 from mirrorlab.desktop.crystal.compare_section import CompareSection
 from mirrorlab.desktop.crystal.crystal_files import take_cif, take_list
-from mirrorlab.desktop.crystal.crystal_state import NETS, crystal_state
+from mirrorlab.desktop.crystal.crystal_state import MARKS, NETS, crystal_state
 from mirrorlab.desktop.crystal.fit_section import FitSection
 from mirrorlab.desktop.crystal.forms_section import FormsSection
 from mirrorlab.desktop.crystal.group_section import GroupSection
@@ -22,8 +22,9 @@ from mirrorlab.desktop.crystal.positions_section import PositionsSection
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, label, rule
 from mirrorlab.desktop.section_bench import SectionBench
+from mirrorlab.drawing.model import Drawing
 
-BELOW = ("Group", "Positions", "Forms")
+BELOW = ("Group", "Positions", "Forms", "Compare")
 """Sections that the stereogram shows; its settings stand below them."""
 
 
@@ -33,13 +34,14 @@ class CrystalBench(SectionBench):
     title = "Crystal"
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        self.compare = CompareSection(document)
         sections = (
             GroupSection(document),
             PositionsSection(document),
             FormsSection(document),
             CellSection(document),
             FitSection(document),
-            CompareSection(document),
+            self.compare,
         )
         super().__init__(document, sections, "Group", parent)
         self.net = StereogramSettings(document)
@@ -53,6 +55,8 @@ class CrystalBench(SectionBench):
     def refresh(self) -> None:
         self.net.setVisible(self.section.name in BELOW)
         self.net.refresh()
+        if crystal_state(self.document).marks == "list" and self.section is not self.compare:
+            self.compare.refresh()
         super().refresh()
 
     def open_file(self, path: Path) -> str:
@@ -69,7 +73,10 @@ class CrystalBench(SectionBench):
         return said
 
     def pictures(self) -> dict[str, PictureMaker]:
-        return {"Stereogram": crystal_pictures.stereogram, "Form": crystal_pictures.solid}
+        return {"Stereogram": self._stereogram, "Form": crystal_pictures.solid}
+
+    def _stereogram(self, document: Document) -> Drawing:
+        return crystal_pictures.stereogram(document, self.compare.answer)
 
 
 class StereogramSettings(QWidget):
@@ -92,7 +99,12 @@ class StereogramSettings(QWidget):
         self.underlay = QCheckBox("Net")
         self.underlay.setToolTip("The net under the stereogram, every ten degrees")
         self.shown = Segments(
-            ("Images", "Poles"), hints=("The images of the seed", "The poles of the typed forms")
+            ("Images", "Poles", "List"),
+            hints=(
+                "The images of the seed",
+                "The poles of the typed forms",
+                "The points or poles of the list that is compared",
+            ),
         )
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
@@ -107,14 +119,14 @@ class StereogramSettings(QWidget):
         column.addWidget(self.shown)
         self.nets.chosen.connect(lambda k: self._change("projection", net=NETS[k]))
         self.underlay.toggled.connect(lambda on: self._change("net", underlay=on))
-        self.shown.chosen.connect(lambda k: self._change("stereogram", poles=bool(k)))
+        self.shown.chosen.connect(lambda k: self._change("stereogram", marks=MARKS[k]))
         self.refresh()
 
     def refresh(self) -> None:
         """Show the document's settings."""
         state = crystal_state(self.document)
         self.nets.choose(NETS.index(state.net))
-        self.shown.choose(int(state.poles))
+        self.shown.choose(MARKS.index(state.marks))
         with QSignalBlocker(self.underlay):
             self.underlay.setChecked(state.underlay)
 

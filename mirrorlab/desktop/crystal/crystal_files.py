@@ -24,7 +24,7 @@ def take_cif(document: Document, file: CrystalFile) -> str:
         crystal_state(document),
         group=file.setting or file.point_group,
         faces=(),
-        poles=False,
+        marks="images",
         constants=file.cell_texts,
         centring=file.cell.centring,
         cell_name=file.block,

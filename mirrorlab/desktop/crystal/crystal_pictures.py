@@ -18,6 +18,7 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.drawing.model import Drawing, Key, Label, Line, Points, Role
 
 if TYPE_CHECKING:
+    from mirrorlab.crystal.comparison import Comparison
     from mirrorlab.drawing.stereogram import StereogramOptions
 
 Array = NDArray[np.float64]
@@ -33,17 +34,30 @@ LETTER_PART = 0.6
 SEED: Key = ("image", 0)
 
 
-def stereogram(document: Document) -> Drawing:
-    """Mirrors, axes and images or poles of the working group. Raises `NoPicture` where there is none."""
+def stereogram(document: Document, comparison: Comparison | None = None) -> Drawing:
+    """Mirrors and axes of the working group with images, poles or a list of points.
+
+    Parameters
+    ----------
+    comparison : Comparison, optional
+        The list held against a group, when it has been.
+
+    Raises
+    ------
+    NoPicture
+        There is none, or not yet.
+    """
     try:
         work = working_of(document)
     except CrystalError as error:
         raise NoPicture(str(error)) from None
     state = crystal_state(document)
-    if state.poles and loaded(document):
+    if state.marks == "list":
+        return _listed(document, work, state, comparison)
+    if state.marks == "poles":
+        if not loaded(document):
+            raise NoPicture(LOADING)
         return _poles(document, work, state)
-    if state.poles:
-        raise NoPicture(LOADING)
     if work.own and document.finding.rank <= 3:
         return _of_the_mirrors(document, state)
     return _of_the_group(document, work, state)
@@ -101,6 +115,18 @@ def _poles(document: Document, work: Working, state: CrystalState) -> Drawing:
     return _linked(document, work, group_stereogram(work.group, made, None, _options(state)))
 
 
+def _listed(document: Document, work: Working, state: CrystalState, comparison: Comparison | None) -> Drawing:
+    from mirrorlab.drawing.stereogram import list_stereogram
+
+    if not state.list_text:
+        msg = "No list yet. Open a list of points or poles under Compare, or drop it on the window."
+        raise NoPicture(msg)
+    if comparison is None or comparison.group is not work.group:
+        msg = "No comparison of the list with the working group yet; see Compare."
+        raise NoPicture(msg)
+    return _linked(document, work, list_stereogram(comparison, _options(state)))
+
+
 def _of_the_group(document: Document, work: Working, state: CrystalState) -> Drawing:
     from mirrorlab.drawing.stereogram import group_stereogram
 
@@ -138,7 +164,8 @@ def _linked(document: Document, work: Working, drawing: Drawing) -> Drawing:
         if key[0] != "mirror":
             lines.append(replace(line, key=key))
             continue
-        lines.append(replace(line, key=key, role=Role.TYPED_MIRROR, index=key[1], weight=1.0))
+        role = line.role if line.role is Role.FLAGGED else Role.TYPED_MIRROR
+        lines.append(replace(line, key=key, role=role, index=key[1], weight=1.0))
         spot = line.points[int(LETTER_PART * len(line.points)) if line.closed else 0]
         letter = document.arrangement.letters[key[1]]
         labels.append(Label(letter, LETTER_AT * spot, Role.TYPED_MIRROR, key, key[1]))
@@ -202,7 +229,12 @@ def axis_directions(document: Document, work: Working) -> Array:
 
     matrices = work.group.cartesian
     group = document.finding.group
-    if work.own and group is not None and work.rotation is not None and not crystal_state(document).poles:
+    if (
+        work.own
+        and group is not None
+        and work.rotation is not None
+        and crystal_state(document).marks == "images"
+    ):
         small, _ = group.elements()
         flat = np.broadcast_to(np.eye(3), (len(small), 3, 3)).copy()
         flat[:, : small.shape[1], : small.shape[1]] = small

@@ -15,6 +15,7 @@ STANDARD_TOLERANCE = 3.0
 """Degrees of obliquity within which lattice mirrors are looked for; also what `lattice_mirrors` starts from."""
 
 NETS = ("wulff", "schmidt")
+MARKS = ("images", "poles", "list")
 ORIENTATIONS = ("given", "refined", "searched")
 
 
@@ -32,8 +33,8 @@ class CrystalState:
         "wulff" or "schmidt".
     underlay : bool
         The net under the stereogram.
-    poles : bool
-        The stereogram shows the poles of the forms instead of the images of the seed.
+    marks : str
+        What the stereogram shows: the "images" of the seed, the "poles" of the forms, or the "list" of points.
     constants : tuple of str
         a, b, c, α, β, γ as typed, with their uncertainties; all empty for no cell.
     centring : str
@@ -64,7 +65,7 @@ class CrystalState:
     faces: tuple[str, ...] = ()
     net: str = "wulff"
     underlay: bool = False
-    poles: bool = False
+    marks: str = "images"
     constants: tuple[str, ...] = ("",) * 6
     centring: str = "P"
     cell_name: str = ""
@@ -103,5 +104,5 @@ def crystal_state(document: Document) -> CrystalState:
 
 def from_mapping(plain: Mapping[str, Any]) -> CrystalState:
     """A value from plain JSON."""
-    words = {"net": NETS, "orientation": ORIENTATIONS}
+    words = {"net": NETS, "marks": MARKS, "orientation": ORIENTATIONS}
     return from_plain(EMPTY, plain, words, {"constants": len(CONSTANTS)}, long={"list_text"})

@@ -6,8 +6,9 @@ import numpy as np
 
 from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.desktop.crystal.crystal_pictures import axis_directions
+from mirrorlab.desktop.crystal.crystal_state import crystal_state
 from mirrorlab.desktop.crystal.libraries import loaded
-from mirrorlab.desktop.crystal.workings import SAME_PLACE, solid_of, working_of
+from mirrorlab.desktop.crystal.workings import SAME_PLACE, read_list, solid_of, working_of
 from mirrorlab.desktop.document import Document
 
 
@@ -60,4 +61,19 @@ def group_mirror(document: Document, index: int) -> str:
     return f"Mirror {group.mirrors[index].text} of {group.typographic}"
 
 
-TELLERS = {"face": face, "axis": axis, "equivalent": equivalent, "group mirror": group_mirror}
+def listed(document: Document, index: int) -> str:
+    """A point of the compared list."""
+    state = crystal_state(document)
+    points = read_list(state.list_text, state.list_name)
+    if isinstance(points, str):
+        return ""
+    return f"{points.labels[index]}, line {points.lines[index]} of {points.source}"
+
+
+TELLERS = {
+    "face": face,
+    "axis": axis,
+    "equivalent": equivalent,
+    "group mirror": group_mirror,
+    "listed": listed,
+}

@@ -150,11 +150,11 @@ class FormsSection(Section):
     def _typed(self, texts: tuple[str, ...]) -> None:
         before = self.state.faces
         self.change("faces", self.gesture, faces=texts)
-        if texts and not before and not self.state.poles:
+        if texts and not before and self.state.marks != "poles":
             self.picture_wanted.emit("Form")
 
     def _poles(self) -> None:
-        self.change("poles in the stereogram", poles=True)
+        self.change("poles in the stereogram", marks="poles")
         self.picture_wanted.emit("Stereogram")
 
     def _fill_menu(self) -> None:

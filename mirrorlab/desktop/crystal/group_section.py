@@ -84,7 +84,7 @@ class GroupSection(Section):
     # -- showing -----------------------------------------------------------------------------------
 
     def refresh(self) -> None:
-        now = (self.document.finding, self.state.group, self.state.poles)
+        now = (self.document.finding, self.state.group, self.state.marks)
         if now == self._shown:
             return  # another seed is no reason to look for groups
         self._shown = now

@@ -23,6 +23,7 @@ if TYPE_CHECKING:
     from mirrorlab.crystal.combinations import Combination
     from mirrorlab.crystal.indices import Indices
     from mirrorlab.crystal.lattices import Alignment
+    from mirrorlab.crystal.point_lists import PointList
     from mirrorlab.crystal.pointgroups import NamedGroup
     from mirrorlab.mirrors import Finding
 
@@ -179,6 +180,17 @@ def _solid(group: NamedGroup, faces: tuple[str, ...], state: CrystalState | None
         return None
     basis = None if state is None else cell_basis(group, state)
     return combination(group, [indices for _, indices, _ in rows], [far for _, _, far in rows], basis)
+
+
+@lru_cache(maxsize=4)
+def read_list(text: str, source: str) -> PointList | str:
+    """The list, or why it cannot be read."""
+    from mirrorlab.crystal.point_lists import parse_points
+
+    try:
+        return parse_points(text, source)
+    except CrystalError as error:
+        return str(error)
 
 
 def simple_mirrors(group: NamedGroup) -> Array:

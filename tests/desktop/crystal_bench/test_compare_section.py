@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import itertools
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -11,6 +12,7 @@ from PySide6.QtTest import QTest
 
 from mirrorlab.desktop.crystal.compare_section import POINTS, UNREAD
 from mirrorlab.desktop.crystal.crystal_state import crystal_state
+from mirrorlab.drawing.model import Role
 
 LONG = 60_000
 
@@ -118,3 +120,41 @@ def test_a_file_that_is_no_list_changes_nothing(window, bench, tmp_path):
     assert not window.filing.open_path(path)
     assert window.document.state is before
     assert "no columns x,y,z" in window.notice.words.text()
+
+
+def test_the_list_in_the_stereogram(window, bench, opened, qtbot):
+    """Points are where they are read; what the list does not obey is flagged; table and picture choose together."""
+    compare = opened(tetrahedral())
+    window.stage.left.choose("Stereogram")
+    QTest.mouseClick(bench.net.shown.button(2), Qt.MouseButton.LeftButton)
+    assert crystal_state(window.document).marks == "list"
+    drawing = window.stage.left.drawing
+    listed = [key for points in drawing.points for key in points.keys if key[0] == "listed"]
+    assert sorted(k for _, k in listed) == list(range(24))
+    flagged = [line for line in drawing.lines if line.role is Role.FLAGGED]
+    assert len(flagged) == 3, "of m-3m, -43m keeps the six diagonal mirrors and loses the three of the axes"
+    compare.rows.button(POINTS).click()
+    window.document.select(("listed", 5))
+    index = window.table.rows.selectionModel().currentIndex()
+    assert window.table.rows.model().key_of(index.row()) == ("listed", 5)
+
+
+def test_the_stereogram_waits_for_the_comparison(window, bench, section, opened, qtbot):
+    opened(tetrahedral())
+    window.stage.left.choose("Stereogram")
+    QTest.mouseClick(bench.net.shown.button(2), Qt.MouseButton.LeftButton)
+    section("Group")
+    window.document.set_crystal(replace(crystal_state(window.document), group="-43m"), "group")
+    qtbot.waitUntil(
+        lambda: window.stage.left.drawing is not None and "-43m" in window.stage.left.drawing.title,
+        timeout=LONG,
+    )
+    assert not any(line.role is Role.FLAGGED for line in window.stage.left.drawing.lines)
+
+
+def test_without_a_list_the_stereogram_says_how_to_open_one(window, bench):
+    window.stage.left.choose("Stereogram")
+    QTest.mouseClick(bench.net.shown.button(2), Qt.MouseButton.LeftButton)
+    title, reason = window.stage.left.words
+    assert title == "Stereogram"
+    assert "Open a list" in reason
