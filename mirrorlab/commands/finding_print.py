@@ -29,7 +29,7 @@ def print_finding(arrangement: Arrangement, finding: Finding, style: str = "degr
         for flag in finding.flags:
             print(f"  {flag.reason_in(style)}")
     print_ways("the same planes with one angle read from the other side", finding.supplements, style)
-    print_ways("nearest that close", finding.suggestions, style)
+    print_ways("nearest that close or tile", finding.suggestions, style)
 
 
 def print_angles(arrangement: Arrangement, finding: Finding, style: str) -> None:

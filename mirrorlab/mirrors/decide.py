@@ -18,7 +18,7 @@ from mirrorlab.mirrors.finding import CLOSED, OPEN, SUBDIVIDED, TUBE, UNBUILDABL
 from mirrorlab.mirrors.flags import cycle_flags, pair_flags
 from mirrorlab.mirrors.group import ReflectionGroup, TooLarge, build_group
 from mirrorlab.mirrors.spelling import spell_walls
-from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, supplements
+from mirrorlab.mirrors.suggestions import Suggestion, Verdict, nearest_closing, nearest_room, supplements
 from mirrorlab.mirrors.tube import Tube, describe_tube
 
 if TYPE_CHECKING:
@@ -73,9 +73,10 @@ def decide(arrangement: Arrangement) -> Finding:
         def suggest() -> tuple[Suggestion, ...]:
             if kind == CLOSED or arrangement.given_normals or arrangement.size < 2:
                 return ()
+            known = (arrangement.angles, arrangement.size, arrangement.pair_names, verdict)
             if arrangement.size > SPACE and _stands_in_a_room(kind, rank, arrangement):
-                return ()
-            return nearest_closing(arrangement.angles, arrangement.size, arrangement.pair_names, verdict)
+                return () if tube is not None and tube.plane_group else nearest_room(*known)
+            return nearest_closing(*known)
 
         def flip() -> tuple[Suggestion, ...]:
             if kind in (CLOSED, SUBDIVIDED) or arrangement.given_normals:
@@ -146,12 +147,14 @@ def _between(parts: tuple[Part, ...], fractions: Fractions, normals: Array) -> i
 
 @lru_cache(maxsize=2048)
 def verdict(fractions: Sequence[Fraction]) -> Verdict:
-    """Kind, families, order, chambers between and symbol of a set of exact angles."""
+    """Kind, families, order, chambers between and symbol of a set of exact angles; of a tube the plane group's."""
     from mirrorlab.angles import AngleSettings
     from mirrorlab.mirrors.arrangement import Arrangement
 
     wide = AngleSettings(max_denominator=max(360, *(f.denominator for f in fractions)))
     finding = Arrangement.from_angles(fractions, wide).finding()
+    if finding.tube is not None:
+        return finding.kind, (), None, finding.tube.chambers, f"{finding.tube.plane_group} (tube)"
     symbols = finding.point_group
     name = " × ".join(finding.families)
     if symbols is not None:

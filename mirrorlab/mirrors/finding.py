@@ -143,10 +143,11 @@ class Finding:
 
     @cached_property
     def suggestions(self) -> tuple[Suggestion, ...]:
-        """The nearest sets of angles that close and are of use, by largest change; see `mirrorlab.mirrors.usable`.
+        """The nearest sets of angles that close, or make a tube that tiles, by largest change.
 
-        Empty when the kind is "closed", and for rooms: four mirrors or more of a tube or cell, or with a parallel
-        pair, since as many that close need more than three dimensions.
+        Angles are changed only to what is of use; see `mirrorlab.mirrors.usable`. Empty when the kind is "closed". For
+        rooms (four mirrors or more of a tube or cell, or with a parallel pair) the nearest one with right angles, at
+        the most: as many mirrors that close need more than three dimensions.
         """
         return self._suggest()
 

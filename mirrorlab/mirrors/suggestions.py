@@ -1,8 +1,9 @@
-"""The nearest sets of angles that close.
+"""The nearest sets of angles that close, or that make a tube whose images tile the plane.
 
 For two mirrors every fraction of π closes, and for three with two right angles every third angle: there only those
 count that are of use (see `mirrorlab.mirrors.usable`). For other three, every closed and closed-subdivided triangle
-with angles kπ/m is listed once and compared. For more, see `mirrorlab.mirrors.graphs`.
+with angles kπ/m is listed once and compared, and so is every tube that tiles (`mirrorlab.mirrors.tiling_tubes`). For
+more, see `mirrorlab.mirrors.graphs`.
 """
 
 from __future__ import annotations
@@ -22,9 +23,14 @@ from mirrorlab.mirrors.exact import CERTAIN, triangle_rank
 from mirrorlab.mirrors.families import MOST_MIRRORS
 from mirrorlab.mirrors.generation import generate_roots
 from mirrorlab.mirrors.graphs import UNCHANGED, nearest_graphs
+from mirrorlab.mirrors.tiling_tubes import tubes_of
 from mirrorlab.mirrors.usable import usable_near
 
 MOST_SUGGESTIONS = 6
+FOUND = ("closed", "closed-subdivided", "tube")
+
+MOST_ASKEW = 30.0
+"""Degrees; walls further from right angles were not meant as a room."""
 HALF = Fraction(1, 2)
 Decide = Callable[[Sequence[Fraction]], "tuple[str, tuple[str, ...], int | None, int | None, str]"]
 Verdict = tuple[str, tuple[str, ...], int | None, int | None, str]
@@ -32,7 +38,7 @@ Verdict = tuple[str, tuple[str, ...], int | None, int | None, str]
 
 @dataclass(frozen=True, slots=True)
 class Suggestion:
-    """A set of angles that closes.
+    """A set of angles that closes, or that makes a tube whose images tile the plane.
 
     Attributes
     ----------
@@ -41,7 +47,8 @@ class Suggestion:
     changes : tuple of float
         Degrees to add to each typed angle.
     kind, families, order, chambers_between, name
-        Its finding in short; `name` is its symbol.
+        Its finding in short; `name` is its symbol. A tube has no families and no order; its symbol is that of its
+        plane group.
     """
 
     angles: tuple[Fraction, ...]
@@ -94,19 +101,29 @@ class Suggestion:
 def nearest_closing(
     angles: tuple[Angle, ...], size: int, names: tuple[str, ...], decide: Decide
 ) -> tuple[Suggestion, ...]:
-    """The nearest sets of angles that close, by largest change, then by total change, closed before subdivided."""
+    """The nearest sets, by largest change, then those that close with one chamber, then by total change."""
     typed = np.array([angle.degrees for angle in angles])
     found: list[tuple[Fraction, ...]]
     if size == 2:
         found = [(f,) for f in usable_near(angles[0].degrees)]
     elif size == 3:
-        found = _triangles(angles, typed)
+        found = [*_triangles(angles, typed), *tubes_of(size)]
     else:
         found = nearest_graphs(typed, size)
     result = [_suggest(candidate, typed, names, decide) for candidate in dict.fromkeys(found)]
-    result = [s for s in result if s.kind.startswith("closed") and s.largest_change > UNCHANGED]
+    result = [s for s in result if s.kind in FOUND and s.largest_change > UNCHANGED]
     result.sort(key=lambda s: (round(s.largest_change, 9), s.kind != "closed", sum(map(abs, s.changes))))
     return tuple(result[:MOST_SUGGESTIONS])
+
+
+def nearest_room(
+    angles: tuple[Angle, ...], size: int, names: tuple[str, ...], decide: Decide
+) -> tuple[Suggestion, ...]:
+    """For four walls that are no room yet: the room with right angles whose walls are nearest."""
+    typed = np.array([angle.degrees for angle in angles])
+    rooms = [_suggest(candidate, typed, names, decide) for candidate in tubes_of(size)]
+    nearest = min(rooms, key=lambda s: s.largest_change, default=None)
+    return () if nearest is None or nearest.largest_change > MOST_ASKEW else (nearest,)
 
 
 def supplements(angles: tuple[Angle, ...], names: tuple[str, ...], decide: Decide) -> tuple[Suggestion, ...]:

@@ -25,14 +25,12 @@ from mirrorlab.angles import write_angle
 from mirrorlab.mirrors import Arrangement
 from mirrorlab.mirrors.families import parse_family
 from mirrorlab.mirrors.symbols import point_group
+from mirrorlab.mirrors.tiling_tubes import ROOM, TRIANGLES
 
 RIGHT = Fraction(1, 2)
 
 LARGEST_FRACTION = 60
 """Largest denominator that is listed: a 3° wedge shows 119 images, far more than mirrors keep bright."""
-
-TRIANGLES = ((2, 2, 2), (3, 2, 1), (4, 1, 1))
-"""Angles of three-sided tubes in multiples of 30°; the one in multiples of 45° is 2, 1, 1."""
 
 
 class ClosingError(ValueError):
@@ -188,11 +186,8 @@ def _corner(fractions: tuple[Fraction, ...]) -> Closing:
 
 @cache
 def _tubes() -> tuple[Closing, ...]:
-    angles = [tuple(Fraction(k, 6) for k in triangle) for triangle in TRIANGLES]
-    angles.append((RIGHT, Fraction(1, 4), Fraction(1, 4)))
-    rectangle = (RIGHT, Fraction(0), RIGHT, RIGHT, Fraction(0), RIGHT)
     found = []
-    for fractions in (*angles, rectangle):
+    for fractions in (*TRIANGLES, ROOM):
         tube = Arrangement.from_angles([spelled(f) for f in fractions]).finding().tube
         assert tube is not None  # their angles add up to a flat sum
         found.append(Closing("tube", fractions, (), tube.plane_group or "", None, tube.chambers or 1))

@@ -38,7 +38,7 @@ def test_check_writes_the_ways_out_as_asked_and_they_read_back(
     finding = Arrangement.from_angles(words).finding()
     assert status == 0
     for title, expected in (
-        ("nearest that close", finding.suggestions),
+        ("nearest that close or tile", finding.suggestions),
         ("the same planes with one angle read from the other side", finding.supplements),
     ):
         printed = [split_angles(text) for text in ways(out, title)]

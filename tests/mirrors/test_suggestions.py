@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import itertools
 from fractions import Fraction as F
 
@@ -9,6 +10,7 @@ import numpy as np
 import pytest
 
 from mirrorlab.mirrors import Arrangement
+from mirrorlab.mirrors.tiling_tubes import tubes_of
 from mirrorlab.mirrors.usable import DENOMINATORS, NARROWEST, usable_near
 
 
@@ -39,6 +41,26 @@ def with_two_right_angles(typed):
     }
 
 
+@functools.cache
+def tubes_that_tile():
+    """Every triple of kπ/m, m up to 12, that adds up to a flat triangle and whose images tile by its finding."""
+    fractions = sorted({F(k, m) for m in range(2, 13) for k in range(1, m)})
+    found = []
+    for a, b in itertools.product(fractions, repeat=2):
+        if (c := 1 - a - b) > 0 and c.denominator <= 12:
+            tube = Arrangement.from_angles([a, b, c]).finding().tube
+            if tube.tiling in ("once", "subdivided"):
+                found.append((a, b, c))
+    return tuple(found)
+
+
+def test_the_tubes_that_tile_are_all_listed():
+    assert sorted(tubes_of(3)) == sorted(tubes_that_tile())
+    for angles in tubes_of(4):
+        tube = Arrangement.from_angles(angles).finding().tube
+        assert (tube.tiling, tube.plane_group) == ("once", "p2mm")
+
+
 TYPED = [
     (61, 60, 90),
     (90, 60, 40),
@@ -57,7 +79,8 @@ TYPED = [
 @pytest.mark.parametrize("typed", TYPED, ids=str)
 def test_three_mirrors_against_all_triples(typed, closing):
     finding = Arrangement.from_angles([str(t) for t in typed]).finding()
-    candidates = [c for c in closing | with_two_right_angles(typed) if max(changes(c, typed)) > 1e-9]
+    every = closing | with_two_right_angles(typed) | set(tubes_that_tile())
+    candidates = [c for c in every if max(changes(c, typed)) > 1e-9]
     expected = sorted(round(max(changes(c, typed)), 9) for c in candidates)[:6]
     assert [round(s.largest_change, 9) for s in finding.suggestions] == expected
 
@@ -74,6 +97,10 @@ def test_each_really_closes_and_says_so(typed, slow):
             suggestion.families,
             suggestion.order,
         )
+        if suggestion.kind == "tube":
+            assert found.tube.chambers == suggestion.chambers_between
+            assert suggestion.name == f"{found.tube.plane_group} (tube)"
+            continue
         assert found.chambers_between == suggestion.chambers_between
         made = slow.mirrors(slow.normals(suggestion.angles, 3), 400)
         assert len(made) == found.mirror_count
@@ -132,8 +159,15 @@ def test_a_changed_angle_becomes_one_that_is_of_use(typed):
         (["7.3"], "7.2°"),
         (["0", "90", "90"], "15° 90° 90°"),
         (["2.7123456"], "3°"),
+        (["59", "60", "60"], "60° 60° 60°"),
+        (["90", "46", "45"], "90° 45° 45°"),
+        (["90", "60", "30.5"], "90° 60° 30°"),
+        (["90", "1", "89", "90", "0", "91"], "90° 0° 90° 90° 0° 90°"),
         (["51"], "51.428571°"),
-        (["88", "90", "7"], "90° 90° 6.923077°"),  # 7° would cut the region up, and no angle changes more for it
+        (
+            ["88", "90", "7"],
+            "90° 90° 6.923077°",
+        ),  # 7° would cut the region up, and no angle changes more for it
         (["88", "90", "51"], "90° 90° 51°"),  # an angle that stays as typed may be any
     ],
 )
@@ -143,7 +177,7 @@ def test_what_a_person_meant_comes_first(typed, first):
 
 @pytest.mark.parametrize(
     "typed",
-    ["90 0 90 90 0 90", "0 90 90 90 90 0", "90 60 60 60 60 90", "90 0 90 89 0 90", "90 90 90 90 90 0"],
+    ["90 0 90 90 0 90", "0 90 90 90 90 0", "90 60 60 60 60 90", "90 90 90 90 90 0", "50 0 90 89 0 90"],
 )
 def test_nothing_is_suggested_that_needs_more_dimensions_than_a_room_has(typed):
     assert Arrangement.from_angles(typed.split()).finding().suggestions == ()
