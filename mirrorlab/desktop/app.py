@@ -13,6 +13,7 @@ from PySide6.QtGui import QIcon
 from PySide6.QtWidgets import QApplication
 
 from mirrorlab.desktop.document import Document, Settings, State
+from mirrorlab.desktop.own_settings import kept_settings
 from mirrorlab.desktop.sheets import state_of
 from mirrorlab.desktop.theme import THEMES
 from mirrorlab.desktop.theming import system_theme, theming
@@ -22,6 +23,7 @@ if TYPE_CHECKING:
     from mirrorlab.desktop.window import Window
 
 ORGANISATION = "Mirrorlab"
+DEFAULT_SETTINGS = Settings()
 
 
 def make_application(arguments: list[str]) -> QApplication:
@@ -42,16 +44,17 @@ def icon() -> QIcon:
     return QIcon(str(assets() / "icon.svg"))
 
 
-def first_state() -> State:
+def first_state(settings: Settings = DEFAULT_SETTINGS) -> State:
     """What stands on the stage at the start: the first sample."""
-    return state_of(samples()[0], Settings())
+    return state_of(samples()[0], settings)
 
 
 def make_window(settings: QSettings | None = None) -> Window:
     """A window with the first sample."""
     from mirrorlab.desktop.window import Window
 
-    return Window(Document(first_state()), QSettings() if settings is None else settings)
+    kept = QSettings() if settings is None else settings
+    return Window(Document(first_state(kept_settings(kept))), kept)
 
 
 def guard(window: Window) -> None:

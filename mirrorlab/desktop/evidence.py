@@ -87,7 +87,9 @@ class EvidenceSheet(QFrame):
             return
         self.flags.drop_last()
         if not suggestions:
-            self.flags.add(label("No other set of angles that closes or tiles was found nearby.", "muted", wrap=True))
+            self.flags.add(
+                label("No other set of angles that closes or tiles was found nearby.", "muted", wrap=True)
+            )
             return
         box = QWidget()
         grid = QGridLayout(box)

@@ -21,11 +21,14 @@ from mirrorlab.angles import AngleSettings
 from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
 from mirrorlab.desktop.parts import button, label, rule
 from mirrorlab.desktop.reading import PairReading
+from mirrorlab.desktop.state import NOTATIONS
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.triangle import Triangle
 from mirrorlab.desktop.ways_in import WaysIn
 
-NOTATIONS = (("degrees", "60.5°"), ("pi", "2π/5"), ("dms", "60°30'00\""))
+EXAMPLES = ("60.5°", "2π/5", "60°30'00\"")
+"""What each notation looks like."""
+
 FAIR_PART, MOST_WIDE = 0.175, 360
 """Part of a wide window that the panel takes, and the most pixels."""
 
@@ -145,7 +148,7 @@ class ReadingSettings(QWidget):
         self.notation = QComboBox()
         self.notation.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.notation.setMinimumContentsLength(6)
-        for value, text in NOTATIONS:
+        for value, text in zip(NOTATIONS, EXAMPLES, strict=True):
             self.notation.addItem(text, value)
         form = QFormLayout(self)
         form.setContentsMargins(0, 0, 0, 0)

@@ -16,6 +16,7 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.rows import Column, RowsModel
 from mirrorlab.desktop.seed_entry import SeedEntry
+from mirrorlab.desktop.state import MOST_IMAGES_RANGE
 from mirrorlab.desktop.words import PARITIES
 from mirrorlab.mirrors import Orbit
 
@@ -201,7 +202,7 @@ class ImageLimit(QWidget):
         super().__init__(parent)
         self.document = document
         self.box = QSpinBox()
-        self.box.setRange(1000, 50_000_000)
+        self.box.setRange(*MOST_IMAGES_RANGE)
         self.box.setSingleStep(1_000_000)
         self.box.setGroupSeparatorShown(True)
         self.box.setKeyboardTracking(False)

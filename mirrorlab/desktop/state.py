@@ -31,6 +31,11 @@ class Seed:
     rotations: bool = False
 
 
+NOTATIONS = ("degrees", "pi", "dms")
+MOST_IMAGES_RANGE = (1000, 50_000_000)
+"""What the limit of images may be set to."""
+
+
 @dataclass(frozen=True, slots=True)
 class Settings:
     """How angles are read and written, and how long an orbit may be.

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from PySide6.QtCore import QTimer
 from PySide6.QtWidgets import QHBoxLayout, QProgressBar, QStatusBar, QWidget
 
 from mirrorlab.desktop.evidence import SUGGESTIONS_JOB
@@ -18,6 +19,10 @@ QUIET_JOBS = frozenset({SUGGESTIONS_JOB, LIBRARIES_JOB, EYE_JOB})
 """Jobs that take a second at most and say so where their result will stand."""
 
 REST = "Type an angle; drag the seed; point at an image or a chamber to read its word."
+
+
+SOON = 200
+"""Milliseconds after which work is shown: what takes less would only flash by."""
 
 
 class StatusLine(QStatusBar):
@@ -42,6 +47,10 @@ class StatusLine(QStatusBar):
         for part in (self.job, self.bar, self.cancel):
             row.addWidget(part)
         self.working.hide()
+        self._soon = QTimer(self)
+        self._soon.setSingleShot(True)
+        self._soon.setInterval(SOON)
+        self._soon.timeout.connect(self.working.show)
         self.addWidget(self.words, 1)
         self.addPermanentWidget(self.working)
         work.started.connect(self._started)
@@ -62,7 +71,8 @@ class StatusLine(QStatusBar):
             return
         self.job.setText(f"Making {name}")
         self.bar.setRange(0, 0)
-        self.working.show()
+        if self.working.isHidden() and not self._soon.isActive():
+            self._soon.start()
 
     def _progressed(self, name: str, done: int, total: int) -> None:
         if name in QUIET_JOBS:
@@ -72,4 +82,5 @@ class StatusLine(QStatusBar):
 
     def _ended(self, name: str) -> None:
         if not [job for job in self._work.running() if job not in QUIET_JOBS]:
+            self._soon.stop()
             self.working.hide()

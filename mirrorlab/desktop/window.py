@@ -16,6 +16,7 @@ from mirrorlab.desktop.filing import Filing
 from mirrorlab.desktop.finding_band import FindingBand
 from mirrorlab.desktop.mirrors_panel import MirrorsPanel
 from mirrorlab.desktop.notice import Notice
+from mirrorlab.desktop.own_settings import keep_settings
 from mirrorlab.desktop.pictures import Shelf
 from mirrorlab.desktop.points_bench import PointsBench
 from mirrorlab.desktop.stage_frame import StageFrame
@@ -109,6 +110,7 @@ class Window(QMainWindow):
         self.document.name_changed.connect(self._show_title)
         self.document.settled.connect(self._settle)
         self.document.settled.connect(self._show_title)
+        self.document.settings_changed.connect(lambda: keep_settings(self.settings, self.document.settings))
 
     def _welcome(self, bench: Bench) -> None:
         bench.says.connect(self.status.say)

@@ -151,9 +151,9 @@ def arrangement_stereogram(
 def list_stereogram(comparison: Comparison, options: StereogramOptions = DEFAULT) -> Drawing:
     """A list of points or poles and what it obeys of a group, in the group's setting.
 
-    Mirrors that the list does not obey are flagged, and so are points that more operations of the group leave without
-    a partner than they leave most of the points. Axes are those of the largest group that survives. Points at the centre have no direction and are left
-    out.
+    Mirrors that the list does not obey are flagged, and so are points that more operations of the group leave
+    without a partner than they leave most of the points. Axes are those of the largest group that survives. Points
+    at the centre have no direction and are left out.
 
     Returns
     -------

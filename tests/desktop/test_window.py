@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import sys
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -13,7 +14,10 @@ from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop import app
 from mirrorlab.desktop.bench import BENCHES
+from mirrorlab.desktop.own_settings import kept_settings
 from mirrorlab.desktop.parts import Elided
+from mirrorlab.desktop.state import Settings
+from mirrorlab.desktop.status import SOON
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.window import Window
 from mirrorlab.mirrors import Arrangement
@@ -155,10 +159,27 @@ def test_long_work_shows_and_is_cancelled(window: Window, qtbot: QtBot) -> None:
     window.document.work.start("something long", patient, lambda r: None)
     assert entered.wait(10)
     qtbot.waitUntil(lambda: window.status.bar.maximum() == 100)
-    assert window.status.working.isVisible()
+    qtbot.waitUntil(window.status.working.isVisible)
     QTest.mouseClick(window.status.cancel, Qt.MouseButton.LeftButton)
     assert not window.status.working.isVisible()
     assert window.document.work.running() == ()
+
+
+def test_short_work_does_not_flash(window: Window, qtbot: QtBot) -> None:
+    with qtbot.waitSignal(window.document.work.ended):
+        window.document.work.start("something short", lambda progress: 1, lambda r: None)
+    qtbot.wait(SOON + 100)
+    assert not window.status.working.isVisible()
+
+
+def test_notation_and_limit_are_the_users_own(window: Window) -> None:
+    settings = replace(window.document.settings, notation="dms", most_images=5000)
+    window.document.set_settings(settings)
+    kept = kept_settings(window.settings)
+    assert (kept.notation, kept.most_images) == ("dms", 5000)
+    window.settings.setValue("notation", "roman")
+    window.settings.setValue("most images", "many")
+    assert kept_settings(window.settings) == Settings()
 
 
 def test_help_opens_beside_the_window(window: Window, qtbot: QtBot) -> None:
