@@ -107,7 +107,7 @@ def nearest_closing(
     if size == 2:
         found = [(f,) for f in usable_near(angles[0].degrees)]
     elif size == 3:
-        found = [*_triangles(angles, typed), *tubes_of(size)]
+        found = _triangles(angles, typed)
     else:
         found = nearest_graphs(typed, size)
     result = [_suggest(candidate, typed, names, decide) for candidate in dict.fromkeys(found)]
@@ -179,7 +179,7 @@ def _triangle_closes(triple: tuple[Fraction, Fraction, Fraction]) -> bool:
 
 
 def _triangles(angles: tuple[Angle, ...], typed: NDArray[np.float64]) -> list[tuple[Fraction, ...]]:
-    candidates = {
+    candidates = set(tubes_of(3)) | {
         (t[i], t[j], t[k])
         for t in _closing_triangles()
         for i, j, k in ((0, 1, 2), (0, 2, 1), (1, 0, 2), (1, 2, 0), (2, 0, 1), (2, 1, 0))
@@ -189,7 +189,7 @@ def _triangles(angles: tuple[Angle, ...], typed: NDArray[np.float64]) -> list[tu
             (angle.fraction,) if angle.fraction and abs(180 * angle.fraction - typed[k]) <= UNCHANGED else ()
         )
         for f in (*kept, *usable_near(angle.degrees)):
-            candidates.add(tuple(f if j == k else HALF for j in range(3)))  # type: ignore[arg-type]
+            candidates.add(tuple(f if j == k else HALF for j in range(3)))
     table = list(candidates)
     values = np.array([[float(180 * f) for f in row] for row in table])
     changes = np.abs(values - typed)

@@ -120,6 +120,6 @@ def test_the_verbs_that_write_angles_take_it_and_no_others(answer: Answer) -> No
 
 
 def test_the_window_offers_the_same_ways() -> None:
-    from mirrorlab.desktop.mirrors_panel import NOTATIONS
+    from mirrorlab.desktop.state import NOTATIONS
 
-    assert tuple(value for value, _ in NOTATIONS) == STYLES
+    assert tuple(NOTATIONS) == STYLES
