@@ -23,13 +23,19 @@ from mirrorlab.files.picture_marks import tint
 from mirrorlab.files.picture_over import paint_over
 from mirrorlab.files.picture_sight import Sight, color_of, path_of, polygon, stroke_path, tint_of
 
-__all__ = ["Sight", "paint_drawing", "paint_over"]
+__all__ = ["Sight", "paint_drawing", "paint_over", "paint_under"]
 
 Array = NDArray[np.float64]
 
 
-def paint_drawing(painter: QPainter, prepared: Prepared, sight: Sight, cut: Strokes | None = None) -> None:
-    """Paint a drawing. `cut` are its `strokes`, when they have been made before."""
+def paint_drawing(painter: QPainter, prepared: Prepared, sight: Sight) -> None:
+    """Paint a drawing."""
+    paint_under(painter, prepared, sight)
+    paint_over(painter, prepared, sight)
+
+
+def paint_under(painter: QPainter, prepared: Prepared, sight: Sight, cut: Strokes | None = None) -> None:
+    """Paint the faces and lines of a drawing. `cut` are its `strokes`, when they have been made before."""
     painter.save()
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     if cut is None:
@@ -41,7 +47,6 @@ def paint_drawing(painter: QPainter, prepared: Prepared, sight: Sight, cut: Stro
         paint_faces(painter, prepared, sight)
         _paint_lines(painter, prepared, sight, cut)
     painter.restore()
-    paint_over(painter, prepared, sight)
 
 
 def paint_flat_faces(painter: QPainter, prepared: Prepared, sight: Sight) -> None:

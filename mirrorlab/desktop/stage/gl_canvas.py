@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from OpenGL import GL
-from PySide6.QtCore import QSize
+from PySide6.QtCore import QObject, QSize
 from PySide6.QtGui import QImage, QOffscreenSurface, QOpenGLContext
 from PySide6.QtOpenGL import QOpenGLFramebufferObject, QOpenGLFramebufferObjectFormat
 
@@ -21,13 +21,15 @@ class Canvas:
     ----------
     samples : int
         A pixel; 0 for one.
+    parent : QObject
+        The context goes when it does, and takes along what lies on the card.
     """
 
-    def __init__(self, samples: int) -> None:
+    def __init__(self, samples: int, parent: QObject) -> None:
         self._samples = samples
-        self.context = QOpenGLContext()
+        self.context = QOpenGLContext(parent)
         self.context.setFormat(surface_format())
-        self._surface = QOffscreenSurface()
+        self._surface = QOffscreenSurface(None, parent)
         self._frame: QOpenGLFramebufferObject | None = None
         if self.context.create():
             self._surface.setFormat(self.context.format())
@@ -56,9 +58,3 @@ class Canvas:
         """What was drawn, its first row at the top; the context must be current."""
         assert self._frame is not None
         return self._frame.toImage()
-
-    def close(self) -> None:
-        """Give back what lies on the card; what else was put there must have gone."""
-        if self.make_current():
-            self._frame = None
-            self.done_current()

@@ -66,11 +66,6 @@ class _Buffer:
     def release(self) -> None:
         self._buffer.release()
 
-    def destroy(self) -> None:
-        if self._buffer.isCreated():
-            self._buffer.destroy()
-        self._sent = False
-
 
 class _Program:
     """A linked shader program with its fields at fixed places."""
@@ -160,24 +155,6 @@ class DrawingItem(GLGraphicsItem):
     def initializeGL(self) -> None:
         self._face_program = _Program(glsl.FACE_VERTEX, glsl.FACE_FRAGMENT, FACE_FIELDS)
         self._line_program = _Program(glsl.LINE_VERTEX, glsl.LINE_FRAGMENT, LINE_FIELDS)
-
-    @property
-    def forgotten(self) -> bool:
-        """Whether there are no programs: before the first context, and after one has gone."""
-        return self._face_program is None
-
-    def forget_context(self) -> None:
-        """Give back what lies on the card, to be sent again to the next; the context must be current."""
-        for buffer in self._buffers():
-            buffer.destroy()
-        for program in (self._face_program, self._line_program):
-            if program is not None:
-                GL.glDeleteProgram(program.number)
-        self._face_program = self._line_program = None
-
-    def _buffers(self) -> tuple[_Buffer, ...]:
-        faces = (self._face_data, self._ball, self._solid, self._sheer)
-        return (*faces, self._line_data, self._line_index)
 
     def paint(self) -> None:
         if self._prepared is None or self._camera is None or self._faces is None:

@@ -4,18 +4,17 @@ from __future__ import annotations
 
 from typing import Any
 
-from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QPaintEvent
+from PySide6.QtCore import QSize, Signal
+from PySide6.QtGui import QColor, QImage
 from PySide6.QtWidgets import QWidget
 
-from mirrorlab.desktop.stage.handling import Handling
+from mirrorlab.desktop.stage.kept import KeptPicture
 from mirrorlab.drawing.look import LIGHT_LOOK
-from mirrorlab.files.picture_marks import tint
-from mirrorlab.files.picture_paint import paint_drawing
+from mirrorlab.files.picture_paint import paint_under
 from mirrorlab.files.picture_sight import painting
 
 
-class PainterView(Handling, QWidget):
+class PainterView(KeptPicture, QWidget):
     """A drawing painted by Qt's painter, turned and zoomed like the other. Signals: see `Handling`."""
 
     hovered = Signal(object)
@@ -27,16 +26,12 @@ class PainterView(Handling, QWidget):
 
     def __init__(self, look: Any = LIGHT_LOOK, parent: QWidget | None = None) -> None:
         QWidget.__init__(self, parent)
-        self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)  # what lies below need not be painted
-        self.start_handling(look)
+        self.start_picture(look)
 
-    def refresh_view(self) -> None:
-        """Paint anew."""
-        self.update()
-
-    def paintEvent(self, event: QPaintEvent) -> None:
-        with painting(self) as painter:
-            if not self.paint_words(painter):
-                painter.fillRect(self.rect(), tint(self._look.ground))
-                paint_drawing(painter, self._prepared, self.sight(), self.cut_strokes())
-            self.paint_extras(painter)
+    def draw_picture(self, size: QSize) -> QImage:
+        image = QImage(size, QImage.Format.Format_RGB32)
+        image.setDevicePixelRatio(self.devicePixelRatioF())
+        image.fill(QColor(self._look.ground))
+        with painting(image) as painter:
+            paint_under(painter, self._prepared, self.sight(), self.cut_strokes())
+        return image

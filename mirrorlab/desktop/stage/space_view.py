@@ -6,20 +6,18 @@ from typing import Any
 
 import numpy as np
 from pyqtgraph.opengl.GLViewWidget import GLViewMixin
-from PySide6.QtCore import QSize, Qt, Signal
-from PySide6.QtGui import QImage, QMatrix4x4, QOpenGLContext, QPaintEvent
+from PySide6.QtCore import QSize, Signal
+from PySide6.QtGui import QImage, QMatrix4x4, QOpenGLContext
 from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.stage.gl_canvas import Canvas
 from mirrorlab.desktop.stage.gl_item import DrawingItem
 from mirrorlab.desktop.stage.gl_setup import card
-from mirrorlab.desktop.stage.handling import Handling
+from mirrorlab.desktop.stage.kept import KeptPicture
 from mirrorlab.drawing.look import LIGHT_LOOK
-from mirrorlab.files.picture_over import paint_over
-from mirrorlab.files.picture_sight import painting
 
 
-class SpaceView(Handling, GLViewMixin, QWidget):
+class SpaceView(KeptPicture, GLViewMixin, QWidget):
     """A drawing in space with OpenGL. Signals: see `Handling`."""
 
     hovered = Signal(object)
@@ -30,35 +28,30 @@ class SpaceView(Handling, GLViewMixin, QWidget):
     camera_changed = Signal(object)
 
     def __init__(self, look: Any = LIGHT_LOOK, parent: QWidget | None = None) -> None:
-        self._canvas = Canvas(card().samples)
         self._ready = False
         self._drawn: QSize | None = None
-        self._faces: QImage | None = None
         GLViewMixin.__init__(self, parent)
+        self._canvas = Canvas(card().samples, self)
         self._item = DrawingItem()
-        self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)  # what lies below need not be painted
-        self.start_handling(look)
+        self.start_picture(look)
         self.addItem(self._item)
         self.refresh_view()
-        canvas, item = self._canvas, self._item
-        self.destroyed.connect(lambda: _give_back(canvas, item))
 
     def refresh_view(self) -> None:
         """Fill the item's buffers with the drawing, and begin to draw: it goes on while others answer the change."""
-        self._forget()
+        super().refresh_view()
+        self._drawn = None
         self.setBackgroundColor(self._look.ground)
         self._item.set_drawing(self._prepared, self._look, self.cut_strokes())
         self._item.set_camera(self._camera)
         if self.isVisible() and self._canvas.make_current():
-            self._draw()
+            self._draw(self.pixels())
             self._canvas.done_current()
 
     def camera_moved(self) -> None:
-        self._forget()
+        super().camera_moved()
+        self._drawn = None
         self._item.set_camera(self._camera)
-
-    def _forget(self) -> None:
-        self._drawn = self._faces = None
 
     # -- what pyqtgraph's items ask their view for ---------------------------------------------------
 
@@ -76,40 +69,24 @@ class SpaceView(Handling, GLViewMixin, QWidget):
     def projectionMatrix(self, region: Any, viewport: Any) -> QMatrix4x4:
         return QMatrix4x4(*self._item.matrices[1].ravel().tolist())
 
-    # -- painting ------------------------------------------------------------------------------------
+    # -- drawing -------------------------------------------------------------------------------------
 
-    def paintEvent(self, event: QPaintEvent) -> None:
-        with painting(self) as painter:
-            if not self.paint_words(painter):
-                painter.drawImage(0, 0, self.faces())
-                paint_over(painter, self._prepared, self.sight())
-            self.paint_extras(painter)
-
-    def faces(self) -> QImage:
-        """Faces and lines as OpenGL draws them; null where it cannot. Drawn anew only when something else is seen."""
-        if self._faces is not None and self._faces.size() == self._dots():
-            return self._faces
+    def draw_picture(self, size: QSize) -> QImage:
         if not self._canvas.make_current():
             return QImage()
-        if self._drawn != self._dots():
-            self._draw()
+        if self._drawn != size:
+            self._draw(size)
         # Nothing shows through the ground, and a picture without transparency is laid down faster.
         image = self._canvas.image()
         self._canvas.done_current()
         image.reinterpretAsFormat(QImage.Format.Format_RGB32)
-        image.setDevicePixelRatio(self.devicePixelRatioF())
-        self._faces = image
         return image
 
-    def _dots(self) -> QSize:
-        return QSize(max(1, self.deviceWidth()), max(1, self.deviceHeight()))
-
-    def _draw(self) -> None:
+    def _draw(self, size: QSize) -> None:
         """Have OpenGL draw; the context must be current. It need not be done when this returns."""
         if not self._ready:
             self.initializeGL()
             self._ready = True
-        size = self._dots()
         self._item.matrices = self._camera.matrices(*self._area())
         self._canvas.lead(size)
         self.paintGL()
@@ -117,14 +94,8 @@ class SpaceView(Handling, GLViewMixin, QWidget):
 
     def has_picture(self) -> bool:
         """Whether OpenGL works: a context, and an image that is not empty."""
-        image = self.faces()
+        image = self.picture()
         return not image.isNull() and _is_painted(image)
-
-
-def _give_back(canvas: Canvas, item: DrawingItem) -> None:
-    if canvas.make_current():
-        item.forget_context()
-    canvas.close()
 
 
 def _is_painted(image: QImage) -> bool:
