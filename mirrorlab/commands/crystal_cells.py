@@ -15,6 +15,7 @@ from mirrorlab.commands.crystal_cells_print import (
     print_planes,
 )
 from mirrorlab.commands.output import UsageError, add_style, add_verb, plain, print_json, say_written
+from mirrorlab.commands.stereogram_words import add_picture, check_picture, save_drawing, stereogram_options
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.cell import Cell
@@ -45,6 +46,7 @@ COMPARE_EXAMPLES = """examples:
   mirrorlab compare points.csv --group m-3m
   mirrorlab compare poles.csv --group -43m --poles --tolerance 0.5 --search
   mirrorlab compare atoms.csv --group mmm --cell 5.1,7.2,9.3,90,90,90 --tolerance 0.02 --json
+  mirrorlab compare points.csv --group m-3m --picture stereogram.svg --net schmidt
   mirrorlab compare points.csv --group 4/mmm --refine --csv operations.csv --matches matches.csv
 
 points.csv has a row of names (label, x, y, z, uncertainty, kind; or h, k, l; or azimuth, polar in degrees) or rows of
@@ -144,6 +146,7 @@ def add_compare(subparsers: Any) -> None:
     parser.add_argument(
         "--matches", metavar="F", help="write the partner of each point under each operation as CSV"
     )
+    add_picture(parser, "write a stereogram of the list, what it does not obey flagged")
     _add_output(parser, "write one row an operation as CSV")
     parser.set_defaults(run=run_compare)
 
@@ -279,6 +282,7 @@ def run_compare(args: argparse.Namespace) -> int:
     from mirrorlab.crystal.compare import compare_points
     from mirrorlab.crystal.point_lists import read_points
 
+    check_picture(args)
     points = read_points(args.file)
     if not args.skip_unreadable:
         points = points.complete()
@@ -303,6 +307,10 @@ def run_compare(args: argparse.Namespace) -> int:
         from mirrorlab.files.cell_tables import write_matches
 
         written += write_matches(args.matches, found)
+    if args.picture:
+        from mirrorlab.drawing.stereogram import list_stereogram
+
+        written.append(save_drawing(list_stereogram(found, stereogram_options(args)), args.picture))
     if args.json:
         print_json(answer)
     else:

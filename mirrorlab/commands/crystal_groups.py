@@ -24,7 +24,7 @@ from mirrorlab.commands.output import (
     print_json,
     say_written,
 )
-from mirrorlab.commands.stereogram_words import add_net, stereogram_options
+from mirrorlab.commands.stereogram_words import add_picture, check_picture, save_drawing, stereogram_options
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.combinations import Combination
@@ -32,7 +32,6 @@ if TYPE_CHECKING:
     from mirrorlab.crystal.positions import GroupOrbit
     from mirrorlab.drawing.model import Drawing
 
-PICTURES = (".png", ".svg", ".pdf")
 
 GROUP_EXAMPLES = """examples:
   mirrorlab group -43m
@@ -71,7 +70,7 @@ def add_group(subparsers: Any) -> None:
     parser.add_argument("--forms", action="store_true", help="one form of each kind")
     parser.add_argument("--subgroups", action="store_true", help="all classes of subgroups")
     parser.add_argument("--csv", metavar="F", help="write the operations, or with --point the points, as CSV")
-    _add_picture(parser, "write a stereogram")
+    add_picture(parser, "write a stereogram")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_group)
 
@@ -86,7 +85,7 @@ def add_form(subparsers: Any) -> None:
     parser.add_argument("--cell", type=numbers, metavar="a,b,c,α,β,γ", help="axes; unit axes if not given")
     parser.add_argument("--csv", metavar="F", help="write all faces as CSV, with its metadata file")
     add_style(parser)
-    _add_picture(parser, "write a picture of the solid")
+    add_picture(parser, "write a picture of the solid")
     parser.add_argument(
         "--stereogram", action="store_true", help="let the picture be a stereogram of the poles"
     )
@@ -105,11 +104,6 @@ def add_candidates(subparsers: Any) -> None:
     parser.add_argument("--csv", metavar="F", help="write the list as CSV, with its metadata file")
     parser.add_argument("--json", action="store_true", help="everything as JSON")
     parser.set_defaults(run=run_candidates)
-
-
-def _add_picture(parser: argparse.ArgumentParser, what: str) -> None:
-    parser.add_argument("--picture", metavar="F", help=f"{what}: .png, .svg or .pdf")
-    add_net(parser)
 
 
 def run_group(args: argparse.Namespace) -> int:
@@ -142,7 +136,9 @@ def run_group(args: argparse.Namespace) -> int:
         from mirrorlab.drawing.stereogram import group_stereogram
 
         point = None if orbit is None else orbit.points[0] @ group.basis.T
-        written.append(_save(group_stereogram(group, None, point, stereogram_options(args)), args.picture))
+        written.append(
+            save_drawing(group_stereogram(group, None, point, stereogram_options(args)), args.picture)
+        )
     if args.json:
         print_json(group_dict(group, orbit, args.subgroups, args.forms))
     else:
@@ -155,7 +151,7 @@ def run_group(args: argparse.Namespace) -> int:
 
 def _check_before_writing(args: argparse.Namespace, group: NamedGroup) -> None:
     """Meet every error that the words can lead to before the first file or line is written."""
-    _check_picture(args)
+    check_picture(args)
     if args.forms:
         from mirrorlab.crystal.forms import forms_of
 
@@ -164,15 +160,6 @@ def _check_before_writing(args: argparse.Namespace, group: NamedGroup) -> None:
         from mirrorlab.crystal.relations import subgroups
 
         subgroups(group)
-
-
-def _check_picture(args: argparse.Namespace) -> None:
-    if args.picture and Path(args.picture).suffix.lower() not in PICTURES:
-        msg = f'"{args.picture}": a picture ends in {", ".join(PICTURES)}'
-        raise UsageError(msg)
-    if args.net and not args.picture:
-        msg = "--net is drawn under a picture; say with --picture where to write it"
-        raise UsageError(msg)
 
 
 def group_dict(
@@ -215,14 +202,14 @@ def run_form(args: argparse.Namespace) -> int:
     made = combination(
         group, [indices for indices, _ in pairs], [distance for _, distance in pairs], _basis(args)
     )
-    _check_picture(args)
+    check_picture(args)
     written: list[Path] = []
     if args.csv:
         from mirrorlab.files.crystal_tables import write_faces
 
         written += write_faces(args.csv, made)
     if args.picture:
-        written.append(_save(_form_picture(args, group, made), args.picture))
+        written.append(save_drawing(_form_picture(args, group, made), args.picture))
     if args.json:
         print_json(made.to_dict())
     else:
@@ -271,12 +258,6 @@ def _basis(args: argparse.Namespace) -> Any:
     from mirrorlab.crystal.lattices import axes_from_constants
 
     return axes_from_constants(args.cell)
-
-
-def _save(drawing: Drawing, path: str) -> Path:
-    from mirrorlab.files.picture import save_picture
-
-    return save_picture(drawing, path)
 
 
 ADD = {"group": add_group, "form": add_form, "candidates": add_candidates}

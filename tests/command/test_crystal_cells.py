@@ -254,3 +254,14 @@ def test_no_window_library_is_loaded(files: Path) -> None:
     )
     assert done.returncode == 0, done.stderr
     assert done.stdout.splitlines()[-1] == "LOADED []"
+
+
+def test_a_compared_list_as_a_stereogram(capsys, files):
+    out = files / "stereogram.svg"
+    words = ("compare", str(files / "points.csv"), "--group", "m-3m")
+    assert run(capsys, *words, "--picture", str(out))[0] == 0
+    assert out.read_text(encoding="utf-8").startswith("<?xml")
+    status, _, said = run(capsys, *words, "--picture", str(files / "s.txt"))
+    assert status == 2
+    assert "a picture ends in" in said
+    assert run(capsys, *words, "--net", "wulff")[0] == 2
