@@ -274,6 +274,11 @@ def boundary_loops(triangles: Ints, ids: Ints, vertices: int) -> dict[int, tuple
     vertices : int
         Number of vertices.
     """
+    shifts = _repeats(triangles, ids)
+    if len(shifts) > 1:
+        one = slice(0, len(ids) // len(shifts))
+        (first,) = boundary_loops(triangles[one], ids[one], vertices).values()
+        return {g: tuple(loop + shift for loop in first) for g, shift in enumerate(shifts.tolist())}
     a = triangles[:, [0, 1, 2]].ravel()
     b = triangles[:, [1, 2, 0]].ravel()
     group = np.repeat(ids, 3)
@@ -298,3 +303,21 @@ def boundary_loops(triangles: Ints, ids: Ints, vertices: int) -> dict[int, tuple
             loop.append(here)
         loops.setdefault(g, []).append(np.array(loop, dtype=np.int64))
     return {g: tuple(parts) for g, parts in loops.items()}
+
+
+def _repeats(triangles: Ints, ids: Ints) -> Ints:
+    """By how much the vertices of each group are those of the first one shifted; empty where groups differ.
+
+    All chambers of a sphere are cut alike, so that the loops of one are those of all.
+    """
+    counts = np.bincount(ids)
+    none = np.zeros(0, dtype=np.int64)
+    if (
+        not len(ids)
+        or counts.min() != counts.max()
+        or (ids != np.repeat(np.arange(len(counts)), counts[0])).any()
+    ):
+        return none
+    groups = triangles.reshape(len(counts), -1)
+    shifts = groups[:, 0] - groups[0, 0]
+    return shifts if (groups - shifts[:, None] == groups[0]).all() else none
