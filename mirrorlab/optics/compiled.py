@@ -24,17 +24,29 @@ OPTIONS: dict[str, Any] = {
 
 def compiled(function: Callable[..., Any]) -> Any:
     """Return the function compiled on first call, its machine code kept in `cache_folder` where there is one."""
+    return _compiled(function)
+
+
+def inlined(function: Callable[..., Any]) -> Any:
+    """Return the function compiled into each place that calls it: for what is called for each ray.
+
+    Left to itself the compiler makes it a call, and an array is seven arguments of one.
+    """
+    return _compiled(function, inline="always")
+
+
+def _compiled(function: Callable[..., Any], **more: Any) -> Any:
     folder = cache_folder()
     if folder is not None:
         before = numba.config.CACHE_DIR
         numba.config.CACHE_DIR = str(folder)
         try:
-            return numba.njit(cache=True, **OPTIONS)(function)
+            return numba.njit(cache=True, **OPTIONS, **more)(function)
         except (RuntimeError, OSError):
             pass
         finally:
             numba.config.CACHE_DIR = before
-    return numba.njit(**OPTIONS)(function)
+    return numba.njit(**OPTIONS, **more)(function)
 
 
 @lru_cache(maxsize=1)
@@ -61,7 +73,7 @@ def cache_folder() -> Path | None:
 def sources_digest() -> str:
     """Return a digest of what is compiled, and of what compiles it."""
     digest = hashlib.sha256(f"{numba.__version__} {sys.version}".encode())
-    for name in ("kernel.py", "packet.py", "compiled.py"):
+    for name in ("kernel.py", "packet.py", "shade.py", "tile.py", "compiled.py"):
         source = Path(__file__).with_name(name)
         digest.update(source.read_bytes() if source.is_file() else b"")
     return digest.hexdigest()[:16]

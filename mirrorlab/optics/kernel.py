@@ -1,4 +1,4 @@
-"""The ray tracer's rows: packets of rays are loaded, followed until they end, and written out as pixels.
+"""The ray tracer's rows: squares of pixels are followed while they hold together, then their rays one by one.
 
 Import this only to trace: numba takes a moment to load.
 """
@@ -10,32 +10,27 @@ from typing import Any
 
 import numpy as np
 
-from mirrorlab.optics.compiled import compiled
+from mirrorlab.optics.compiled import compiled, inlined
 from mirrorlab.optics.packet import (
-    BALL,
     COLOURS,
     DOWN,
-    DRIFT,
     FACES,
     FAR_END,
     GONE,
     HALF,
     HEIGHT,
-    HIT,
-    MET,
+    KEPT,
+    LENGTH,
     ONE,
     OVER,
-    PLACE,
     PLACES,
     RATE,
     RATES,
     RAYS,
     RIGHT,
-    RISE,
     ROW,
     ROWS,
     SIDE,
-    TIME,
     TOTAL,
     WEIGHT,
     ZERO,
@@ -45,166 +40,31 @@ from mirrorlab.optics.packet import (
     meet_object,
     turn,
 )
-
-# Values of `body.Face`; a compiled function takes plain numbers.
-ROOM, OBJECT, DARK = 1, 2, 3
-
-AROUND = np.float32(2 * math.pi)
-LIMB = np.float32(0.45)
-"""Brightness of a ball's limb, its middle being 1: as a paper lantern looks (our choice)."""
-
-FLAT = np.float32(0.05)
-"""Slope below which a picture is blurred no more, however flatly it is looked at."""
-
-
-@compiled
-def sample(texture: Any, u: float, v: float, blur: float) -> tuple[float, float, float, float]:
-    """Read a texture at u, v (0 to 1, v from the top), smoothed over `blur` texels of the first copy."""
-    texels, starts, widths, heights = texture
-    level = np.uintp(0)
-    while blur > 1.5 and level + np.uintp(1) < starts.size:
-        blur *= HALF
-        level += np.uintp(1)
-    width, height = widths[level], heights[level]
-    x = min(max(u * np.float32(width) - HALF, ZERO), np.float32(width - 1))
-    y = min(max(v * np.float32(height) - HALF, ZERO), np.float32(height - 1))
-    column, row = np.int32(x), np.int32(y)
-    fx, fy = x - np.float32(column), y - np.float32(row)
-    a = np.uintp((starts[level] + row * width + column) * 4)
-    b = a + np.uintp(4 if column + 1 < width else 0)
-    step = np.uintp(width * 4 if row + 1 < height else 0)
-    c, d = a + step, b + step
-    # No store between the reads, so that all stays in registers.
-    p, q, r, s = (ONE - fx) * (ONE - fy), fx * (ONE - fy), (ONE - fx) * fy, fx * fy
-    i, j, k = np.uintp(1), np.uintp(2), np.uintp(3)
-    return (
-        p * texels[a] + q * texels[b] + r * texels[c] + s * texels[d],
-        p * texels[a + i] + q * texels[b + i] + r * texels[c + i] + s * texels[d + i],
-        p * texels[a + j] + q * texels[b + j] + r * texels[c + j] + s * texels[d + j],
-        p * texels[a + k] + q * texels[b + k] + r * texels[c + k] + s * texels[d + k],
-    )
-
-
-@compiled
-def enter(work: Any, k: Any, kinds: Any, window: Any, mouth: int, eye: Any, way: Any) -> float:
-    """How far ray k from outside goes before it is in the body; −1 where it never is."""
-    near, far, face = 0.0, 1e30, -1
-    for i in range(len(kinds)):
-        row = ROW * np.uintp(i) + k
-        height, rate = float(work[HEIGHT[0] + row]), float(work[RATE[0] + row])
-        if height < 0:
-            if rate <= 0:
-                return -1.0
-            if -height / rate > near:
-                near, face = -height / rate, i
-        elif rate < 0:
-            far = min(far, height / -rate)
-    if near >= far or (face >= 0 and kinds[face] != ROOM):
-        return -1.0
-    if face == mouth:
-        for w in range(len(window)):
-            inside = -window[w, 3]
-            for c in range(3):
-                inside += window[w, c] * (eye[c] + near * way[c])
-            if inside < 0:
-                return -1.0
-    return near
-
-
-@compiled
-def enter_all(work: Any, left: float, top: float, view: Any, body: Any) -> None:
-    """Bring the rays of an eye outside to where they enter the body; those that never do end in the surround."""
-    camera, _, _, _, surround = view
-    kinds, mirrors, window = body
-    way = np.empty(3)
-    for k in range(ROW):
-        sx, sy = left + work[RIGHT + k], top + work[DOWN + k]
-        scale = 1.0 / math.sqrt(1.0 + sx * sx + sy * sy)
-        for c in range(3):
-            way[c] = (camera[1, c] + sx * camera[2, c] + sy * camera[3, c]) * scale
-        near = enter(work, k, kinds, window, mirrors, camera[0], way)
-        if near < 0:
-            work[OVER + k] = 1
-            for c in range(COLOURS):
-                work[TOTAL[0] + ROW * c + k] = surround[c]
-            continue
-        work[OVER + k] = 0
-        for i in range(PLACES):
-            work[HEIGHT[0] + ROW * i + k] += near * work[RATE[0] + ROW * i + k]
-        for i in range(np.uintp(FACES)):
-            work[HEIGHT[0] + ROW * i + k] = max(work[HEIGHT[0] + ROW * i + k], ZERO)
-        work[GONE + k] = near
-
-
-@compiled
-def add(work: Any, k: Any, red: Any, green: Any, blue: Any) -> None:
-    """Add light, as dim as the ray has become, to what ray k gathers."""
-    work[TOTAL[0] + k] += work[WEIGHT[0] + k] * red
-    work[TOTAL[1] + k] += work[WEIGHT[1] + k] * green
-    work[TOTAL[2] + k] += work[WEIGHT[2] + k] * blue
-
-
-@compiled
-def show_object(work: Any, alive: Any, card: Any, spread: float, texture: Any) -> None:
-    """Add the object's light to the rays that meet it, and let through what its picture lets through."""
-    shape, half_width, _, scale_u, scale_v = card
-    texels_across = np.float32(texture[2][0])
-    for k in range(alive):
-        met = work[MET + k]
-        if met >= work[TIME + k]:
-            continue
-        dx, dy, dz = work[DRIFT[0] + k], work[DRIFT[1] + k], work[DRIFT[2] + k]
-        x, y = work[PLACE[0] + k] + met * dx, work[PLACE[1] + k] + met * dy
-        shade = ONE
-        if shape == BALL:
-            z = work[PLACE[2] + k] + met * dz
-            facing = -(x * dx + y * dy + z * dz) / half_width
-            u = np.float32(math.atan2(x, z) / (2 * math.pi)) + HALF
-            v = HALF - HALF * y / half_width
-            shade = LIMB + (ONE - LIMB) * facing
-            fineness = texels_across / (AROUND * half_width * max(facing, FLAT))
-        else:
-            u, v = HALF + x * scale_u, HALF - y * scale_v
-            fineness = scale_u * texels_across / math.sqrt(max(abs(dz), FLAT))
-        red, green, blue, opacity = sample(texture, u, v, (work[GONE + k] + met) * spread * fineness)
-        add(work, k, red * shade, green * shade, blue * shade)
-        clear = ONE - opacity
-        for c in range(COLOURS):
-            work[WEIGHT[0] + ROW * c + k] *= clear
-
-
-@compiled
-def end_rays(work: Any, alive: Any, body: Any, card: Any, spread: float, texture: Any, lights: Any) -> None:
-    """Add the light of what the rays that end here have met."""
-    kinds, mirrors, _ = body
-    shape, _, _, scale_u, scale_v = card
-    for k in range(alive):
-        face = int(work[HIT + k])
-        if work[OVER + k] == ZERO or face < mirrors:
-            continue
-        kind = kinds[face]
-        if kind == OBJECT and shape == FAR_END:
-            u, v = HALF + work[PLACE[0] + k] * scale_u, HALF - work[PLACE[1] + k] * scale_v
-            slope = max(-work[RATE[0] + ROW * np.uintp(face) + k], FLAT)
-            fineness = scale_u * np.float32(texture[2][0]) / math.sqrt(slope)
-            red, green, blue, opacity = sample(texture, u, v, work[GONE + k] * spread * fineness)
-            clear = ONE - opacity
-            add(
-                work, k, red + clear * lights[2, 0], green + clear * lights[2, 1], blue + clear * lights[2, 2]
-            )
-        elif kind == ROOM:
-            rise = HALF + HALF * work[RISE + k]
-            fall = ONE - rise
-            add(
-                work,
-                k,
-                fall * lights[0, 0] + rise * lights[1, 0],
-                fall * lights[0, 1] + rise * lights[1, 1],
-                fall * lights[0, 2] + rise * lights[1, 2],
-            )
-        else:
-            plain = 2 if kind == OBJECT else (3 if kind == DARK else 4)
-            add(work, k, lights[plain, 0], lights[plain, 1], lights[plain, 2])
+from mirrorlab.optics.shade import end_rays, show_object
+from mirrorlab.optics.tile import (
+    ACROSS,
+    CORNER,
+    DOWNWARDS,
+    ENDS,
+    EYE,
+    LAST,
+    LEAST,
+    LIGHT,
+    MISSES,
+    NOTHING,
+    PLACE,
+    SIZE,
+    SLOTS,
+    SQUARE_ROWS,
+    WIDEST,
+    X,
+    Y,
+    begin,
+    enter,
+    enter_square,
+    follow,
+    quarter,
+)
 
 
 @compiled
@@ -222,35 +82,167 @@ def hold(work: Any, k: Any) -> None:
         work[WEIGHT[0] + ROW * c + k] = 0
 
 
-@compiled
-def gather(work: Any, k: Any, home: Any, sums: Any) -> None:
-    """Add the light of ray k to its pixel."""
-    for c in range(COLOURS):
-        sums[home[k], c] += work[TOTAL[0] + ROW * c + k]
-
-
-@compiled
+@inlined
 def pack(work: Any, alive: Any, home: Any, sums: Any) -> Any:
     """Write out the rays that have ended, fill their places from the back, and return how many go on."""
-    k = np.uintp(0)
-    while k < alive:
+    k = alive
+    while k > np.uintp(0):
+        k -= np.uintp(1)
         if work[OVER + k] > ZERO:
-            gather(work, k, home, sums)
+            pixel = home[k]
+            sums[pixel] += work[TOTAL[0] + k]
+            sums[pixel + np.uintp(1)] += work[TOTAL[1] + k]
+            sums[pixel + np.uintp(2)] += work[TOTAL[2] + k]
+            # From the back, so that the last one is known to go on.
             alive -= np.uintp(1)
-            while alive > k and work[OVER + alive] > ZERO:
-                gather(work, alive, home, sums)
-                alive -= np.uintp(1)
-            if alive > k:
-                for i in range(np.uintp(25)):
+            if k < alive:
+                for i in range(KEPT):
                     work[ROW * i + k] = work[ROW * i + alive]
                 for c in range(COLOURS):
                     work[TOTAL[0] + ROW * c + k] = work[TOTAL[0] + ROW * c + alive]
                 home[k] = home[alive]
-        k += np.uintp(1)
-    # The loops run over whole eights of rays; those that fill them up stand still in no light.
-    for k in range(alive, whole_eights(alive)):
-        hold(work, k)
     return alive
+
+
+@compiled
+def enter_rays(
+    work: Any, first: Any, count: Any, place: Any, view: Any, kinds: Any, mouth: int, surround: Any
+) -> None:
+    """Bring rays from outside to where they enter the body; those that never do end in the surround."""
+    left, top, fine = place
+    for k in range(first, first + count):
+        x, y = left + work[RIGHT + k] * fine, top - work[DOWN + k] * fine
+        face, steps = enter(view, kinds, mouth, x, y)
+        if face < 0:
+            work[GONE + k] = ONE  # so that it ends at once, and properly: it has no light of its own
+            for c in range(COLOURS):
+                work[WEIGHT[0] + ROW * c + k], work[TOTAL[0] + ROW * c + k] = ZERO, surround[c]
+            continue
+        near = steps * work[LENGTH + k]
+        for i in range(PLACES):
+            work[HEIGHT[0] + ROW * i + k] = view[i, 0] + near * work[RATE[0] + ROW * i + k]
+        for i in range(np.uintp(FACES)):
+            work[HEIGHT[0] + ROW * i + k] = max(work[HEIGHT[0] + ROW * i + k], ZERO)
+        work[GONE + k] = near
+
+
+@inlined
+def step(
+    work: Any,
+    alive: Any,
+    home: Any,
+    sums: Any,
+    body: Any,
+    bounce: Any,
+    card: Any,
+    texture: Any,
+    lights: Any,
+    limits: Any,
+) -> Any:
+    """Follow all rays to the next face; return how many go on."""
+    shape, half_width, half_height, _, _ = card
+    products, slants, losses, joint = bounce
+    spread, faintest = limits
+    eights = whole_eights(alive)
+    # Those that fill up the eights stand still in no light.
+    for k in range(alive, eights):
+        hold(work, k)
+    meet(work, eights)
+    if shape != FAR_END:
+        meet_object(work, eights, shape, half_width, half_height)
+        show_object(work, alive, card, spread, texture)
+    ended = dim(work, eights, slants, losses, joint, spread, np.float32(body[1]), faintest)
+    if ended > np.float32(eights - alive):
+        end_rays(work, alive, body, card, spread, texture, lights)
+        alive = pack(work, alive, home, sums)
+    turn(work, whole_eights(alive), products)
+    return alive
+
+
+@inlined
+def column(squares: Any, s: int, which: Any, factor: float) -> tuple[Any, ...]:
+    """A column of a square's table, times a factor, as float32."""
+    return (
+        np.float32(squares[s, 0, which] * factor),
+        np.float32(squares[s, 1, which] * factor),
+        np.float32(squares[s, 2, which] * factor),
+        np.float32(squares[s, 3, which] * factor),
+        np.float32(squares[s, 4, which] * factor),
+        np.float32(squares[s, 5, which] * factor),
+        np.float32(squares[s, 6, which] * factor),
+        np.float32(squares[s, 7, which] * factor),
+        np.float32(squares[s, 8, which] * factor),
+        np.float32(squares[s, 9, which] * factor),
+    )
+
+
+@compiled
+def load_square(work: Any, first: Any, count: Any, squares: Any, s: int, most: int) -> None:
+    """Put the rays of a square into a packet, each at the mirror that the square has come through."""
+    part = 1.0 / (squares[s, PLACE, SIZE] - 1)
+    start = column(squares, s, EYE, 1.0)
+    looks = (
+        column(squares, s, CORNER, 1.0),
+        column(squares, s, ACROSS, part),
+        column(squares, s, DOWNWARDS, part),
+    )
+    through = (ZERO, ONE, ZERO, ZERO)
+    face = int(squares[s, PLACE, LAST])
+    if face >= 0:
+        through = (
+            np.float32(squares[s, face, EYE]),
+            np.float32(squares[s, face, CORNER]),
+            np.float32(squares[s, face, ACROSS] * part),
+            np.float32(squares[s, face, DOWNWARDS] * part),
+        )
+    light = (
+        np.float32(squares[s, LIGHT, 0]),
+        np.float32(squares[s, LIGHT, 1]),
+        np.float32(squares[s, LIGHT, 2]),
+    )
+    load(work, first, count, start, looks, through, light, np.float32(most - squares[s, LIGHT, 3]))
+
+
+@compiled
+def order() -> Any:
+    """Rays of a square of 8 by 8 pixels, see `tile.SHARE`, in such an order that each quarter's come together.
+
+    So the first sixteen are those of a square of 4.
+    """
+    rays = np.ones((4, SIDE * SIDE))
+    for k in range(SIDE * SIDE):
+        rays[0, k] = (k & 1) | (k >> 1 & 2) | (k >> 2 & 4)
+        rays[1, k] = (k >> 1 & 1) | (k >> 2 & 2) | (k >> 3 & 4)
+    return rays
+
+
+@compiled
+def measure(rays: Any, left: float, top: float, fine: float) -> None:
+    """Work out how long a step of each ray of a square is; no joint has taken of it yet."""
+    for k in range(SIDE * SIDE):
+        x, y = left + rays[0, k] * fine, top - rays[1, k] * fine
+        rays[2, k] = math.sqrt(1.0 + x * x + y * y)
+        rays[3, k] = 1
+
+
+@compiled
+def surround_square(sums: Any, of_row: Any, y: int, of_column: Any, x: int, size: int, surround: Any) -> None:
+    """Add the light around the opening to the pixels of a square; the sums have room for what sticks out."""
+    for j in range(y, y + size):
+        for i in range(x, x + size):
+            for c in range(COLOURS):
+                sums[of_row[j] + of_column[i] + c] += surround[c]
+
+
+@compiled
+def write(out: Any, band: int, last: int, sums: Any, across: int, share: Any, table: Any) -> None:
+    """Write a band of rows out as bytes."""
+    top = np.float32(len(table) - 1)
+    for row in range(band, min(band + WIDEST, last)):
+        for column_at in range(out.shape[1]):
+            for c in range(3):
+                light = sums[3 * ((row - band) * across + column_at) + c] * share
+                out[row, column_at, c] = table[int(min(max(light, ZERO), ONE) * top + HALF)]
 
 
 @compiled
@@ -260,17 +252,17 @@ def trace_rows(
     last: int,
     samples: int,
     pixel: float,
-    view: Any,
+    eye: Any,
     body: Any,
     glass: Any,
+    bounds: Any,
+    bounce: Any,
     card: Any,
     texture: Any,
     lights: Any,
     table: Any,
-    faintest: Any,
-    most: int,
-) -> int:
-    """Trace rows `first` to `last` into `out`; return how many bounces were followed.
+) -> None:
+    """Trace rows `first` to `last` into `out`.
 
     Parameters
     ----------
@@ -279,14 +271,21 @@ def trace_rows(
         Rays a pixel along each side.
     pixel : float
         Slope between neighbouring pixels.
-    view : tuple
-        Camera, shape (4, 3), with rows eye, forward, right, up; the eye's heights above the faces and its place
-        along the object's axes, float32 of shape (9,); how forward, right and up change these, and how far each
-        points upwards, float32 of shape (3, 10); whether the eye is outside; light around the opening.
+    eye : tuple
+        The eye's table, see `tile`, with a row more for each side of the opening; whether the eye is outside; light
+        around the opening.
     body : tuple
-        Kinds of the faces; how many are mirrors; half-spaces of the opening, shape (w, 4).
-    glass : tuple
-        What `packet.turn` and `packet.dim` need: products, slants, losses, half the width of a joint's line.
+        Kinds of the faces; how many are mirrors.
+    glass : ndarray, shape (4, 17)
+        For each mirror: products of its normal with the faces' normals, the object's axes, and upwards; one over
+        the sine of its angle with each mirror that it shares an edge with, else 0; what a bounce takes of red,
+        green and blue, negative.
+    bounds : tuple
+        Half the width of a joint's line; a radius around the object where it stands free, else −1; the faintest
+        light that is followed; most bounces.
+    bounce : tuple
+        Products, slants, losses and half the width of a joint's line as tuples of float32, for `packet.turn` and
+        `packet.dim`.
     card : tuple
         Shape of the object, half its width and height, and the picture's widths and heights a millimetre.
     texture : tuple
@@ -296,53 +295,73 @@ def trace_rows(
     table : ndarray of uint8
         sRGB bytes of linear light.
     """
-    rows, columns = out.shape[0], out.shape[1]
-    products, slants, losses, joint = glass
-    shape, half_width, half_height, _, _ = card
-    _, start, looks, outside, _ = view
-    _, mirrors, _ = body
-    work, home = np.zeros(ROWS * RAYS, np.float32), np.empty(RAYS, np.int64)
-    for k in range(RAYS):
-        work[RIGHT + np.uintp(k)] = (k % SIDE) * pixel
-        work[DOWN + np.uintp(k)] = -(k // SIDE) * pixel
-    across = (columns + SIDE - 1) // SIDE * SIDE
-    sums = np.empty((SIDE * across, 3), np.float32)
-    side = 1.0 / samples
-    spread = np.float32(pixel * side)
-    count, top = 0.0, np.float32(len(table) - 1)
-    for band in range(first, last, SIDE):
-        sums[:] = 0
-        for part in range(samples * samples):
-            sy = (rows * 0.5 - band - (part // samples + 0.5) * side) * pixel
-            for begin in range(0, columns, SIDE):
-                sx = (begin + (part % samples + 0.5) * side - columns * 0.5) * pixel
-                alive = ROW
-                load(work, np.float32(sx), np.float32(sy), start, looks)
-                for k in range(RAYS):
-                    home[k] = k // SIDE * across + begin + k % SIDE
-                if outside:
-                    enter_all(work, sx, sy, view, body)
-                    alive = pack(work, alive, home, sums)
-                for _ in range(most):
-                    if alive == 0:
-                        break
-                    eights = whole_eights(alive)
-                    meet(work, eights)
-                    if shape != FAR_END:
-                        meet_object(work, eights, shape, half_width, half_height)
-                        show_object(work, alive, card, spread, texture)
-                    ended = dim(work, eights, slants, losses, joint, spread, np.float32(mirrors), faintest)
-                    ended -= np.float32(eights - alive)
-                    count += alive - ended
-                    if ended > ZERO:
-                        end_rays(work, alive, body, card, spread, texture, lights)
-                        alive = pack(work, alive, home, sums)
-                    turn(work, whole_eights(alive), products)
-                for k in range(alive):
-                    gather(work, k, home, sums)
-        for row in range(band, min(band + SIDE, last)):
-            for column in range(columns):
-                for c in range(3):
-                    light = sums[(row - band) * across + column, c] * np.float32(side * side)
-                    out[row, column, c] = table[int(min(max(light, ZERO), ONE) * top + HALF)]
-    return int(count)
+    view, outside, surround = eye
+    kinds, mirrors = body
+    joint, radius, faintest, most = bounds
+    rows, columns = out.shape[0] * samples, out.shape[1] * samples
+    fine = pixel / samples
+    limits = (joint, fine, radius, faintest, most)
+    ray_limits = (np.float32(fine), np.float32(faintest))
+    # Whole squares stick out of the view; the sums have room for that.
+    across = (out.shape[1] + WIDEST - 1) // WIDEST * WIDEST
+    sums = np.empty(3 * WIDEST * across, np.float32)
+    of_column, of_row = np.empty(across * samples, np.uintp), np.empty(WIDEST * samples, np.uintp)
+    for k in range(across * samples):
+        of_column[k] = k // samples * 3
+    for k in range(WIDEST * samples):
+        of_row[k] = k // samples * 3 * across
+    work, home, rays = np.zeros(ROWS * RAYS, np.float32), np.empty(RAYS, np.uintp), order()
+    squares = np.empty((SLOTS, SQUARE_ROWS, 4))
+    beside = across * samples // WIDEST
+    alive = np.uintp(0)
+    for band in range(first, last, WIDEST):
+        for k in range(sums.size):
+            sums[k] = ZERO
+        band_y = band * samples
+        number, count = 0, beside * ((min(WIDEST, last - band) * samples + WIDEST - 1) // WIDEST)
+        s = -1
+        while True:
+            room = np.uintp(RAYS)  # once all squares are followed, go on until no ray is left
+            if s >= 0 or number < count:
+                x, y, size = number % beside * WIDEST, band_y + number // beside * WIDEST, WIDEST
+                if s >= 0:
+                    x, y = int(squares[s, PLACE, X]), int(squares[s, PLACE, Y])
+                    size = int(squares[s, PLACE, SIZE])
+                left, top = (x + 0.5 - 0.5 * columns) * fine, (0.5 * rows - y - 0.5) * fine
+                reach = (size - 1) * fine
+                corners = (left, left + reach, top, top - reach)
+                if s < 0:
+                    s = 0
+                    number += 1
+                    begin(squares, view, corners, x, y)
+                if size <= SIDE:
+                    measure(rays, left, top, fine)
+                why = ENDS
+                if outside and squares[s, PLACE, LAST] < 0:
+                    why = enter_square(squares, s, view, kinds, mirrors, corners)
+                if why == ENDS:
+                    why = follow(squares, s, rays, corners, len(kinds), mirrors, glass, limits)
+                if why == MISSES:
+                    surround_square(sums, of_row, y - band_y, of_column, x, size, surround)
+                if why in (MISSES, NOTHING):
+                    s -= 1
+                    continue
+                if size > (SIDE if why == ENDS else LEAST):
+                    s = quarter(squares, s, columns, rows)
+                    continue
+                room = np.uintp(size * size)
+            while alive + room > np.uintp(RAYS):
+                alive = step(work, alive, home, sums, body, bounce, card, texture, lights, ray_limits)
+            if s < 0:
+                break
+            for k in range(room):
+                i, j = int(rays[0, k]), int(rays[1, k])
+                work[RIGHT + alive + k], work[DOWN + alive + k] = rays[0, k], rays[1, k]
+                work[LENGTH + alive + k], work[WEIGHT[0] + alive + k] = rays[2, k], rays[3, k]
+                home[alive + k] = of_row[y + j - band_y] + of_column[x + i]
+            load_square(work, alive, room, squares, s, most)
+            if outside and squares[s, PLACE, LAST] < 0:
+                enter_rays(work, alive, room, (left, top, fine), view, kinds, mirrors, surround)
+            alive += room
+            s -= 1
+        write(out, band, last, sums, across, np.float32(1.0 / (samples * samples)), table)

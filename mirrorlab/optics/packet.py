@@ -1,9 +1,10 @@
 """A packet of rays: where they meet a face, what that takes of their light, and how they turn.
 
-Rays are followed in packets of neighbouring pixels. A ray keeps, for every face, its height above it and how
-fast that changes, and the same for its place along the object's three axes. A bounce updates the rates by a
-table of products, so no vector is reflected and no plane is intersected anew. All that a packet keeps stands in
-one array, row by row, and the two loops over its rays have no branches: so the compiler can do eight at once.
+Rays that can no longer be followed as one square (see `tile`) are followed in packets. A ray keeps, for every face,
+its height above it and how fast that changes, and the same for its place along the object's three axes. A bounce
+updates the rates by a table of products, so no vector is reflected and no plane is intersected anew. All that a
+packet keeps stands in one array, row by row, and the loops over its rays have no branches: so the compiler can do
+eight at once.
 
 Import this only to trace: numba takes a moment to load.
 """
@@ -23,8 +24,8 @@ FAR_END, CARD, BALL = 0, 1, 2
 FACES, MIRRORS = 6, 4
 """A body has at most so many faces (a tube of four mirrors with two ends), and so many mirrors."""
 
-SIDE, RAYS = 8, 64
-"""A packet is a square of 8 by 8 pixels: its rows stay in the first-level cache, and its rays keep together."""
+SIDE, RAYS = 8, 128
+"""Rays of 8 by 8 pixels come into a packet at once; its rows stay in the first-level cache."""
 
 
 def _rows(first: int, count: int) -> tuple[np.uintp, ...]:
@@ -33,23 +34,24 @@ def _rows(first: int, count: int) -> tuple[np.uintp, ...]:
 
 
 # Where the rows of a packet begin: heights above the faces, place along the object's axes, the rates of both, the
-# rate upwards, what is left of red, green and blue, the way gone, time to the next face, that face, time to the
-# object, whether the ray ends there, the light gathered, and where its pixel is in the square.
+# rate upwards, what is left of red, green and blue, the way gone, how many bounces are left, the face met next, the
+# time to it, time to the object, whether the ray ends there, the light gathered; pixels right and down in the square
+# that the ray comes from, length of a step there.
 HEIGHT, PLACE = _rows(0, 6), _rows(6, 3)
 RATE, DRIFT, (RISE,) = _rows(9, 6), _rows(15, 3), _rows(18, 1)
-WEIGHT, (GONE, TIME, HIT, MET, OVER), TOTAL = _rows(19, 3), _rows(22, 5), _rows(27, 3)
-(RIGHT, DOWN), ROWS = _rows(30, 2), 32
-ROW, PLACES, RATES, COLOURS = (np.uintp(k) for k in (RAYS, 9, 10, 3))
+WEIGHT, (GONE, LEFT, HIT, TIME, MET, OVER), TOTAL = _rows(19, 3), _rows(22, 6), _rows(28, 3)
+(RIGHT, DOWN, LENGTH), ROWS = _rows(31, 3), 34
+ROW, PLACES, RATES, COLOURS, KEPT = (np.uintp(k) for k in (RAYS, 9, 10, 3, 25))
 
 NEVER, ZERO, ONE, TWO, HALF = np.float32(1e30), np.float32(0), np.float32(1), np.float32(2), np.float32(0.5)
 FIRST, SECOND, THIRD, FOURTH, FIFTH, SIXTH = (np.float32(k) for k in range(6))
 
 
 @compiled
-def load(work: Any, left: Any, top: Any, start: Any, looks: Any) -> None:
-    """Put the rays of a square of pixels into a packet; its upper left pixel has the slopes `left` and `top`.
-
-    Rows RIGHT and DOWN hold how much each pixel's slopes differ from these.
+def load(
+    work: Any, begin: Any, count: Any, start: Any, looks: Any, through: Any, weight: Any, left: Any
+) -> None:
+    """Put `count` rays into a packet from place `begin` on; rows RIGHT and DOWN hold their slopes.
 
     Parameters
     ----------
@@ -57,28 +59,48 @@ def load(work: Any, left: Any, top: Any, start: Any, looks: Any) -> None:
         Heights of the eye above the faces, and its place along the object's axes.
     looks : tuple of 3 tuples of 10 float32
         How forward, right and up change these, and how far each points upwards.
+    through : tuple of 4 float32
+        Where the rays set out, once they have gone straight on from the eye: the eye's height above that face, and
+        how forward, right and up change it.
+    weight : tuple of 3 float32
+        What is left of red, green and blue.
+    left : float32
+        Bounces that they may still make.
     """
     f, r, u = looks
-    for k in range(ROW):
-        sx, sy = left + work[RIGHT + k], top + work[DOWN + k]
-        scale = ONE / np.float32(math.sqrt(ONE + sx * sx + sy * sy))
-        work[RATE[0] + k] = (f[0] + sx * r[0] + sy * u[0]) * scale
-        work[RATE[1] + k] = (f[1] + sx * r[1] + sy * u[1]) * scale
-        work[RATE[2] + k] = (f[2] + sx * r[2] + sy * u[2]) * scale
-        work[RATE[3] + k] = (f[3] + sx * r[3] + sy * u[3]) * scale
-        work[RATE[4] + k] = (f[4] + sx * r[4] + sy * u[4]) * scale
-        work[RATE[5] + k] = (f[5] + sx * r[5] + sy * u[5]) * scale
-        work[DRIFT[0] + k] = (f[6] + sx * r[6] + sy * u[6]) * scale
-        work[DRIFT[1] + k] = (f[7] + sx * r[7] + sy * u[7]) * scale
-        work[DRIFT[2] + k] = (f[8] + sx * r[8] + sy * u[8]) * scale
+    for k in range(begin, begin + count):
+        sx, sy = work[RIGHT + k], work[DOWN + k]
+        scale = ONE / work[LENGTH + k]
+        gone = -through[0] / ((through[1] + sx * through[2] + sy * through[3]) * scale)
+        r0 = (f[0] + sx * r[0] + sy * u[0]) * scale
+        r1 = (f[1] + sx * r[1] + sy * u[1]) * scale
+        r2 = (f[2] + sx * r[2] + sy * u[2]) * scale
+        r3 = (f[3] + sx * r[3] + sy * u[3]) * scale
+        r4 = (f[4] + sx * r[4] + sy * u[4]) * scale
+        r5 = (f[5] + sx * r[5] + sy * u[5]) * scale
+        x = (f[6] + sx * r[6] + sy * u[6]) * scale
+        y = (f[7] + sx * r[7] + sy * u[7]) * scale
+        z = (f[8] + sx * r[8] + sy * u[8]) * scale
+        work[RATE[0] + k], work[RATE[1] + k], work[RATE[2] + k] = r0, r1, r2
+        work[RATE[3] + k], work[RATE[4] + k], work[RATE[5] + k] = r3, r4, r5
+        work[DRIFT[0] + k], work[DRIFT[1] + k], work[DRIFT[2] + k] = x, y, z
         work[RISE + k] = (f[9] + sx * r[9] + sy * u[9]) * scale
-    for k in range(ROW):
-        work[HEIGHT[0] + k], work[HEIGHT[1] + k], work[HEIGHT[2] + k] = start[0], start[1], start[2]
-        work[HEIGHT[3] + k], work[HEIGHT[4] + k], work[HEIGHT[5] + k] = start[3], start[4], start[5]
-        work[PLACE[0] + k], work[PLACE[1] + k], work[PLACE[2] + k] = start[6], start[7], start[8]
-        work[WEIGHT[0] + k], work[WEIGHT[1] + k], work[WEIGHT[2] + k] = ONE, ONE, ONE
+        work[HEIGHT[0] + k] = max(start[0] + gone * r0, ZERO)
+        work[HEIGHT[1] + k] = max(start[1] + gone * r1, ZERO)
+        work[HEIGHT[2] + k] = max(start[2] + gone * r2, ZERO)
+        work[HEIGHT[3] + k] = max(start[3] + gone * r3, ZERO)
+        work[HEIGHT[4] + k] = max(start[4] + gone * r4, ZERO)
+        work[HEIGHT[5] + k] = max(start[5] + gone * r5, ZERO)
+        work[PLACE[0] + k] = start[6] + gone * x
+        work[PLACE[1] + k] = start[7] + gone * y
+        work[PLACE[2] + k] = start[8] + gone * z
+        work[GONE + k] = gone
+    for k in range(begin, begin + count):
+        share = work[WEIGHT[0] + k]
+        work[WEIGHT[0] + k], work[WEIGHT[1] + k] = share * weight[0], share * weight[1]
+        work[WEIGHT[2] + k] = share * weight[2]
         work[TOTAL[0] + k], work[TOTAL[1] + k], work[TOTAL[2] + k] = ZERO, ZERO, ZERO
-        work[GONE + k] = ZERO
+        work[LEFT + k] = left
 
 
 @compiled
@@ -125,7 +147,8 @@ def dim(
     losses : tuple of 4 tuples of 3 float32
         What a bounce takes of red, green and blue, negative.
     mirrors : float32
-        Faces from this number on are no mirrors: rays end there, as do those that have become too faint.
+        Faces from this number on are no mirrors: rays end there, as do those that have become too faint
+        or have made all their bounces.
 
     Returns
     -------
@@ -168,7 +191,9 @@ def dim(
         two = work[WEIGHT[1] + k] * (keep * (ONE + two))
         three = work[WEIGHT[2] + k] * (keep * (ONE + three))
         work[WEIGHT[0] + k], work[WEIGHT[1] + k], work[WEIGHT[2] + k] = one, two, three
-        over = (hit >= mirrors) | (hit < ZERO) | (max(one, max(two, three)) < faintest)
+        left = work[LEFT + k] - ONE
+        work[LEFT + k] = left
+        over = (hit >= mirrors) | (hit < ZERO) | (left <= ZERO) | (max(one, max(two, three)) < faintest)
         over = ONE if over else ZERO
         work[OVER + k] = over
         ended += over

@@ -106,11 +106,11 @@ def trace(
         msg = f"samples {samples!r}: from 1 to 8 along each side of a pixel"
         raise AssemblyError(msg, "samples")
     from mirrorlab.optics.kernel import trace_rows
+    from mirrorlab.optics.tile import WIDEST
 
     arguments = kernel_arguments(assembly, scene or make_scene(assembly), camera_of(assembly, width, height))
     out = np.empty((height, width, 3), dtype=np.uint8)
-    # Whole squares of 8 by 8 pixels: see `packet.SIDE`.
-    rows = 8 * max(1, BLOCK_PIXELS // (8 * width * samples * samples))
+    rows = WIDEST * max(1, BLOCK_PIXELS // (WIDEST * width * samples * samples))
     blocks = [(row, min(row + rows, height)) for row in range(0, height, rows)]
     stop = False
 
@@ -171,36 +171,37 @@ def kernel_arguments(assembly: Assembly, scene: Scene, camera: Camera) -> tuple[
     body, place, texture = body_of(assembly), assembly.place, scene.texture
     shape = 0 if not place.inside else (2 if place.shape == "ball" else 1)
     own = np.array([place.right, place.up, np.cross(place.right, place.up)])
-    rows = np.array([camera.eye, camera.forward, camera.right, camera.up])
+    looks = np.array([camera.forward, camera.right, camera.up])
     mirrors, faces = body.mirrors, len(body.kinds)
     heights = body.heights(camera.eye)
-    # Faces that are not there have height and rate zero, so they are never met.
-    start = np.zeros(FACES + 3)
-    start[:faces], start[FACES:] = heights, own @ (camera.eye - place.centre)
     axes = np.zeros((FACES + 4, 3))
     axes[:faces], axes[FACES:-1], axes[-1] = body.normals, own, scene.upwards
-    products, slants, losses = (
-        np.zeros((MIRRORS, FACES + 4)),
-        np.zeros((MIRRORS, MIRRORS)),
-        np.zeros((3, MIRRORS)),
-    )
+    # Faces that are not there have height and rate zero, so they are never met.
+    eye = np.column_stack([np.zeros(FACES + 4), axes @ looks.T])
+    eye[:faces, 0], eye[FACES:-1, 0] = heights, own @ (camera.eye - place.centre)
+    products, slants = np.zeros((MIRRORS, FACES + 4)), np.zeros((MIRRORS, MIRRORS))
+    losses = np.zeros((3, MIRRORS))
     products[:mirrors] = body.normals[:mirrors] @ axes.T
     losses[:, :mirrors] = np.transpose([np.array(m.tint) * m.reflectance - 1 for m in assembly.mirrors])
     for (i, j), angle in assembly.dihedrals.items():
         slants[i, j] = slants[j, i] = 1 / math.sin(angle)
     lights = scene.lights.rows().astype(np.float32)
-    size = (np.float32(place.width / 2), np.float32(place.height / 2))
+    sides = window_planes(assembly, body)
+    window = np.column_stack([sides[:, :3] @ camera.eye - sides[:, 3], sides[:, :3] @ looks.T])
+    half_width, half_height = place.width / 2, place.height / 2
+    radius = (-1.0, math.hypot(half_width, half_height), half_width)[shape]
+    size = (np.float32(half_width), np.float32(half_height))
     return (
         camera.step,
-        (rows, _floats(start), _tuples(rows[1:] @ axes.T), bool((heights < 0).any()), lights[5]),
-        (body.kinds, mirrors, window_planes(assembly, body)),
+        (np.vstack([eye, window]), bool((heights < 0).any()), lights[5]),
+        (body.kinds, mirrors),
+        np.hstack([products, slants, losses.T]),
+        (scene.joint, radius, FAINTEST, MOST_BOUNCES),
         (_tuples(products), _tuples(slants), _tuples(losses), np.float32(scene.joint)),
         (shape, *size, *_floats(np.array(_fit(place.width, place.height, texture.aspect)))),
         (texture.texels.reshape(-1), texture.starts, texture.widths, texture.heights),
         lights[:5],
         srgb_bytes(),
-        np.float32(FAINTEST),
-        MOST_BOUNCES,
     )
 
 

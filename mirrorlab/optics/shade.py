@@ -1,0 +1,149 @@
+"""What the rays of a packet see: the object's picture, the room, and what else they end on.
+
+Import this only to trace: numba takes a moment to load.
+"""
+
+from __future__ import annotations
+
+import math
+from typing import Any
+
+import numpy as np
+
+from mirrorlab.optics.compiled import compiled, inlined
+from mirrorlab.optics.packet import (
+    BALL,
+    COLOURS,
+    DRIFT,
+    FAR_END,
+    GONE,
+    HALF,
+    HIT,
+    MET,
+    ONE,
+    OVER,
+    PLACE,
+    RATE,
+    RISE,
+    ROW,
+    TIME,
+    TOTAL,
+    WEIGHT,
+    ZERO,
+)
+
+# Values of `body.Face`; a compiled function takes plain numbers.
+ROOM, OBJECT, DARK = 1, 2, 3
+
+AROUND = np.float32(2 * math.pi)
+LIMB = np.float32(0.45)
+"""Brightness of a ball's limb, its middle being 1: as a paper lantern looks (our choice)."""
+
+FLAT = np.float32(0.05)
+"""Slope below which a picture is blurred no more, however flatly it is looked at."""
+
+
+@inlined
+def sample(
+    texels: Any, starts: Any, widths: Any, heights: Any, u: float, v: float, blur: float
+) -> tuple[float, float, float, float]:
+    """Read a texture at u, v (0 to 1, v from the top), smoothed over `blur` texels of the first copy."""
+    level = np.uintp(0)
+    while blur > 1.5 and level + np.uintp(1) < starts.size:
+        blur *= HALF
+        level += np.uintp(1)
+    width, height = widths[level], heights[level]
+    x = min(max(u * np.float32(width) - HALF, ZERO), np.float32(width - 1))
+    y = min(max(v * np.float32(height) - HALF, ZERO), np.float32(height - 1))
+    column, row = np.int32(x), np.int32(y)
+    fx, fy = x - np.float32(column), y - np.float32(row)
+    a = np.uintp((starts[level] + row * width + column) * 4)
+    b = a + np.uintp(4 if column + 1 < width else 0)
+    step = np.uintp(width * 4 if row + 1 < height else 0)
+    c, d = a + step, b + step
+    # No store between the reads, so that all stays in registers.
+    p, q, r, s = (ONE - fx) * (ONE - fy), fx * (ONE - fy), (ONE - fx) * fy, fx * fy
+    i, j, k = np.uintp(1), np.uintp(2), np.uintp(3)
+    return (
+        p * texels[a] + q * texels[b] + r * texels[c] + s * texels[d],
+        p * texels[a + i] + q * texels[b + i] + r * texels[c + i] + s * texels[d + i],
+        p * texels[a + j] + q * texels[b + j] + r * texels[c + j] + s * texels[d + j],
+        p * texels[a + k] + q * texels[b + k] + r * texels[c + k] + s * texels[d + k],
+    )
+
+
+@inlined
+def add(work: Any, k: Any, red: Any, green: Any, blue: Any) -> None:
+    """Add light, as dim as the ray has become, to what ray k gathers."""
+    work[TOTAL[0] + k] += work[WEIGHT[0] + k] * red
+    work[TOTAL[1] + k] += work[WEIGHT[1] + k] * green
+    work[TOTAL[2] + k] += work[WEIGHT[2] + k] * blue
+
+
+@compiled
+def show_object(work: Any, alive: Any, card: Any, spread: float, texture: Any) -> None:
+    """Add the object's light to the rays that meet it, and let through what its picture lets through."""
+    shape, half_width, _, scale_u, scale_v = card
+    texels, starts, widths, heights = texture
+    texels_across = np.float32(widths[0])
+    for k in range(alive):
+        met = work[MET + k]
+        if met >= work[TIME + k]:
+            continue
+        dx, dy, dz = work[DRIFT[0] + k], work[DRIFT[1] + k], work[DRIFT[2] + k]
+        x, y = work[PLACE[0] + k] + met * dx, work[PLACE[1] + k] + met * dy
+        shade = ONE
+        if shape == BALL:
+            z = work[PLACE[2] + k] + met * dz
+            facing = -(x * dx + y * dy + z * dz) / half_width
+            u = np.float32(math.atan2(x, z) / (2 * math.pi)) + HALF
+            v = HALF - HALF * y / half_width
+            shade = LIMB + (ONE - LIMB) * facing
+            fineness = texels_across / (AROUND * half_width * max(facing, FLAT))
+        else:
+            u, v = HALF + x * scale_u, HALF - y * scale_v
+            fineness = scale_u * texels_across / math.sqrt(max(abs(dz), FLAT))
+        red, green, blue, opacity = sample(
+            texels, starts, widths, heights, u, v, (work[GONE + k] + met) * spread * fineness
+        )
+        add(work, k, red * shade, green * shade, blue * shade)
+        clear = ONE - opacity
+        for c in range(COLOURS):
+            work[WEIGHT[0] + ROW * c + k] *= clear
+
+
+@compiled
+def end_rays(work: Any, alive: Any, body: Any, card: Any, spread: float, texture: Any, lights: Any) -> None:
+    """Add the light of what the rays that end here have met."""
+    kinds, mirrors = body
+    shape, _, _, scale_u, scale_v = card
+    texels, starts, widths, heights = texture
+    texels_across = np.float32(widths[0])
+    for k in range(alive):
+        face = int(work[HIT + k])
+        if work[OVER + k] == ZERO or face < mirrors:
+            continue
+        kind = kinds[face]
+        if kind == OBJECT and shape == FAR_END:
+            u, v = HALF + work[PLACE[0] + k] * scale_u, HALF - work[PLACE[1] + k] * scale_v
+            slope = max(-work[RATE[0] + ROW * np.uintp(face) + k], FLAT)
+            fineness = scale_u * texels_across / math.sqrt(slope)
+            blur = work[GONE + k] * spread * fineness
+            red, green, blue, opacity = sample(texels, starts, widths, heights, u, v, blur)
+            clear = ONE - opacity
+            add(
+                work, k, red + clear * lights[2, 0], green + clear * lights[2, 1], blue + clear * lights[2, 2]
+            )
+        elif kind == ROOM:
+            rise = HALF + HALF * work[RISE + k]
+            fall = ONE - rise
+            add(
+                work,
+                k,
+                fall * lights[0, 0] + rise * lights[1, 0],
+                fall * lights[0, 1] + rise * lights[1, 1],
+                fall * lights[0, 2] + rise * lights[1, 2],
+            )
+        else:
+            plain = 2 if kind == OBJECT else (3 if kind == DARK else 4)
+            add(work, k, lights[plain, 0], lights[plain, 1], lights[plain, 2])
