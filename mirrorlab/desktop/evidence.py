@@ -12,6 +12,7 @@ from mirrorlab.desktop import symbols
 from mirrorlab.desktop.angle_text import plain_text, pretty
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.printed import as_sentence, with_pi
 from mirrorlab.desktop.theming import theming
 from mirrorlab.mirrors import Arrangement, Finding, Suggestion
 
@@ -62,12 +63,9 @@ class EvidenceSheet(QFrame):
         self.grounds.show_html(grounds_html(finding))
         self.flags.clear()
         for flag in finding.flags:
+            reason = with_pi(flag.reason_in(notation))
             self.flags.add(
-                label(
-                    f"{flag.letters}  {flag.reason}" if flag.letters not in flag.reason else flag.reason,
-                    "",
-                    wrap=True,
-                )
+                label(reason if flag.letters in reason else f"{flag.letters}  {reason}", "", wrap=True)
             )
         if finding.kind == "closed" and not finding.flags:
             self.flags.add(
@@ -142,6 +140,7 @@ class _Column(QWidget):
         """Take the last widget away."""
         item = self._list.takeAt(self._list.count() - 2)
         if item is not None and item.widget() is not None:
+            item.widget().hide()
             item.widget().deleteLater()
 
     def clear(self) -> None:
@@ -200,8 +199,8 @@ def gram_html(arrangement: Arrangement, finding: Finding) -> str:
 def grounds_html(finding: Finding) -> str:
     """The bounds used, what breaks them, and the numbers of the group."""
     evidence, group = finding.evidence, finding.group
-    lines = [escape(text[:1].upper() + text[1:]) + "." for text in evidence.bounds]
-    lines += [f"<b>{escape(text[:1].upper() + text[1:])}.</b>" for text in evidence.broken]
+    lines = [escape(as_sentence(text)) for text in evidence.bounds]
+    lines += [f"<b>{escape(as_sentence(text))}</b>" for text in evidence.broken]
     if evidence.witness is not None:
         one, other, apart = evidence.witness
         lines.append(f"The mirrors <i>{one}</i> and <i>{other}</i> stand only {apart:.4g}° apart.")

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from html import escape
 
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
@@ -12,10 +13,12 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.evidence import EvidenceSheet
 from mirrorlab.desktop.marks import FindingMark
 from mirrorlab.desktop.parts import Elided, button, label, rule
+from mirrorlab.desktop.printed import with_pi
 from mirrorlab.desktop.steady import Steady
 from mirrorlab.desktop.symbol_strip import Named, SymbolStrip
 from mirrorlab.desktop.theming import arrow, theming
 from mirrorlab.mirrors import Finding
+from mirrorlab.mirrors.sentence import sentence
 
 HEADLINES = {
     "closed": "Closed",
@@ -109,7 +112,7 @@ class FindingBand(QFrame):
         finding = self.document.finding
         self.mark.set_kind(finding.kind)
         self.headline.setText(HEADLINES[finding.kind])
-        self.sentence.setText(sentence_html(finding))
+        self.sentence.setText(sentence_html(finding, self.document.settings.notation))
         self.symbols.show_symbols(symbols_of(finding))
         count = len(finding.flags)
         self.toggle.setText("Evidence" if not count else f"Evidence, {count} flag{'s' if count > 1 else ''}")
@@ -138,8 +141,8 @@ def symbols_of(finding: Finding) -> tuple[Named, ...]:
     return (*names, Named(symbols.families(finding.families), caption))
 
 
-def sentence_html(finding: Finding) -> str:
-    """The finding's sentence with its symbols set as printed."""
-    text = finding.sentence.replace("&", "&amp;").replace("<", "&lt;")
+def sentence_html(finding: Finding, notation: str) -> str:
+    """The finding's sentence with its symbols set as printed, its angles in a notation."""
+    text = escape(with_pi(sentence(finding, notation)), quote=False)
     text = SYMBOL.sub(lambda match: symbols.as_html(symbols.hermann_mauguin(match[0])), text)
     return FAMILY.sub(lambda match: symbols.as_html(symbols.families([match[0]])), text)

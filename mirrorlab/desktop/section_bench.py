@@ -57,7 +57,7 @@ class SectionBench(Bench):
             self.column.addWidget(one)
         self.chips.choose(list(self.sections).index(first))
         self.chips.chosen.connect(self.show_section)
-        for signal in (document.arrangement_changed, document.seed_changed):
+        for signal in (document.arrangement_changed, document.seed_changed, document.settings_changed):
             signal.connect(self.watch)
 
     @property

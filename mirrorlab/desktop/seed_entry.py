@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QComboBox, QGridLayout, QHBoxLayout, QVBoxLayout, 
 from mirrorlab.desktop.document import Document, Seed
 from mirrorlab.desktop.marks import LetterDisc
 from mirrorlab.desktop.parts import Field, Segments, label
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.seeding import where
 from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.mirrors import OrbitError
@@ -224,7 +225,7 @@ class SeedEntry(QWidget):
         try:
             self.document.arrangement.seed(seed.heights, seed.point, seed.place)
         except OrbitError as error:
-            self._say_error(str(error))
+            self._say_error(as_sentence(str(error)))
             return
         self.error.hide()
         self.document.set_seed(seed, "seed", self._gesture)

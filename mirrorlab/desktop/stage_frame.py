@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 import numpy as np
 from PySide6.QtCore import QSignalBlocker, Qt, Signal
 from PySide6.QtGui import QShowEvent
@@ -19,6 +21,7 @@ from mirrorlab.desktop.bench import NoPicture
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Elided, button
 from mirrorlab.desktop.pictures import Shelf
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.seeding import drag
 from mirrorlab.desktop.stage import StageView, make_view
 from mirrorlab.desktop.stylesheet import set_kind
@@ -121,7 +124,7 @@ class Pane(QFrame):
         try:
             picture = self._widgets.get(name) or self.shelf.take(name)
         except NoPicture as reason:
-            self._show_empty(name, str(reason))
+            self._show_empty(name, as_sentence(str(reason)))
             return
         if isinstance(picture, QWidget):
             self._show_widget(name, picture)
@@ -152,10 +155,10 @@ class Pane(QFrame):
 
     def _show_drawing(self, drawing: Drawing) -> None:
         if not (drawing.faces or drawing.lines or drawing.points):
-            self._show_empty(drawing.title, "\n".join(drawing.notes))
+            self._show_empty(drawing.title, "\n".join(map(as_sentence, drawing.notes)))
             return
         self.drawing, self.words = drawing, None
-        self.note.setText("; ".join(drawing.notes))
+        self.note.setText(_told(drawing.notes))
         self.note.setToolTip(drawing.frame)
         view = self._view()
         view.set_drawing(drawing)
@@ -204,6 +207,11 @@ class Pane(QFrame):
         """Take the theme's tints."""
         if self.view is not None:
             self.view.set_look(theming().theme)
+
+
+def _told(notes: Sequence[str]) -> str:
+    """Notes of a drawing in one line."""
+    return as_sentence("; ".join(notes)).removesuffix(".")
 
 
 class StageFrame(QFrame):

@@ -11,6 +11,7 @@ from mirrorlab.desktop.angle_cell import AngleCell
 from mirrorlab.desktop.angle_text import mark_of
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.marks import LetterDisc
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.mirrors import ArrangementError
 
 ROOMY = 4
@@ -122,7 +123,7 @@ class Triangle(QWidget):
             else:
                 self.document.set_angle(pair, text, self._gesture)
         except (AngleError, ArrangementError) as error:
-            cell.show_error(str(error))
+            cell.show_error(as_sentence(str(error)))
             self.reading_changed.emit()
 
     def _give_up(self, pair: int) -> None:

@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QHBoxLayout, QMenu, QPlainTextEdit, QVBoxLayout, Q
 from mirrorlab.desktop.angle_text import plainly_typed
 from mirrorlab.desktop.document import MOST_MIRRORS, Document
 from mirrorlab.desktop.parts import Field, button, label
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.sheets import show_sheet
 from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.files.samples import samples
@@ -119,7 +120,7 @@ class FamilyEntry(QWidget):
         try:
             arrangement = plainly_typed(Arrangement.from_family(name, self.document.settings.reading))
         except ValueError as error:
-            self._say(str(error))
+            self._say(as_sentence(str(error)))
             return
         if arrangement.size < 2:
             self._say(f'"{name}" is a single mirror: it has no angle to show in the triangle')
@@ -172,7 +173,7 @@ class NormalsEntry(QWidget):
             arrangement = Arrangement.from_normals(read_rows(self.field.toPlainText()))
             arrangement.finding()  # refused here, in place, when it would fill the memory with mirrors
         except ValueError as error:
-            self._say(str(error))
+            self._say(as_sentence(str(error)))
             return
         if not 2 <= arrangement.size <= MOST_MIRRORS:
             self._say(f"{arrangement.size} normals: the triangle holds 2 to {MOST_MIRRORS} mirrors")

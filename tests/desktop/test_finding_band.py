@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QLabel, QPushButton
+from PySide6.QtWidgets import QApplication, QLabel, QPushButton
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop import symbols
@@ -80,6 +82,33 @@ def test_flags_name_the_pair(window: Window) -> None:
     assert "1 flag" in window.band.toggle.text()
     texts = [label.text() for label in window.band.sheet.flags.findChildren(QLabel)]
     assert any("bc" in text and "4cos²" in text for text in texts)
+
+
+def test_flags_and_sentence_keep_to_the_notation(window: Window) -> None:
+    window.band.toggle.click()
+    flags = window.band.sheet.flags
+
+    def told() -> str:
+        QApplication.processEvents()
+        return " ".join(label.text() for label in flags.findChildren(QLabel) if not label.isHidden())
+
+    window.document.set_angle(2, "36")
+    assert "bc 36°" in told()
+    window.document.set_settings(replace(window.document.settings, notation="pi"))
+    assert "bc π/5" in told()
+    assert "π/4" in told()
+    for pair in range(3):
+        window.document.set_angle(pair, "60")
+    assert "read as 2π/3" in window.band.sentence.text()
+    window.document.set_settings(replace(window.document.settings, notation="dms"))
+    assert "read as 120°" in window.band.sentence.text()
+
+
+def test_letters_of_mirrors_keep_their_case_in_the_evidence(window: Window) -> None:
+    window.band.toggle.click()
+    window.document.set_angle(2, "40")
+    grounds = " ".join(label.text() for label in window.band.sheet.grounds.findChildren(QLabel))
+    assert "<b>b and c make mirrors" in grounds
 
 
 def test_a_suggestion_is_applied_with_one_click(window: Window, qtbot: QtBot) -> None:

@@ -142,7 +142,7 @@ def test_normals_fill_the_triangle_or_say_which_row_is_wrong(window: Window) -> 
     ways.normals_button.click()
     ways.normals.field.setPlainText("1 0 0\n0 one 0")
     ways.normals.take()
-    assert 'row 2, "one"' in ways.normals.error.text()
+    assert 'Row 2, "one"' in ways.normals.error.text()
     ways.normals.field.setPlainText("1 0 0\n0 1 0\n0, -1, 1")
     ways.normals.take()
     assert [c.reading.text() for c in window.mirrors.triangle.cells][:1] == ["≈ π/2"]

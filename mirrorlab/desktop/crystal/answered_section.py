@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.printed import as_sentence
 
 STOPPED = "Stopped. Open this section again to start anew."
 
@@ -61,7 +62,7 @@ class AnsweredSection(Section):
     def _failed(self, question: Hashable, error: Exception) -> None:
         if not isinstance(error, ValueError):
             raise error
-        self._question, self.problem = question, str(error)
+        self._question, self.problem = question, as_sentence(str(error))
         self.show_answer()
 
     def _ended(self, name: str) -> None:

@@ -19,6 +19,7 @@ from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import typed_cell
 from mirrorlab.desktop.document import MOST_MIRRORS, Document
 from mirrorlab.desktop.parts import Segments, button, label
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.rows import Column
 from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.drawing.model import Key
@@ -170,7 +171,7 @@ class CellSection(Section):
         try:
             return typed_cell(self.state.constants, self.state.centring), ""
         except CrystalError as error:
-            return None, str(error)
+            return None, as_sentence(str(error))
 
     def _say_cell(self, problem: str) -> None:
         texts = self.state.constants
@@ -241,7 +242,7 @@ class CellSection(Section):
         try:
             made: Arrangement | None = which(planes)
         except ValueError as error:
-            self._say_use(str(error))
+            self._say_use(as_sentence(str(error)))
             return
         self._put(made, f"planes of {self.state.cell_name or 'the cell'}")
 
@@ -290,7 +291,7 @@ def read_planes(cell: Cell, texts: tuple[str, ...]) -> tuple[Planes | None, list
             indices = parse_indices(text, cell.hexagonal)
             one = planes_of(cell, [indices]).planes[0]
         except CrystalError as error:
-            answers.append((str(error), True))
+            answers.append((as_sentence(str(error)), True))
             continue
         whole.append(indices)
         row = one.row
@@ -302,7 +303,7 @@ def read_planes(cell: Cell, texts: tuple[str, ...]) -> tuple[Planes | None, list
     try:
         return planes_of(cell, whole), answers, ""
     except CrystalError as error:
-        return None, answers, str(error)
+        return None, answers, as_sentence(str(error))
 
 
 def cell_facts(cell: Cell, tolerance: float) -> dict[str, str]:

@@ -15,6 +15,7 @@ from mirrorlab.desktop.crystal.answered_section import AnsweredSection
 from mirrorlab.desktop.crystal.crystal_parts import Choice
 from mirrorlab.desktop.document import Document, fitted
 from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.printed import as_sentence, with_pi
 from mirrorlab.desktop.rows import Column
 from mirrorlab.desktop.seed_entry import number
 from mirrorlab.desktop.stylesheet import set_wrong
@@ -126,12 +127,13 @@ class FitSection(AnsweredSection):
             self.note = self.problem or FITTING
             self.notes.hide()
         else:
-            self.sentence.setText(_told(found))
+            notation = self.document.settings.notation
+            self.sentence.setText(_told(found, notation))
             keys: list[Key] = [("candidate", k) for k in range(len(found.candidates))]
-            self.model.set_columns(candidate_columns(found), keys)
+            self.model.set_columns(candidate_columns(found, notation), keys)
             self.title = f"{len(found.candidates)} closed arrangements"
             self.note = f"χ² of {found.degrees_of_freedom} angles; pulls in standard uncertainties"
-            self.notes.setText(". ".join(found.notes) + "." if found.notes else "")
+            self.notes.setText(" ".join(as_sentence(note) for note in found.notes))
             self.notes.setVisible(bool(found.notes))
         self._show_cards(() if found is None else found.candidates[:CARDS])
         self._show_chosen()
@@ -148,6 +150,7 @@ class FitSection(AnsweredSection):
             self._stack.removeWidget(card)
             card.hide()
             card.deleteLater()
+        notation = self.document.settings.notation
         now = tuple(angle.fraction for angle in self.document.arrangement.angles)
         for card, one in zip(self.cards, candidates, strict=True):
             pairs = [name.pair for name in self.answer.measured]
@@ -155,7 +158,7 @@ class FitSection(AnsweredSection):
                 angle.uncertainty for angle in self.document.arrangement.angles
             )
             state = "in the triangle" if live else f"p {_probability(one.probability)}"
-            card.show_choice(one.symbol, one.angle_text, _pulls(one, pairs), state, live)
+            card.show_choice(one.symbol, _angles(one, notation), _pulls(one, pairs), state, live)
             card.setToolTip("Put it into the triangle")
 
     def _show_chosen(self) -> None:
@@ -201,14 +204,18 @@ def _fit(texts: tuple[str, ...], sigma: float | None) -> Fit:
     return fit_angles(texts, sigma)
 
 
-def _told(found: Fit) -> str:
+def _angles(one: FitCandidate, notation: str) -> str:
+    return with_pi(one.angles_in(notation))
+
+
+def _told(found: Fit, notation: str) -> str:
     """The answer in a few words; the numbers stand on the cards."""
     best = found.best
     told = "The best fits." if best.fits else "None of them fits; the nearest comes first."
     if best.misfit and not best.fits:
         told += f" The misfit is {best.misfit}: the other angles fit without it."
     if found.tied:
-        names = ", ".join(f"{one.symbol} at {one.angle_text}" for one in found.tied[:2])
+        names = ", ".join(f"{one.symbol} at {_angles(one, notation)}" for one in found.tied[:2])
         more = f" and {len(found.tied) - 2} more" if len(found.tied) > 2 else ""
         told += f" At this precision it cannot be told from {names}{more}."
     return told
@@ -232,13 +239,13 @@ def _tidy(chi_squared: float) -> str:
     return f"{chi_squared:.3g}" if chi_squared < 1000 else f"{chi_squared:,.0f}"
 
 
-def candidate_columns(found: Fit) -> list[Column]:
+def candidate_columns(found: Fit, notation: str = "degrees") -> list[Column]:
     """The table of candidates."""
     rows = found.candidates
     columns = [
         Column("rank", np.arange(1, len(rows) + 1)),
         Column("group", [one.symbol for one in rows], text=True),
-        Column("angles", [one.angle_text for one in rows], text=True),
+        Column("angles", [_angles(one, notation) for one in rows], text=True),
         Column("χ²", np.array([one.chi_squared for one in rows]), _tidy),
         Column(
             "probability",

@@ -21,6 +21,7 @@ from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import Working, cell_basis, solid_of
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.rows import Column
 from mirrorlab.drawing.model import Key
 
@@ -182,7 +183,7 @@ def answers(group: NamedGroup, faces: tuple[str, ...]) -> list[tuple[str, bool]]
             indices, _ = parse_form(text, group.hexagonal, group.name.crystallographic)
             made = form(group, indices)
         except CrystalError as error:
-            found.append((str(error), True))
+            found.append((as_sentence(str(error)), True))
             continue
         first = tuple(made.faces[0].tolist())
         if first in seen:

@@ -21,6 +21,7 @@ from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import SAME_PLACE, Working, candidates, simple_mirrors
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import button, label
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.rows import Column
 from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.drawing.model import Key
@@ -192,7 +193,7 @@ class GroupSection(Section):
         try:
             group = point_group(typed)
         except CrystalError as error:
-            self._say(str(error))
+            self._say(as_sentence(str(error)))
             return
         self._say("")
         self._shown = ()

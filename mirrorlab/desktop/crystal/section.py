@@ -9,6 +9,7 @@ from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.desktop.bench_section import BenchSection
 from mirrorlab.desktop.crystal.crystal_state import CrystalState, crystal_state
 from mirrorlab.desktop.crystal.workings import Working, working_of
+from mirrorlab.desktop.printed import as_sentence
 
 
 class Section(BenchSection):
@@ -30,4 +31,4 @@ class Section(BenchSection):
         try:
             return working_of(self.document), ""
         except CrystalError as error:
-            return None, str(error)
+            return None, as_sentence(str(error))

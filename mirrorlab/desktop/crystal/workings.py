@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 from mirrorlab.crystal.operations import CrystalError
 from mirrorlab.desktop.crystal.crystal_state import CrystalState, crystal_state
 from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.printed import as_sentence
 
 if TYPE_CHECKING:
     from mirrorlab.crystal.candidates import Candidates
@@ -190,7 +191,7 @@ def read_list(text: str, source: str) -> PointList | str:
     try:
         return parse_points(text, source)
     except CrystalError as error:
-        return str(error)
+        return as_sentence(str(error))
 
 
 def simple_mirrors(group: NamedGroup) -> Array:

@@ -18,6 +18,7 @@ from mirrorlab.desktop.glass.glass_section import GlassSection, told
 from mirrorlab.desktop.glass.glass_state import WORDS
 from mirrorlab.desktop.glass.workings import mirror_spec, whole_number
 from mirrorlab.desktop.parts import Segments, label
+from mirrorlab.desktop.printed import with_pi
 from mirrorlab.desktop.rows import Column
 from mirrorlab.drawing.model import Key
 from mirrorlab.mirrors import Arrangement
@@ -26,6 +27,8 @@ from mirrorlab.optics.lengths import AssemblyError, positive_length
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
+
+    from mirrorlab.optics.closing import Closing
 
 NEAREST = 5
 """Cards: so many stand beside each other without scrolling."""
@@ -117,7 +120,8 @@ class ChooseSection(GlassSection):
             self.state_words.setText(words)
             self.state_words.setVisible(True)
         state = self.state
-        key = (id(self.answer.value), state.kinds, state.whole)
+        notation = self.document.settings.notation
+        key = (id(self.answer.value), state.kinds, state.whole, notation)
         if key != self._listed:
             self._listed = key
             self.found = tuple(
@@ -127,8 +131,11 @@ class ChooseSection(GlassSection):
                 and (choice.closing.chambers == 1 or not state.whole)
             )
             keys: list[Key] = [("choice", k) for k in range(len(self.found))]
-            self.model.set_columns(choice_columns(self.found) if self.found else (), keys)
-            self.title = f"{len(self.found)} assemblies that close"
+            self.model.set_columns(choice_columns(self.found, notation) if self.found else (), keys)
+            count = len(self.found)
+            self.title = f"{count} assemblies that close" if count != 1 else "1 assembly that closes"
+            if self.answer.value is None:
+                self.title = "Assemblies that close"
             self.note = (
                 "pick one to load it; lengths in mm"
                 if self.found
@@ -143,13 +150,16 @@ class ChooseSection(GlassSection):
         except AssemblyError:
             return
         self._near = near = nearest(self.found, wanted, NEAREST)
+        notation = self.document.settings.notation
         texts = [angle.fraction for angle in self.document.arrangement.angles]
         for k, card in enumerate(self.cards):
             card.setVisible(k < len(near))
             if k < len(near):
                 closing = near[k].closing
                 live = list(closing.fractions) == texts
-                card.show_card(closing.name.capitalize(), figure(near[k]), panels_words(near[k]), live)
+                card.show_card(
+                    _name(closing, notation).capitalize(), figure(near[k]), panels_words(near[k]), live
+                )
 
     def _card_chosen(self, index: int) -> None:
         self.begin("choose")
@@ -191,9 +201,8 @@ class ChooseSection(GlassSection):
             seed=fitted(document.seed, arrangement),
             **fields,
         )
-        self.says.emit(
-            f"{choice.closing.name.capitalize()}: {figure(choice)}. Undo brings back what was there."
-        )
+        name = _name(choice.closing, document.settings.notation).capitalize()
+        self.says.emit(f"{name}: {figure(choice)}. Undo brings back what was there.")
 
 
 def _listed(opening: float, reflectance: float, progress: Any) -> tuple[Choice, ...]:
@@ -218,10 +227,14 @@ def panels_words(choice: Choice) -> str:
     return text if between == 1 else f"{text}; {between} chambers between"
 
 
-def choice_columns(found: Sequence[Choice]) -> list[Column]:
+def _name(closing: Closing, notation: str) -> str:
+    return with_pi(closing.name_in(notation))
+
+
+def choice_columns(found: Sequence[Choice], notation: str = "degrees") -> list[Column]:
     """The table of assemblies that close."""
     return [
-        Column("assembly", [one.closing.name for one in found], text=True),
+        Column("assembly", [_name(one.closing, notation) for one in found], text=True),
         Column(
             "images",
             [one.closing.images for one in found],

@@ -9,6 +9,7 @@ from mirrorlab.desktop.bench_section import BenchSection
 from mirrorlab.desktop.glass.glass_parts import Entries
 from mirrorlab.desktop.glass.glass_state import GlassState, glass_state
 from mirrorlab.desktop.glass.workings import assembly_of, bare_assembly, kind_of
+from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.lengths import AssemblyError
 
@@ -81,5 +82,4 @@ def why_no_kind(arrangement: Any) -> str:
 
 def told(error: AssemblyError) -> str:
     """An error as a sentence to stand below its entry."""
-    text = str(error)
-    return text[:1].upper() + text[1:] + ("" if text.endswith(".") else ".")
+    return as_sentence(str(error))

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
@@ -61,8 +63,8 @@ def test_a_candidate_from_the_table_is_applied(window, fitted):
 
 def test_exact_angles_ask_for_an_uncertainty(window, fitted, type_into, qtbot):
     fit = fitted("90", "60", "45")
-    assert "no angle has an uncertainty" in fit.sentence.text()
-    assert "no angle has an uncertainty" in window.table.empty.text()
+    assert "No angle has an uncertainty" in fit.sentence.text()
+    assert "No angle has an uncertainty" in window.table.empty.text()
     type_into(fit.sigma, "0.5")
     qtbot.waitUntil(lambda: fit.answer is not None, timeout=LONG)
     assert fit.answer.best.chi_squared == 0
@@ -89,3 +91,11 @@ def test_a_stopped_fit_is_asked_for_again(window, section, put, qtbot):
     section("Fit")
     qtbot.waitUntil(lambda: fit.answer is not None, timeout=LONG)
     assert fit.cards[0].accessibleName().startswith("m-3m")
+
+
+def test_candidates_are_written_in_the_notation(window, fitted):
+    fit = fitted("90.1(2)", "59.8(3)", "44.6(4)")
+    assert fit.cards[0].beside.text() == "90°, 60°, 45°"
+    window.document.set_settings(replace(window.document.settings, notation="pi"))
+    assert fit.cards[0].beside.text() == "π/2, π/3, π/4"
+    assert window.table.rows.model().text_at(0, 2) == "π/2, π/3, π/4"

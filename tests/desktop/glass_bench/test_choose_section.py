@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
@@ -99,3 +101,12 @@ def test_what_cannot_be_read_is_told_below_and_the_list_stays(choose, type_into,
     assert choose.asked.error.isVisible()
     assert text in choose.asked.error.text()
     assert [card.name.text() for card in choose.cards] == shown
+
+
+def test_assemblies_are_named_in_the_notation(window, choose):
+    window.document.set_settings(replace(window.document.settings, notation="pi"))
+    assert any("π/" in card.name.text() for card in choose.cards)
+    model = window.table.rows.model()
+    names = [model.text_at(row, 0) for row in range(model.rowCount())]
+    assert "corner π/2 π/3 π/5" in names
+    assert not [name for name in names if "°" in name]
