@@ -4,12 +4,13 @@ from __future__ import annotations
 
 from PySide6.QtCore import QEvent, Qt, Signal
 from PySide6.QtGui import QFocusEvent, QKeyEvent, QKeySequence
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QFrame, QVBoxLayout, QWidget
 
 from mirrorlab.angles import Angle
 from mirrorlab.desktop.angle_text import short_reading
 from mirrorlab.desktop.marks import WRONG, ReadingMark
-from mirrorlab.desktop.parts import Field, label
+from mirrorlab.desktop.parts import Field
+from mirrorlab.desktop.reading_line import ReadingLine
 from mirrorlab.desktop.stylesheet import set_kind, set_live, set_wrong
 
 
@@ -109,20 +110,13 @@ class AngleCell(QFrame):
         self.edit.setAlignment(Qt.AlignmentFlag.AlignCenter)
         self.edit.setMinimumWidth(30)
         self.edit.setAccessibleName(f"angle between mirrors {name[0]} and {name[1]}")
-        self.mark = ReadingMark(8 if compact else 9)
-        self.reading = label("", "small")
+        self.reading = ReadingLine(8 if compact else 9)
         self._compact = compact
-        below = QHBoxLayout()
-        below.setSpacing(4)
-        below.addStretch(1)
-        below.addWidget(self.mark, 0, Qt.AlignmentFlag.AlignVCenter)
-        below.addWidget(self.reading)
-        below.addStretch(1)
         column = QVBoxLayout(self)
         column.setContentsMargins(2, 1, 2, 3)
         column.setSpacing(0)
         column.addWidget(self.edit)
-        column.addLayout(below)
+        column.addWidget(self.reading)
         self.edit.textEdited.connect(lambda text: self.typed.emit(self.pair, text))
         self.edit.entered.connect(lambda: self._live(True))
         self.edit.left.connect(lambda: self._live(False))
@@ -134,6 +128,11 @@ class AngleCell(QFrame):
         set_live(self, live)
         (self.entered if live else self.left).emit(self.pair)
 
+    @property
+    def mark(self) -> ReadingMark:
+        """The mark of the angle as it was read."""
+        return self.reading.mark
+
     def show_angle(self, angle: Angle, mark: str) -> None:
         """Show how the angle was read. A text that cannot be read stays until its angle changes elsewhere."""
         if self.error and angle.text == self._good:
@@ -143,20 +142,17 @@ class AngleCell(QFrame):
             self.edit.setCursorPosition(0)
         self._good = angle.text
         self._set_error("")
-        self.mark.set_mark(mark)
-        self.reading.setText(short_reading(angle, self._compact))
+        self.reading.show_reading(mark, short_reading(angle, self._compact))
         self.setToolTip(f"{self.name}: {mark}")
         set_wrong(self, False)
-        set_kind(self.reading, "small")
 
     def show_error(self, message: str) -> None:
         """Say in the cell that its text cannot be read; the text stays."""
         self._set_error(message)
-        self.mark.set_mark(WRONG)
-        self.reading.setText("?" if self._compact else "unreadable" if self.edit.text().strip() else "empty")
+        told = "?" if self._compact else "unreadable" if self.edit.text().strip() else "empty"
+        self.reading.show_reading(WRONG, told, "wrong")
         self.setToolTip(message)
         set_wrong(self, True)
-        set_kind(self.reading, "wrong")
 
     def forget_error(self) -> None:
         """Let the next `show_angle` replace a text that cannot be read."""

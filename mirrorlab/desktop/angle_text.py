@@ -13,8 +13,11 @@ def short_reading(angle: Angle, compact: bool = False) -> str:
     """The closing fraction in a few characters, in degrees where π was typed; "≈" where it was uncertain."""
     if angle.fraction is None:
         return "none" if compact else "no fraction"
-    in_pi = "pi" in angle.text or "π" in angle.text
-    written = pretty(angle.fraction, "degrees" if in_pi else "pi")
+    if "pi" in angle.text or "π" in angle.text:  # all six decimals stand below the triangle
+        degrees = 180 * float(angle.fraction)
+        written = f"{round(degrees, 1) if compact else degrees:.6g}°"
+    else:
+        written = pretty(angle.fraction, "pi")
     return written if angle.source == "exact" or compact else f"≈ {written}"
 
 

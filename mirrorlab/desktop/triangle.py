@@ -72,6 +72,9 @@ class Triangle(QWidget):
         self.reading_changed.emit()
 
     def _build(self, size: int) -> None:
+        current, typing = self.current, any(cell.edit.hasFocus() for cell in self.cells)
+        if typing:  # else the keyboard goes from one old cell to the next, and to a button at last
+            self.setFocus()
         for widget in (*self.cells, *self.discs):
             self._grid.removeWidget(widget)
             widget.hide()
@@ -101,7 +104,10 @@ class Triangle(QWidget):
             self.cells.append(cell)
         for column in range(1, size):
             self._grid.setColumnStretch(column, 1)
-        self.current = min(self.current, len(self.cells) - 1)
+        self.current = min(current, len(self.cells) - 1)
+        if typing:
+            self.cells[self.current].show()
+            self.focus_pair(self.current)
         self.current_changed.emit(self.current)
 
     def wanted_width(self) -> int:

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, QObject, Qt
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop.marks import FINE, NO_FRACTION, NO_LATTICE, WRONG
 from mirrorlab.desktop.window import Window
+from mirrorlab.mirrors import Arrangement
 
 
 def retype(window: Window, pair: int, text: str) -> None:
@@ -171,3 +172,55 @@ def test_reading_settings_are_visible_and_undoable(window: Window) -> None:
     window.document.undo_stack.undo()
     assert mirrors.settings.denominator.value() == 360
     assert mirrors.triangle.cells[2].mark.mark == NO_LATTICE
+
+
+def test_the_keyboard_stays_in_the_triangle_when_mirrors_come_and_go(window: Window) -> None:
+    triangle, document = window.mirrors.triangle, window.document
+    retype(window, 1, "72")
+    document.put_sheet(Arrangement.from_family("E8"), "E8")
+    QApplication.processEvents()
+    assert triangle.current == 1
+    assert triangle.cells[1].edit.hasFocus()
+    QTest.keyClick(triangle.cells[1].edit, Qt.Key.Key_Z, Qt.KeyboardModifier.ControlModifier)
+    QApplication.processEvents()
+    assert len(triangle.cells) == 3
+    assert triangle.cells[1].edit.hasFocus()
+    assert [angle.text for angle in document.arrangement.angles] == ["90", "72", "45"]
+
+
+def test_long_readings_widen_no_column(window: Window) -> None:
+    window.document.put_sheet(Arrangement.from_family("A1xI2(7)xI2(9)xI2(11)"), "wide")
+    window.mirrors.fit()
+    QApplication.processEvents()
+    panel, triangle = window.mirrors, window.mirrors.triangle
+    widths = {cell.width() for cell in triangle.cells}
+    assert max(widths) - min(widths) <= 1
+    right = triangle.cells[-1].mapTo(panel, triangle.cells[-1].rect().topRight()).x()
+    assert right <= panel.area.viewport().width()
+    for cell in triangle.cells:
+        assert cell.reading.words.geometry().right() <= cell.reading.width()
+
+
+def test_a_reading_takes_no_layout(window: Window) -> None:
+    cell = window.mirrors.triangle.cells[2]
+    window.mirrors.triangle.focus_pair(2)
+    QApplication.processEvents()
+    asked: list[QEvent.Type] = []
+    watch = Watch(asked)
+    cell.installEventFilter(watch)
+    QTest.keyClicks(cell.edit, "37")
+    assert cell.reading.text() == "37π/180"
+    QApplication.processEvents()
+    assert QEvent.Type.LayoutRequest not in asked
+
+
+class Watch(QObject):
+    """Notes the types of events."""
+
+    def __init__(self, seen: list[QEvent.Type]) -> None:
+        super().__init__()
+        self.seen = seen
+
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        self.seen.append(event.type())
+        return False
