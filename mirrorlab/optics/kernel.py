@@ -217,9 +217,9 @@ def order() -> Any:
 
 
 @compiled
-def measure(rays: Any, left: float, top: float, fine: float) -> None:
+def measure(rays: Any, count: Any, left: float, top: float, fine: float) -> None:
     """Work out how long a step of each ray of a square is; no joint has taken of it yet."""
-    for k in range(SIDE * SIDE):
+    for k in range(count):
         x, y = left + rays[0, k] * fine, top - rays[1, k] * fine
         rays[2, k] = math.sqrt(1.0 + x * x + y * y)
         rays[3, k] = 1
@@ -334,8 +334,8 @@ def trace_rows(
                     s = 0
                     number += 1
                     begin(squares, view, corners, x, y)
-                if size <= SIDE:
-                    measure(rays, left, top, fine)
+                if size == LEAST:
+                    measure(rays, LEAST * LEAST, left, top, fine)
                 why = ENDS
                 if outside and squares[s, PLACE, LAST] < 0:
                     why = enter_square(squares, s, view, kinds, mirrors, corners)
@@ -354,6 +354,8 @@ def trace_rows(
                 alive = step(work, alive, home, sums, body, bounce, card, texture, lights, ray_limits)
             if s < 0:
                 break
+            if size > LEAST:
+                measure(rays, size * size, left, top, fine)
             for k in range(room):
                 i, j = int(rays[0, k]), int(rays[1, k])
                 work[RIGHT + alive + k], work[DOWN + alive + k] = rays[0, k], rays[1, k]

@@ -24,7 +24,7 @@ FAR_END, CARD, BALL = 0, 1, 2
 FACES, MIRRORS = 6, 4
 """A body has at most so many faces (a tube of four mirrors with two ends), and so many mirrors."""
 
-SIDE, RAYS = 8, 128
+SIDE, RAYS = 8, 192
 """Rays of 8 by 8 pixels come into a packet at once; its rows stay in the first-level cache."""
 
 

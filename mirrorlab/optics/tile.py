@@ -159,19 +159,35 @@ def may_see_object(squares: Any, s: int, reach: float, radius: float) -> bool:
     return widened * widened >= distance or (along < 0 and across <= widened * widened)
 
 
+@inlined
+def line(squares: Any, s: int, row: int) -> tuple[float, float, float, float]:
+    """A row of a square's table."""
+    return squares[s, row, EYE], squares[s, row, CORNER], squares[s, row, ACROSS], squares[s, row, DOWNWARDS]
+
+
+@inlined
+def off(mirror: Any, slant: float, x: float, y: float, steps: float) -> float:
+    """How far from the joint with a mirror a ray arrives; a slant of 0 is no joint."""
+    away = slant * (mirror[0] + steps * (mirror[1] + x * mirror[2] + y * mirror[3]))
+    return away if slant > 0 else FARTHEST
+
+
 @compiled
-def take_joints(squares: Any, s: int, face: int, mirrors: int, glass: Any, limits: Any, rays: Any) -> None:
+def take_joints(squares: Any, s: int, face: int, glass: Any, limits: Any, rays: Any, count: int) -> None:
     """Take the light that falls on the lines of joints from each ray of one of the smallest squares."""
     joint, fine = limits[0], limits[1]
     part = 1.0 / (LEAST - 1)
-    for k in range(LEAST * LEAST):
+    here, a, b = line(squares, s, face), line(squares, s, 0), line(squares, s, 1)
+    c, d = line(squares, s, 2), line(squares, s, 3)
+    slants = (glass[face, OFF], glass[face, OFF + 1], glass[face, OFF + 2], glass[face, OFF + 3])
+    # No branches, and a count that only the caller knows: so the compiler can do four at once.
+    for k in range(count):
         x, y = part * rays[RIGHT, k], part * rays[DOWN, k]
-        change = squares[s, face, CORNER] + x * squares[s, face, ACROSS] + y * squares[s, face, DOWNWARDS]
-        steps, nearest = squares[s, face, EYE] / -change, FARTHEST
-        for i in range(mirrors):
-            if glass[face, OFF + i] > 0:
-                change = squares[s, i, CORNER] + x * squares[s, i, ACROSS] + y * squares[s, i, DOWNWARDS]
-                nearest = min(nearest, glass[face, OFF + i] * (squares[s, i, EYE] + steps * change))
+        steps = -here[0] / (here[1] + x * here[2] + y * here[3])
+        nearest = min(
+            min(off(a, slants[0], x, y, steps), off(b, slants[1], x, y, steps)),
+            min(off(c, slants[2], x, y, steps), off(d, slants[3], x, y, steps)),
+        )
         wide = steps * fine * rays[LENGTH, k]
         share = min(joint, nearest + 0.5 * wide) - max(-joint, nearest - 0.5 * wide)
         rays[SHARE, k] *= max(1 - max(share, 0.0) / wide, 0.0)
@@ -231,7 +247,7 @@ def follow(
         if nearest < joint + 0.5 * farthest * fine:
             if squares[s, PLACE, SIZE] > LEAST:
                 return SPLIT
-            take_joints(squares, s, face, mirrors, glass, limits, rays)
+            take_joints(squares, s, face, glass, limits, rays, int(squares[s, PLACE, SIZE]) ** 2)
         brightest = 0.0
         for c in range(3):
             squares[s, LIGHT, c] *= 1 + glass[face, LOSS + c]

@@ -135,6 +135,56 @@ def test_brightness_falls_as_a_power_of_the_reflectance() -> None:
     assert np.abs(light - expected).max() < 0.006, "within a byte of sRGB"
 
 
+def through_mirrors_and_joints(assembly: optics.Assembly, joint: float, size: tuple[int, int]) -> np.ndarray:
+    """What is left of each pixel's light at its end, ray by ray and plane by plane, shape (height, width, 3)."""
+    body, camera = body_of(assembly), camera_of(assembly, *size)
+    x, y = np.meshgrid(np.arange(size[0]) + 0.5 - size[0] / 2, size[1] / 2 - np.arange(size[1]) - 0.5)
+    ways = camera.forward + camera.step * (x.reshape(-1, 1) * camera.right + y.reshape(-1, 1) * camera.up)
+    ways /= np.linalg.norm(ways, axis=1)[:, None]
+    rows, points, last = np.arange(len(ways)), np.tile(assembly.eye, (len(ways), 1)), np.full(len(ways), -1)
+    light, gone = np.ones((len(ways), 3)), np.zeros(len(ways))
+    losses = np.array([mirror.reflectance * np.array(mirror.tint) for mirror in assembly.mirrors])
+    while len(rows):
+        slopes, heights = ways @ body.normals.T, body.heights(points)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            times = np.where(slopes < 0, np.maximum(heights, 0) / -slopes, np.inf)
+        times[np.flatnonzero(last >= 0), last[last >= 0]] = np.inf
+        last = times.argmin(axis=1)
+        time = times.min(axis=1)
+        points, gone = points + time[:, None] * ways, gone + time
+        bounce = last < body.mirrors
+        rows, points, ways, gone, last = (each[bounce] for each in (rows, points, ways, gone, last))
+        nearest = np.full(len(rows), np.inf)
+        for pair, angle in assembly.dihedrals.items():
+            for one, other in (pair, pair[::-1]):
+                at = last == one
+                nearest[at] = np.minimum(nearest[at], body.heights(points[at])[:, other] / np.sin(angle))
+        # The part of the pixel's width on the mirror that the line of the nearest joint covers.
+        wide = gone * camera.step
+        covered = np.minimum(joint, nearest + wide / 2) - np.maximum(-joint, nearest - wide / 2)
+        light[rows] *= losses[last] * (1 - np.clip(covered / wide, 0, 1))[:, None]
+        ways = ways - 2 * np.sum(ways * body.normals[last], axis=1)[:, None] * body.normals[last]
+        on = light[rows].max(axis=1) > 1e-5
+        rows, points, ways, gone, last = (each[on] for each in (rows, points, ways, gone, last))
+    return light.reshape(size[1], size[0], 3)
+
+
+@pytest.mark.parametrize("name", ["wedge", "cut corner", "corner off angles", "tube of four", "tapered tube"])
+def test_joints_take_what_they_cover_of_each_pixel(name: str) -> None:
+    assembly = ASSEMBLIES[name]()
+    assembly = assembly.with_view(eye=assembly.eye + np.array([0.71, 0.43, -0.19]))
+    bright = Lights(**dict.fromkeys(("below", "above", "backlight", "dark", "floor"), "#ffffff"))
+    # Wide lines, so that many pixels lie on them, and a size that whole squares of pixels do not fill.
+    scene = make_scene(assembly, np.full((4, 4, 3), 255, np.uint8), lights=bright, joint=1.0)
+    size = (150, 91)
+    light = to_linear(trace(assembly, scene, size) / 255)
+    expected = through_mirrors_and_joints(assembly, 1.0, size)
+    without = through_mirrors_and_joints(assembly, 0.0, size)
+    assert (expected < 0.9 * without).any(axis=2).mean() > 0.005, "the lines are to be seen"
+    off = np.abs(light - expected).max(axis=2)
+    assert (off > 0.006).mean() < 0.002, f"{(off > 0.006).sum()} pixels differ by more than a byte"
+
+
 def test_a_joint_is_a_dark_line() -> None:
     assembly = optics.wedge("60", 100, 50, mirrors=PERFECT)
     white = np.full((4, 4, 3), 255, np.uint8)
