@@ -85,6 +85,10 @@ def families(names: Iterable[str]) -> tuple[Run, ...]:
     return tuple(runs)
 
 
+HEADROOM = "<big>\u2060</big>"
+"""A larger nothing that makes its line higher: a label cuts off what is above it, and some screens lost the bars."""
+
+
 def as_html(runs: Iterable[Run]) -> str:
     """Runs as rich text for a label."""
     parts: list[str] = []
@@ -99,7 +103,7 @@ def as_html(runs: Iterable[Run]) -> str:
         if run.slanted:
             text = f"<i>{text}</i>"
         if run.barred:
-            text = f'<span style="text-decoration:overline">{text}</span>'
+            text = f'{HEADROOM}<span style="text-decoration:overline">{text}</span>'
         if run.lowered:
             text = f"<sub>{text}</sub>"
         parts.append(text)
