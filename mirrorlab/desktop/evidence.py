@@ -17,6 +17,12 @@ from mirrorlab.desktop.theming import theming
 from mirrorlab.mirrors import Arrangement, Finding, Suggestion
 
 SUGGESTIONS_JOB = "suggestions"
+FULL = 3
+"""Rows of a Gram matrix up to which its column has room for four digits."""
+
+FOLD, FOLD_EVERY = "\u200b", 10
+"""A space without width, and after so many letters of a word one stands."""
+
 SHEET_HEIGHT = 172
 """Pixels: the numbers of three mirrors stand in it whole; more of them scroll."""
 
@@ -30,8 +36,8 @@ class EvidenceSheet(QFrame):
         self.setFixedHeight(SHEET_HEIGHT)
         self.document = document
         self._stale = True
-        self.numbers = _Column("Pairs of mirrors")
-        self.gram = _Column("Gram matrix, −cos of the angles")
+        self.numbers = _Column("Pairs of mirrors", wide=True)
+        self.gram = _Column("Gram matrix, −cos of the angles", wide=True)
         self.grounds = _Column("Why it is so")
         self.flags = _Column("Flags and suggestions")
         row = QHBoxLayout(self)
@@ -112,19 +118,20 @@ class EvidenceSheet(QFrame):
 
 
 class _Column(QWidget):
-    """A heading over things that scroll."""
+    """A heading over things that scroll; those that are `wide` do so to the side as well."""
 
-    def __init__(self, heading: str) -> None:
+    def __init__(self, heading: str, wide: bool = False) -> None:
         super().__init__()
         self._body = QWidget()
         self._list = QVBoxLayout(self._body)
-        self._list.setContentsMargins(0, 0, 8, 0)
+        self._list.setContentsMargins(0, 0, 0 if wide else 8, 0)
         self._list.setSpacing(6)
         self._list.addStretch(1)
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
-        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        if not wide:
+            area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         area.setWidget(self._body)
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
@@ -162,7 +169,7 @@ class _Column(QWidget):
 def _row(cells: list[str], head: bool = False) -> str:
     muted = theming().theme.muted
     tint = f"; color:{muted}" if head else ""
-    style = f'style="padding:0 9px 2px 0{tint}"'
+    style = f'style="padding:0 8px 2px 0{tint}"'
     return "<tr>" + "".join(f'<td {style} align="right">{cell}</td>' for cell in cells) + "</tr>"
 
 
@@ -180,6 +187,8 @@ def pairs_html(arrangement: Arrangement, finding: Finding, notation: str) -> str
     rows = [_row(["pair", "angle", "4cos²", "order"], head=True)]
     for (pair, value, order), angle in zip(finding.evidence.four_cos, arrangement.angles, strict=True):
         written = angle.text if angle.fraction is None else pretty(angle.fraction, notation)
+        if angle.fraction is not None and notation == "degrees":
+            written = f"{180 * float(angle.fraction):.6g}°"
         times = "∞" if order is None else str(order)
         rows.append(_row([f"<i>{pair}</i>", escape(written), _number(float(value)), times]))
     return _table(rows)
@@ -188,9 +197,10 @@ def pairs_html(arrangement: Arrangement, finding: Finding, notation: str) -> str
 def gram_html(arrangement: Arrangement, finding: Finding) -> str:
     """The Gram matrix and its determinant."""
     gram = finding.evidence.gram
+    digits = 4 if len(gram) <= FULL else 3
     head = _row(["", *(f"<i>{letter}</i>" for letter in arrangement.letters)], head=True)
     body = [
-        _row([f"<i>{letter}</i>", *(_number(v, 4) for v in row)])
+        _row([f"<i>{letter}</i>", *(_number(v, digits) for v in row)])
         for letter, row in zip(arrangement.letters, gram, strict=True)
     ]
     return _table([head, *body]) + f"Its determinant is {_number(finding.evidence.determinant)}."
@@ -203,7 +213,16 @@ def grounds_html(finding: Finding) -> str:
     lines += [f"<b>{escape(as_sentence(text))}</b>" for text in evidence.broken]
     if evidence.witness is not None:
         one, other, apart = evidence.witness
-        lines.append(f"The mirrors <i>{one}</i> and <i>{other}</i> stand only {apart:.4g}° apart.")
+        lines.append(
+            f"The mirrors <i>{foldable(one)}</i> and <i>{foldable(other)}</i> stand only {apart:.4g}° apart."
+        )
+    least = _number(float(evidence.eigenvalues[0]), 4)
+    if finding.kind == "unbuildable":
+        lines.append(
+            f"Normals of planes make a Gram matrix without a negative eigenvalue; the least of this one is {least}."
+        )
+    if finding.kind == "tube":
+        lines.append("The Gram matrix has the eigenvalue 0: the mirrors share a direction.")
     if group is not None:
         degrees = ", ".join(map(str, group.degrees))
         lines.append(f"Degrees {degrees}; their product is the order {group.order:,}.")
@@ -214,7 +233,7 @@ def grounds_html(finding: Finding) -> str:
         for letter, word in zip(group.letters, finding.wall_words, strict=True):
             if letter != word:
                 lines.append(
-                    f"The chamber's wall <i>{letter}</i> was not typed; it is <i>{escape(word)}</i>."
+                    f"The chamber's wall <i>{letter}</i> was not typed; it is <i>{escape(foldable(word))}</i>."
                 )
         rotations = finding.rotation_group
         name = (
@@ -225,6 +244,11 @@ def grounds_html(finding: Finding) -> str:
         lines.append(f"Rotation subgroup{name} of order {group.rotation_order:,}.")
         lines.append("−1 is in the group." if group.contains_inversion else "−1 is not in the group.")
     return "".join(f'<p style="margin:0 0 5px 0">{line}</p>' for line in lines)
+
+
+def foldable(word: str) -> str:
+    """A word that may go on in the next line; long ones would push what stands beside them out of sight."""
+    return FOLD.join(word[k : k + FOLD_EVERY] for k in range(0, len(word), FOLD_EVERY))
 
 
 def suggestion_html(suggestion: Suggestion, notation: str) -> tuple[str, str, str]:

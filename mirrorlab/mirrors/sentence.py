@@ -29,7 +29,8 @@ def _lattice(finding: Finding) -> str:
     if finding.crystallographic:
         return "a lattice can carry it"
     pairs = [flag.letters for flag in finding.flags if flag.code == "no-lattice"]
-    return "no lattice can carry it" + (f", because of {' and '.join(pairs)}" if pairs else "")
+    listed = " and ".join(part for part in (", ".join(pairs[:-1]), *pairs[-1:]) if part)
+    return "no lattice can carry it" + (f", because of {listed}" if pairs else "")
 
 
 def _closed(finding: Finding) -> str:

@@ -5,15 +5,17 @@ from __future__ import annotations
 from dataclasses import replace
 
 import pytest
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QPoint, Qt
+from PySide6.QtGui import QImage, QRegion
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication, QLabel, QPushButton
+from PySide6.QtWidgets import QApplication, QLabel, QPushButton, QScrollArea, QWidget
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop import symbols
 from mirrorlab.desktop.finding_band import HEADLINES
 from mirrorlab.desktop.symbols import Run
 from mirrorlab.desktop.window import Window
+from mirrorlab.mirrors import Arrangement
 
 
 def test_overbars_and_slanted_letters() -> None:
@@ -24,6 +26,31 @@ def test_overbars_and_slanted_letters() -> None:
     assert symbols.hermann_mauguin("-3m") == (Run("3", barred=True), Run("m", True))
     assert symbols.hermann_mauguin("6/mmm") == (Run("6"), Run("/"), Run("mmm", True))
     assert symbols.as_html(symbols.hermann_mauguin("m-3-5")).count("overline") == 2
+
+
+@pytest.mark.parametrize("scale", [1.0, 1.25, 1.5, 2.0])
+@pytest.mark.parametrize("top", [0.0, 1.0, 2.0, 3.0])
+def test_bars_are_seen_at_every_scale(dressed: QApplication, scale: float, top: float) -> None:
+    def drawn(runs: tuple[Run, ...]) -> QImage:
+        box = QWidget()
+        line = QLabel(symbols.as_html(runs), box)
+        line.setTextFormat(Qt.TextFormat.RichText)
+        line.setGeometry(0, 0, line.sizeHint().width(), line.sizeHint().height())
+        image = QImage(round(60 * scale), round(40 * scale), QImage.Format.Format_RGB32)
+        image.setDevicePixelRatio(scale)
+        image.fill(Qt.GlobalColor.white)
+        line.render(image, QPoint(0, round(top)), QRegion(), QWidget.RenderFlag.DrawChildren)
+        return image.convertToFormat(QImage.Format.Format_Grayscale8)
+
+    def ink(image: QImage) -> int:
+        return sum(
+            image.pixelColor(x, y).lightness() < 140
+            for x in range(image.width())
+            for y in range(image.height())
+        )
+
+    barred, plain = drawn((Run("3", barred=True),)), drawn((Run("3"),))
+    assert ink(barred) - ink(plain) >= 4 * scale  # a digit is six pixels wide
 
 
 def test_lowered_indices() -> None:
@@ -109,6 +136,36 @@ def test_letters_of_mirrors_keep_their_case_in_the_evidence(window: Window) -> N
     window.document.set_angle(2, "40")
     grounds = " ".join(label.text() for label in window.band.sheet.grounds.findChildren(QLabel))
     assert "<b>b and c make mirrors" in grounds
+
+
+@pytest.mark.parametrize(
+    ("texts", "ground"),
+    [
+        (("5", "5", "5"), "negative eigenvalue"),
+        (("60", "60", "60"), "eigenvalue 0"),
+        (("90", "60", "37"), "apart"),
+    ],
+)
+def test_every_kind_has_grounds_and_nothing_beside_is_cut_off(
+    window: Window, texts: tuple[str, ...], ground: str
+) -> None:
+    window.document.put_sheet(Arrangement.from_angles(texts), "test")
+    window.band.toggle.click()
+    QApplication.processEvents()
+    column = window.band.sheet.grounds
+    label = column.findChildren(QLabel)[-1]
+    assert ground in label.text()
+    assert label.width() >= label.minimumSizeHint().width()
+    assert label.geometry().right() <= column.width()
+
+
+def test_wide_numbers_scroll_to_the_side(window: Window, qtbot: QtBot) -> None:
+    bar = window.band.sheet.gram.findChild(QScrollArea).horizontalScrollBar()
+    window.document.put_sheet(Arrangement.from_family("A1xI2(7)xI2(9)xI2(11)"), "wide")
+    window.band.toggle.click()
+    qtbot.waitUntil(lambda: bar.maximum() > 0)
+    window.document.put_sheet(Arrangement.from_angles(["17", "23", "29", "31", "37", "41"]), "four")
+    qtbot.waitUntil(lambda: bar.maximum() == 0)
 
 
 def test_a_suggestion_is_applied_with_one_click(window: Window, qtbot: QtBot) -> None:
