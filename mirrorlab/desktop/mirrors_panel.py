@@ -19,7 +19,7 @@ from PySide6.QtWidgets import (
 
 from mirrorlab.angles import AngleSettings
 from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
-from mirrorlab.desktop.parts import button, label, rule
+from mirrorlab.desktop.parts import button, inset, label, rule
 from mirrorlab.desktop.reading import PairReading
 from mirrorlab.desktop.state import NOTATIONS
 from mirrorlab.desktop.theming import theming
@@ -135,11 +135,11 @@ class ReadingSettings(QWidget):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.document = document
-        self.denominator = QSpinBox()
+        self.denominator = inset(QSpinBox())
         self.denominator.setRange(2, 5000)
         self.denominator.setKeyboardTracking(False)
         self.denominator.setToolTip("A closing fraction kπ/m is looked for with m up to this")
-        self.sigmas = QDoubleSpinBox()
+        self.sigmas = inset(QDoubleSpinBox())
         self.sigmas.setRange(0.5, 10)
         self.sigmas.setSingleStep(0.5)
         self.sigmas.setDecimals(1)

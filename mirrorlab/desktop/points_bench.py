@@ -13,7 +13,7 @@ from mirrorlab.desktop.angle_text import mark_of, short_reading
 from mirrorlab.desktop.bench import Bench
 from mirrorlab.desktop.chamber_map import ChamberMap
 from mirrorlab.desktop.document import Document
-from mirrorlab.desktop.parts import Segments, button, label
+from mirrorlab.desktop.parts import Segments, button, inset, label
 from mirrorlab.desktop.rows import Column, RowsModel
 from mirrorlab.desktop.seed_entry import SeedEntry
 from mirrorlab.desktop.state import MOST_IMAGES_RANGE
@@ -201,7 +201,7 @@ class ImageLimit(QWidget):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.document = document
-        self.box = QSpinBox()
+        self.box = inset(QSpinBox())
         self.box.setRange(*MOST_IMAGES_RANGE)
         self.box.setSingleStep(1_000_000)
         self.box.setGroupSeparatorShown(True)

@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 from PySide6.QtCore import QPoint, QRect, Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QAbstractButton, QLabel, QWidget
+from PySide6.QtWidgets import QAbstractButton, QAbstractSpinBox, QLabel, QWidget
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop import app
@@ -217,3 +217,10 @@ def test_unsaved_changes_are_offered_at_the_next_start(window: Window, qtbot: Qt
     assert window.document.path is None
     assert not window.filing.kept_path.exists()
     window.document.undo_stack.setClean()
+
+
+def test_text_of_spin_boxes_stands_clear_of_the_edge(window: Window) -> None:
+    window.benches.show_index(1)
+    boxes = window.findChildren(QAbstractSpinBox)
+    assert len(boxes) == 4
+    assert min(box.lineEdit().textMargins().left() for box in boxes) >= 4

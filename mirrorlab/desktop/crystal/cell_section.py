@@ -18,7 +18,7 @@ from mirrorlab.desktop.crystal.crystal_state import CONSTANTS, EMPTY
 from mirrorlab.desktop.crystal.section import Section
 from mirrorlab.desktop.crystal.workings import typed_cell
 from mirrorlab.desktop.document import MOST_MIRRORS, Document
-from mirrorlab.desktop.parts import Segments, button, label
+from mirrorlab.desktop.parts import Segments, button, inset, label
 from mirrorlab.desktop.printed import as_sentence
 from mirrorlab.desktop.rows import Column
 from mirrorlab.desktop.stylesheet import set_wrong
@@ -55,7 +55,7 @@ class CellSection(Section):
         self.clear = button("Clear", "tight", "Type another cell")
         self.error = label("", "wrong", wrap=True)
         self.facts = FactRows()
-        self.tolerance = QDoubleSpinBox()
+        self.tolerance = inset(QDoubleSpinBox())
         self.tolerance.setRange(0, LARGEST_OBLIQUITY)
         self.tolerance.setSingleStep(0.5)
         self.tolerance.setDecimals(2)
