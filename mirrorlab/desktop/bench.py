@@ -78,8 +78,6 @@ class Bench(QWidget):
     rows_changed()
         `table_model()` or `table_title()` now answer something else. A model that only resets its rows
         need not emit it.
-    pictures_changed()
-        `pictures()` has other names now.
     picture_wanted(str)
         Asks the stage to show the picture of that name.
     says(str)
@@ -91,7 +89,6 @@ class Bench(QWidget):
     title = ""
     exports_rows_as = ""
     rows_changed = Signal()
-    pictures_changed = Signal()
     picture_wanted = Signal(str)
     says = Signal(str)
     file_wanted = Signal()

@@ -140,7 +140,7 @@ class AssemblySection(GlassSection):
     def _show_rows(self, made: Assembly | None, error: AssemblyError | None) -> None:
         if made is None:
             self.model.set_columns(())
-            self.title, self.note = "No panels", "" if error is None else told(error)
+            self.title, self.note = "No mirrors", "" if error is None else told(error)
         else:
             keys: list[Key] = [("mirror", k) for k in range(len(made.panels))]
             self.model.set_columns(panel_columns(made), keys)

@@ -6,10 +6,11 @@ from functools import partial
 from typing import Any
 
 import numpy as np
-from PySide6.QtWidgets import QGridLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QWidget
 
 from mirrorlab.desktop.bench_parts import LineField
 from mirrorlab.desktop.glass.glass_section import GlassSection
+from mirrorlab.desktop.glass.grid_rows import GridRows
 from mirrorlab.desktop.glass.workings import kind_of
 from mirrorlab.desktop.parts import label
 from mirrorlab.desktop.stylesheet import set_wrong
@@ -18,32 +19,19 @@ from mirrorlab.optics.tolerance import Intent
 MOST_EDGES = 4
 
 
-class EdgeErrors(QWidget):
+class EdgeErrors(GridRows):
     """A row an edge: its pair, the angle it is meant to have, its error, and the angle it has."""
 
     def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
-        outer = QVBoxLayout(self)
-        outer.setContentsMargins(0, 0, 0, 0)
-        outer.setSpacing(2)
-        grid = QGridLayout()
-        outer.addLayout(grid)
-        grid.setHorizontalSpacing(8)
-        grid.setVerticalSpacing(4)
-        grid.setColumnStretch(2, 1)
-        for column, text in ((1, "Meant"), (2, "Off by °"), (3, "Actual")):
-            grid.addWidget(label(text, "small"), 0, column)
+        super().__init__(("Meant", "Off by °", "Actual"), 8, parent)
+        self.grid.setColumnStretch(2, 1)
         self.pairs, self.meant, self.errors, self.actual = [], [], [], []
         for k in range(MOST_EDGES):
             parts = (label("", "heading"), label("", "figures"), LineField(), label("", "figures"))
             parts[2].setToolTip("Degrees; empty takes the angle typed in the triangle")
-            for column, part in enumerate(parts):
-                grid.addWidget(part, k + 1, column)
+            self.put_row(k, parts)
             for kept, part in zip((self.pairs, self.meant, self.errors, self.actual), parts, strict=True):
                 kept.append(part)
-        self.error = label("", "wrong", wrap=True)
-        self.error.hide()
-        outer.addWidget(self.error)
 
     def wire(self, section: GlassSection) -> None:
         """Let the fields change the section's state."""
@@ -83,6 +71,5 @@ class EdgeErrors(QWidget):
         found = field in ("errors", "actual")
         for pair, part in zip(self.pairs, self.errors, strict=True):
             set_wrong(part, found and bool(message) and bool(pair.text()) and f" {pair.text()}" in message)
-        self.error.setText(message if found else "")
-        self.error.setVisible(found and bool(message))
+        self.tell(message if found else "")
         return found

@@ -5,11 +5,12 @@ from __future__ import annotations
 from functools import partial
 
 from PySide6.QtCore import QSignalBlocker
-from PySide6.QtWidgets import QComboBox, QGridLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QComboBox, QWidget
 
 from mirrorlab.desktop.bench_parts import LineField
 from mirrorlab.desktop.glass.glass_section import GlassSection
 from mirrorlab.desktop.glass.glass_state import GlassState
+from mirrorlab.desktop.glass.grid_rows import GridRows
 from mirrorlab.desktop.parts import label
 from mirrorlab.desktop.stylesheet import set_wrong
 from mirrorlab.optics.mirror import FIRST, PRESETS, SECOND
@@ -25,22 +26,13 @@ SURFACES = {FIRST: "First", SECOND: "Second"}
 MOST_PANELS = 4
 
 
-class MirrorRows(QWidget):
+class MirrorRows(GridRows):
     """A row a mirror: its letter, preset, surface and reflectance."""
 
     def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
-        outer = QVBoxLayout(self)
-        outer.setContentsMargins(0, 0, 0, 0)
-        outer.setSpacing(2)
-        grid = QGridLayout()
-        outer.addLayout(grid)
-        grid.setHorizontalSpacing(6)
-        grid.setVerticalSpacing(4)
-        grid.setColumnStretch(1, 3)
-        grid.setColumnStretch(2, 2)
-        for column, text in ((1, "Preset"), (2, "Surface"), (3, "Keeps")):
-            grid.addWidget(label(text, "small"), 0, column)
+        super().__init__(("Preset", "Surface", "Keeps"), 6, parent)
+        self.grid.setColumnStretch(1, 3)
+        self.grid.setColumnStretch(2, 2)
         self.letters, self.presets, self.surfaces, self.reflectances = [], [], [], []
         for k in range(MOST_PANELS):
             letter, preset, surface, keeps = label("", "heading"), QComboBox(), QComboBox(), LineField()
@@ -55,15 +47,11 @@ class MirrorRows(QWidget):
                 "Part of the light that one bounce keeps, over 0 and up to 1; empty takes the preset's"
             )
             surface.setToolTip("First: the metal lies on top. Second: it lies behind the glass")
-            for column, part in enumerate((letter, preset, surface, keeps)):
-                grid.addWidget(part, k + 1, column)
+            self.put_row(k, (letter, preset, surface, keeps))
             self.letters.append(letter)
             self.presets.append(preset)
             self.surfaces.append(surface)
             self.reflectances.append(keeps)
-        self.error = label("", "wrong", wrap=True)
-        self.error.hide()
-        outer.addWidget(self.error)
 
     def wire(self, section: GlassSection) -> None:
         """Let the widgets change the section's state."""
@@ -120,6 +108,5 @@ class MirrorRows(QWidget):
         for letter, part in zip(self.letters, self.reflectances, strict=True):
             named = f" {letter.text()}" in message.split('"')[0].split(":")[0]
             set_wrong(part, found and bool(message) and named)
-        self.error.setText(message if found else "")
-        self.error.setVisible(found and bool(message))
+        self.tell(message if found else "")
         return found

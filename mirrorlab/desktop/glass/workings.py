@@ -17,6 +17,7 @@ from numpy.typing import NDArray
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.glass.glass_state import GlassState, glass_state
 from mirrorlab.mirrors import Arrangement
+from mirrorlab.optics import kinds
 from mirrorlab.optics.assembly import Assembly
 from mirrorlab.optics.build import assembly_for
 from mirrorlab.optics.cautions import Hazards, hazards_of
@@ -40,9 +41,6 @@ TAKES: dict[str, tuple[str, ...]] = {
 }
 """Lengths that each kind of assembly has."""
 
-FLAT = 1e-9
-"""Unit normals that span less than this across a plane lie in it: rounding, far below any angle that is typed."""
-
 SEED_PART = 0.45
 """How far from the point to the mouth of a corner the seed's ball stands; only its direction is the seed's."""
 
@@ -52,12 +50,12 @@ STEEPEST = math.radians(85)
 
 def kind_of(arrangement: Arrangement) -> str:
     """ "wedge", "corner", "tube", or "" for mirrors that make none of them."""
-    rank = 0 if arrangement.normals is None else int(np.linalg.matrix_rank(arrangement.normals, tol=FLAT))
-    if arrangement.size == 2:
-        return "wedge"
-    if arrangement.size == 3 and rank == 3:
-        return "corner"
-    return "tube" if arrangement.size in (3, 4) and rank == 2 and not arrangement.given_normals else ""
+    try:
+        kind = kinds.kind_of(arrangement)
+    except AssemblyError:
+        return ""
+    through_one_line = kind == "corner" and arrangement.finding().rank < arrangement.size
+    return "" if through_one_line else kind
 
 
 def number(text: str, field: str, what: str) -> float:
