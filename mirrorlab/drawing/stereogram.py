@@ -38,6 +38,9 @@ MOST_MARKS = 2000
 MOST_LABELS = 30
 """With more poles than this in sight only one of each form is labelled."""
 
+LONGEST_LABEL = 12
+"""Characters; longer indices, those with decimals, would lie over one another, so one of each form is labelled too."""
+
 _SAME = 1e-6
 _EFFORT = 1_500_000
 
@@ -302,7 +305,8 @@ class _Parts:
             self.labels.append(Label(names[k], place + np.array([0.0, 0.06, 0.0]), Role.FACE, ("listed", k)))
 
     def _label_poles(self, combination: Combination, places: Array, upper: NDArray[np.bool_]) -> None:
-        few = int(upper.sum()) <= MOST_LABELS
+        short = max(map(len, combination.labels)) <= LONGEST_LABEL
+        few = short and int(upper.sum()) <= MOST_LABELS
         labelled: list[Array] = []
         done: set[int] = set()
         for k in np.argsort(~upper, kind="stable").tolist():

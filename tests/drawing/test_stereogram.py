@@ -186,6 +186,12 @@ def test_poles_of_a_combination():
     assert np.linalg.norm(octahedron.positions[0]) == pytest.approx(np.tan(np.arccos(1 / np.sqrt(3)) / 2))
 
 
+def test_long_indices_do_not_lie_over_one_another():
+    made = combination(point_group("m-3-5"), ["111", "100"], [1, 1])
+    labels = [one for one in group_stereogram(made.group, made).labels if one.role is Role.FACE]
+    assert {one.text for one in labels} == {"(111)", "(100)"}
+
+
 @pytest.mark.parametrize(("symbol", "faces"), [("m-3m", ["100", "111"]), ("4mm", ["101"]), ("1", ["100"])])
 def test_form_drawing(symbol, faces):
     made = combination(point_group(symbol), faces)
