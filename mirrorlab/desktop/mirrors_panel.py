@@ -19,7 +19,7 @@ from PySide6.QtWidgets import (
 
 from mirrorlab.angles import AngleSettings
 from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
-from mirrorlab.desktop.parts import button, inset, label, rule
+from mirrorlab.desktop.parts import Elided, button, inset, label, rule
 from mirrorlab.desktop.reading import PairReading
 from mirrorlab.desktop.state import NOTATIONS
 from mirrorlab.desktop.theming import theming
@@ -45,7 +45,7 @@ class MirrorsPanel(QFrame):
         self.setObjectName("mirrors")
         self.setProperty("kind", "panel")
         self.document = document
-        self.name = label("", "title")
+        self.name = Elided("", "title")
         self.triangle = Triangle(document)
         self.reading = PairReading(document, self.triangle)
         self.add = button("Add mirror", "tight", "One more mirror, at right angles to the others")

@@ -14,7 +14,7 @@ from mirrorlab.desktop.bench import Bench
 from mirrorlab.desktop.chamber_map import ChamberMap
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, inset, label
-from mirrorlab.desktop.rows import Column, RowsModel
+from mirrorlab.desktop.rows import Column, RowsModel, fixed
 from mirrorlab.desktop.seed_entry import SeedEntry
 from mirrorlab.desktop.state import MOST_IMAGES_RANGE
 from mirrorlab.desktop.words import PARITIES
@@ -158,7 +158,7 @@ def image_columns(orbit: Orbit) -> list[Column]:
     count, dimension = orbit.points.shape
     names = AXES[:dimension] if dimension <= len(AXES) else [f"x{k + 1}" for k in range(dimension)]
     columns = [Column("image", np.arange(1, count + 1), hint="1 is the seed")]
-    columns += [Column(name, orbit.points[:, k], _coordinate) for k, name in enumerate(names)]
+    columns += [Column(name, orbit.points[:, k], fixed(6)) for k, name in enumerate(names)]
     columns += [
         Column(
             "parity", orbit.parity, lambda p: PARITIES[int(p)], "odd images are mirror-inverted", text=True
@@ -185,11 +185,6 @@ def pair_columns(document: Document) -> list[Column]:
         ),
         Column("mark", [mark_of(finding, pair, angle) for angle, pair, _ in rows], text=True),
     ]
-
-
-def _coordinate(value: float) -> str:
-    text = f"{0.0 if abs(value) < 5e-10 else value:.6f}"
-    return text.replace("-", "−")
 
 
 class ImageLimit(QWidget):

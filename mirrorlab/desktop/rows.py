@@ -56,6 +56,16 @@ def plain(value: Any) -> str:
     return str(value)
 
 
+def fixed(digits: int) -> Callable[[float], str]:
+    """Writes numbers with so many decimals, a true minus sign, and none before a zero."""
+
+    def show(value: float) -> str:
+        text = f"{value:.{digits}f}"
+        return (text if text.strip("-0.") else text.removeprefix("-")).replace("-", "−")
+
+    return show
+
+
 class RowsModel(QAbstractTableModel):
     """A sortable table of columns.
 

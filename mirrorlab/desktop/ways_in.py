@@ -179,7 +179,7 @@ class NormalsEntry(QWidget):
             self._say(f"{arrangement.size} normals: the triangle holds 2 to {MOST_MIRRORS} mirrors")
             return
         self._say("")
-        self.document.put_sheet(arrangement, "from normals")
+        self.document.put_sheet(arrangement, "From normals")
 
     def _say(self, message: str) -> None:
         self.error.setText(message)

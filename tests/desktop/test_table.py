@@ -14,7 +14,7 @@ from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop.bench import write_csv
-from mirrorlab.desktop.rows import KEY_ROLE, Column, RowsModel
+from mirrorlab.desktop.rows import KEY_ROLE, Column, RowsModel, fixed
 from mirrorlab.desktop.window import Window
 
 UP, DOWN = Qt.SortOrder.AscendingOrder, Qt.SortOrder.DescendingOrder
@@ -33,6 +33,15 @@ def small() -> RowsModel:
 
 def shown(model: RowsModel, column: int) -> list[str]:
     return [model.data(model.index(row, column)) for row in range(model.rowCount())]
+
+
+def test_decimals_have_a_true_minus_and_none_before_a_zero() -> None:
+    assert [fixed(3)(value) for value in (-0.0004, -0.0, 0.0006, -1.5)] == [
+        "0.000",
+        "0.000",
+        "0.001",
+        "−1.500",
+    ]
 
 
 def test_model_keeps_qts_contract(qapp: QApplication) -> None:

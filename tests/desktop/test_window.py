@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 from PySide6.QtCore import QPoint, QRect, Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QAbstractButton, QAbstractSpinBox, QLabel, QWidget
+from PySide6.QtWidgets import QAbstractButton, QAbstractSpinBox, QApplication, QLabel, QWidget
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop import app
@@ -224,3 +224,14 @@ def test_text_of_spin_boxes_stands_clear_of_the_edge(window: Window) -> None:
     boxes = window.findChildren(QAbstractSpinBox)
     assert len(boxes) == 4
     assert min(box.lineEdit().textMargins().left() for box in boxes) >= 4
+
+
+def test_a_long_name_does_not_widen_the_mirrors(window: Window) -> None:
+    width = window.mirrors.width()
+    name = "The lantern of the third gallery, as measured in spring and again in autumn"
+    window.document.put_sheet(window.document.arrangement, name)
+    QApplication.processEvents()
+    assert window.mirrors.width() == width
+    assert window.mirrors.name.geometry().right() <= window.mirrors.area.viewport().width()
+    window.grab()
+    assert window.mirrors.name.toolTip() == name

@@ -244,7 +244,7 @@ class CellSection(Section):
         except ValueError as error:
             self._say_use(as_sentence(str(error)))
             return
-        self._put(made, f"planes of {self.state.cell_name or 'the cell'}")
+        self._put(made, f"Planes of {self.state.cell_name or 'the cell'}")
 
     def _use_lattice(self) -> None:
         from mirrorlab.mirrors import Arrangement
@@ -258,7 +258,7 @@ class CellSection(Section):
             group is not None and len(group.simple) > 1
         ):  # walls of one chamber: the triangle holds few mirrors
             found = Arrangement.from_normals(group.simple, self.document.settings.reading)
-        self._put(found, f"lattice mirrors of {self.state.cell_name or 'the cell'}")
+        self._put(found, f"Lattice mirrors of {self.state.cell_name or 'the cell'}")
 
     def _put(self, made: Arrangement | None, name: str) -> None:
         if made is None:

@@ -19,7 +19,7 @@ from mirrorlab.desktop.crystal.crystal_state import ORIENTATIONS
 from mirrorlab.desktop.crystal.workings import Working, cell_basis, read_list
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
-from mirrorlab.desktop.rows import Column
+from mirrorlab.desktop.rows import Column, fixed
 from mirrorlab.desktop.seed_entry import number
 from mirrorlab.desktop.stylesheet import set_wrong
 
@@ -253,7 +253,7 @@ def _told(found: Comparison) -> str:
 def _facts(found: Comparison) -> dict[str, str]:
     short = "°" if found.unit == "degrees" else ""
     turned = found.orientation
-    axis = ", ".join(f"{value:.3f}" for value in turned.axis + 0.0)
+    axis = ", ".join(map(fixed(3), turned.axis))
     made = symbols.as_html(symbols.hermann_mauguin(found.generated_symbol))
     return {
         "Allowed": "3σ of both points" if found.tolerance is None else f"{found.tolerance:.4g}{short}",
@@ -294,7 +294,7 @@ def point_columns(found: Comparison) -> list[Column]:
     return [
         Column("label", list(found.points.labels), text=True),
         Column("line", np.array(found.points.lines)),
-        *(Column(axis, found.coordinates[:, k], lambda v: f"{v + 0.0:.5f}") for k, axis in enumerate("xyz")),
+        *(Column(axis, found.coordinates[:, k], fixed(5)) for k, axis in enumerate("xyz")),
         Column("largest deviation", off.max(axis=0), hint="under the operations of the surviving group"),
         Column("without partner", np.array(lonely), hint="operations under which it has none"),
     ]

@@ -22,7 +22,7 @@ from mirrorlab.desktop.crystal.workings import Working, cell_basis, solid_of
 from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Segments, button, label
 from mirrorlab.desktop.printed import as_sentence
-from mirrorlab.desktop.rows import Column
+from mirrorlab.desktop.rows import Column, fixed
 from mirrorlab.drawing.model import Key
 
 FACES, EDGES = range(2)
@@ -203,7 +203,7 @@ def face_columns(made: Combination) -> list[Column]:
         Column("face", list(made.labels), text=True),
         Column("form", [made.forms[k].symbol for k in owners], text=True),
         Column("name", [made.forms[k].name for k in owners], text=True),
-        *(Column(f"n{axis}", body.normals[:, k], lambda v: f"{v + 0.0:.5f}") for k, axis in enumerate("xyz")),
+        *(Column(f"n{axis}", body.normals[:, k], fixed(5)) for k, axis in enumerate("xyz")),
         Column("distance", body.distances, hint="from the centre"),
         Column("area", body.areas, hint="0 where other forms cut the face away"),
     ]

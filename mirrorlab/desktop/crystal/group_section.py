@@ -206,7 +206,7 @@ class GroupSection(Section):
             return
         made = Arrangement.from_normals(simple_mirrors(work.group), self.document.settings.reading)
         symbol = work.group.setting
-        self.document.put_sheet(plainly_typed(made), f"mirrors of {symbol}", crystal=self.state)
+        self.document.put_sheet(plainly_typed(made), f"Mirrors of {symbol}", crystal=self.state)
 
     def _say(self, message: str) -> None:
         self.error.setText(message)
