@@ -38,7 +38,14 @@ class CorePicture:
     seed_of: SeedReader
 
 
+def _need_planes(document: Document) -> None:
+    if document.finding.kind == "unbuildable":
+        msg = "No planes have these angles. Evidence lists the nearest that close."
+        raise NoPicture(msg)
+
+
 def _space(document: Document) -> Drawing:
+    _need_planes(document)
     from mirrorlab.drawing.space import space_drawing
 
     return space_drawing(document.arrangement, document.finding, document.orbit)
@@ -58,6 +65,7 @@ def chamber(document: Document) -> Drawing:
 
 
 def _coxeter(document: Document) -> Drawing:
+    _need_planes(document)
     from mirrorlab.drawing.coxeterplane import coxeter_drawing
 
     return coxeter_drawing(document.arrangement, document.finding, document.orbit)

@@ -77,7 +77,10 @@ class PairReading(QFrame):
         for near in nearby:
             text = plain_text(near.fraction)
             away = f"{near.deviation_degrees:+.3g}°".replace("-", "−")
-            offer = button(pretty(near.fraction, "pi"), hint=f"Type {text}, {away} from the typed value")
+            written = pretty(near.fraction, self.document.settings.notation)
+            if self.document.settings.notation == "degrees":  # a hint and the triangle say it in full
+                written = f"{180 * float(near.fraction):.6g}°"
+            offer = button(written, hint=f"Type {text}, {away} from the typed value")
             offer.clicked.connect(lambda _=False, t=text: self.triangle.take(t))
             self._row.addWidget(offer)
         if nearby:

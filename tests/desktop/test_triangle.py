@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from PySide6.QtCore import QEvent, QObject, Qt
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
@@ -39,6 +41,9 @@ def test_typing_reads_live_and_marks(window: Window, qtbot: QtBot) -> None:
 def test_a_nearby_angle_is_taken_with_one_click(window: Window) -> None:
     retype(window, 2, "45.123456")
     reading = window.mirrors.reading
+    offers = [reading._row.itemAt(i).widget() for i in range(reading._row.count() - 1)]
+    assert offers[0].text() == "45°"
+    window.document.set_settings(replace(window.document.settings, notation="pi"))
     offers = [reading._row.itemAt(i).widget() for i in range(reading._row.count() - 1)]
     assert offers[0].text() == "π/4"
     QTest.mouseClick(offers[0], Qt.MouseButton.LeftButton)
