@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QItemSelectionModel, QModelIndex, Qt, Signal
-from PySide6.QtGui import QColor, QGuiApplication, QKeyEvent, QKeySequence, QPaintEvent
+from PySide6.QtGui import QColor, QFocusEvent, QGuiApplication, QKeyEvent, QKeySequence, QPaintEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QFrame,
@@ -19,6 +19,7 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.parts import Elided, button, label
 from mirrorlab.desktop.rows import RowsModel
 from mirrorlab.desktop.steady import Steady
+from mirrorlab.desktop.table_heads import Heads
 from mirrorlab.desktop.theming import theming
 from mirrorlab.files.picture_sight import painting
 
@@ -66,8 +67,8 @@ class Rows(QTableView):
         self.verticalHeader().hide()
         self.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         self.verticalHeader().setDefaultSectionSize(ROW_HEIGHT)
-        head = self.horizontalHeader()
-        head.setHighlightSections(False)
+        head = Heads(self)
+        self.setHorizontalHeader(head)
         head.setResizeContentsPrecision(SAMPLED_ROWS)
         head.setSortIndicatorClearable(True)
         head.setSortIndicator(-1, Qt.SortOrder.AscendingOrder)
@@ -91,6 +92,10 @@ class Rows(QTableView):
                 if row in chosen or row % 2:
                     tint = theme.select if row in chosen else theme.panel
                     painter.fillRect(0, top, self.viewport().width(), ROW_HEIGHT, QColor(tint))
+            current = self.currentIndex().row()
+            if self.hasFocus() and current in rows:
+                painter.setPen(QColor(theme.accent))
+                painter.drawRect(0, tops[current - first], self.viewport().width() - 1, ROW_HEIGHT - 1)
             painter.setFont(self.font())
             painter.setPen(QColor(theme.text))
             metrics = self.fontMetrics()
@@ -104,6 +109,19 @@ class Rows(QTableView):
                     if WIDE * len(text) > wide and metrics.horizontalAdvance(text) > wide:
                         text = metrics.elidedText(text, Qt.TextElideMode.ElideRight, wide)
                     painter.drawText(left + INSET, top, wide, ROW_HEIGHT, side, text)
+
+    def currentChanged(self, current: QModelIndex, previous: QModelIndex) -> None:
+        """The frame goes around whole rows, where Qt paints single cells anew."""
+        super().currentChanged(current, previous)
+        self.viewport().update()
+
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        super().focusInEvent(event)
+        self.viewport().update()
+
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        super().focusOutEvent(event)
+        self.viewport().update()
 
     def leaveEvent(self, event: QEvent) -> None:
         super().leaveEvent(event)

@@ -8,13 +8,15 @@ from pathlib import Path
 import numpy as np
 import pytest
 from PySide6.QtCore import QModelIndex, Qt
-from PySide6.QtGui import QGuiApplication
+from PySide6.QtGui import QColor, QGuiApplication, QImage
 from PySide6.QtTest import QAbstractItemModelTester, QTest
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from mirrorlab.desktop.bench import write_csv
 from mirrorlab.desktop.rows import KEY_ROLE, Column, RowsModel, fixed
+from mirrorlab.desktop.table_heads import Heads
+from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.window import Window
 
 UP, DOWN = Qt.SortOrder.AscendingOrder, Qt.SortOrder.DescendingOrder
@@ -159,3 +161,46 @@ def test_without_images_the_pairs_stand_in_the_table(window: Window) -> None:
     assert shown(model, model.columnCount() - 1) == ["fine", "fine", "no lattice"]
     window.document.undo_stack.undo()
     assert window.table.title.text() == "48 images"
+
+
+def test_the_current_row_is_framed_while_the_table_has_the_keyboard(window: Window) -> None:
+    rows = window.table.rows
+    accent = QColor(theming().theme.accent)
+
+    def framed(row: int) -> bool:
+        top = rows.rowViewportPosition(row)
+        image = rows.viewport().grab().toImage()
+        return all(image.pixelColor(x, top) == accent for x in (2, 200, image.width() - 3))
+
+    rows.setFocus()
+    rows.selectRow(1)
+    assert framed(1)
+    QTest.keyClick(rows, Qt.Key.Key_Down, Qt.KeyboardModifier.ControlModifier)  # moves without choosing
+    QApplication.processEvents()
+    assert framed(2)
+    assert not framed(1)
+    window.mirrors.triangle.focus_pair(0)
+    assert not framed(2)
+
+
+@pytest.mark.parametrize("column", [0, 1, 4, 6])
+def test_the_arrow_of_a_sorted_column_leaves_its_title_whole(window: Window, column: int) -> None:
+    rows = window.table.rows
+    heads = rows.horizontalHeader()
+    assert isinstance(heads, Heads)
+
+    def head() -> QImage:
+        QApplication.processEvents()
+        image = heads.viewport().grab().toImage()
+        left = heads.sectionViewportPosition(column)
+        return image.copy(left, 0, heads.sectionSize(column), image.height())
+
+    plain = head()
+    rows.sortByColumn(column, DOWN)
+    marked = head()
+    title = str(rows.model().headerData(column, Qt.Orientation.Horizontal))
+    side = rows.model().headerData(column, Qt.Orientation.Horizontal, Qt.ItemDataRole.TextAlignmentRole)
+    text, arrow = heads.places(plain.rect(), title, Qt.AlignmentFlag(int(side)))
+    assert plain.copy(text) == marked.copy(text)
+    assert plain.copy(arrow) != marked.copy(arrow)
+    assert plain.rect().contains(arrow)
