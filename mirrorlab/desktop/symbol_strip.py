@@ -17,6 +17,9 @@ from mirrorlab.files.picture_sight import painting
 GAP = 22
 """Pixels between neighbours."""
 
+LEAST = 240
+"""Pixels that are enough in a narrow window; there, wider symbols are written smaller and widen nothing."""
+
 
 @dataclass(frozen=True, slots=True)
 class Named:
@@ -43,7 +46,7 @@ class SymbolStrip(QWidget):
         self._widths: list[int] = []
         self._size = size
         self._room = Room(self.updateGeometry, self)
-        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Preferred)
+        self.setSizePolicy(QSizePolicy.Policy.Maximum, QSizePolicy.Policy.Preferred)
         theming().changed.connect(self.update)
 
     def show_symbols(self, symbols: Sequence[Named]) -> None:
@@ -66,7 +69,8 @@ class SymbolStrip(QWidget):
         return QSize(self._room.pixels, round(heights))
 
     def minimumSizeHint(self) -> QSize:
-        return self.sizeHint()
+        hint = self.sizeHint()
+        return QSize(min(hint.width(), LEAST), hint.height())
 
     def _small(self) -> QFont:
         font = QFont(self.font())
@@ -78,10 +82,15 @@ class SymbolStrip(QWidget):
         small = self._small()
         below = QFontMetricsF(small).height()
         above = symbol_size((), self._size).height()
-        x = float(self.width() - sum(width + GAP for width in widths))
+        wanted = sum(width + GAP for width in widths)
+        x = float(max(0, self.width() - wanted))
         top = self.height() - below - above
         with painting(self) as painter:
             painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+            if wanted > self.width():
+                part = self.width() / wanted
+                painter.translate(0, self.height() * (1 - part))
+                painter.scale(part, part)
             for one, width in zip(self.symbols, widths, strict=True):
                 own = symbol_size(one.runs, self._size).width()
                 box = QRectF(x + (width - own) / 2, top, own, above)

@@ -178,3 +178,23 @@ def test_a_suggestion_is_applied_with_one_click(window: Window, qtbot: QtBot) ->
     assert window.document.finding.kind.startswith("closed")
     window.document.undo_stack.undo()
     assert window.document.finding.kind == "open"
+
+
+def test_wide_symbols_do_not_widen_a_narrow_window(window: Window) -> None:
+    QApplication.processEvents()
+    least = window.minimumSizeHint().width()
+    window.resize(least, 700)
+    QApplication.processEvents()
+    window.document.put_sheet(Arrangement.from_family("A1xI2(7)xI2(9)"), "wide")
+    QApplication.processEvents()
+    band = window.band
+    assert band.minimumSizeHint().width() <= window.width()
+    assert band.toggle.geometry().right() <= band.width()
+    image = band.symbols.grab().toImage()
+    ground = image.pixelColor(0, 0)
+    ink = [
+        x
+        for x in range(image.width())
+        if any(image.pixelColor(x, y) != ground for y in range(image.height()))
+    ]
+    assert 0 <= ink[0] < ink[-1] < image.width() - 1
