@@ -16,7 +16,7 @@ from typing import Any
 
 import numpy as np
 
-from mirrorlab.optics.compiled import compiled
+from mirrorlab.optics.compiled import inner
 
 FAR_END, CARD, BALL = 0, 1, 2
 """Shapes of the object: closing the far end, or standing free."""
@@ -44,10 +44,13 @@ WEIGHT, (GONE, LEFT, HIT, TIME, MET, OVER), TOTAL = _rows(19, 3), _rows(22, 6), 
 ROW, PLACES, RATES, COLOURS, KEPT = (np.uintp(k) for k in (RAYS, 9, 10, 3, 25))
 
 NEVER, ZERO, ONE, TWO, HALF = np.float32(1e30), np.float32(0), np.float32(1), np.float32(2), np.float32(0.5)
+THINNEST = np.float32(1e-30)
+"""Width of a ray that ends where it sets out, at an eye in the opening: shares of nothing would be no numbers."""
+
 FIRST, SECOND, THIRD, FOURTH, FIFTH, SIXTH = (np.float32(k) for k in range(6))
 
 
-@compiled
+@inner
 def load(
     work: Any, begin: Any, count: Any, start: Any, looks: Any, through: Any, weight: Any, left: Any
 ) -> None:
@@ -103,7 +106,7 @@ def load(
         work[LEFT + k] = left
 
 
-@compiled
+@inner
 def sooner(height: Any, rate: Any, face: Any, best: Any, which: Any) -> tuple[Any, Any]:
     """Return the time to this face and its number if it is met sooner than the best so far."""
     reach = height / -rate
@@ -112,7 +115,7 @@ def sooner(height: Any, rate: Any, face: Any, best: Any, which: Any) -> tuple[An
     return min(reach, best), which
 
 
-@compiled
+@inner
 def meet(work: Any, alive: Any) -> None:
     """Find the face that each ray meets first."""
     for k in range(alive):
@@ -126,7 +129,7 @@ def meet(work: Any, alive: Any) -> None:
         work[HIT + k] = which
 
 
-@compiled
+@inner
 def along_edge(height: Any, slant: Any, nearest: Any) -> Any:
     """Return how far a point on a mirror is from the nearest joint; a slant of 0 is no joint."""
     away = height * slant
@@ -134,7 +137,7 @@ def along_edge(height: Any, slant: Any, nearest: Any) -> Any:
     return min(away, nearest)
 
 
-@compiled
+@inner
 def dim(
     work: Any, alive: Any, slants: Any, losses: Any, joint: Any, spread: Any, mirrors: Any, faintest: Any
 ) -> Any:
@@ -181,7 +184,7 @@ def dim(
         work[PLACE[2] + k] += time * work[DRIFT[2] + k]
         gone = work[GONE + k] + time
         work[GONE + k] = gone
-        wide = gone * spread
+        wide = max(gone * spread, THINNEST)
         share = min(joint, nearest + HALF * wide) - max(-joint, nearest - HALF * wide)
         keep = max(ONE - max(share, ZERO) / wide, ZERO)
         one = first * red[0] + second * red[1] + third * red[2] + fourth * red[3]
@@ -200,7 +203,7 @@ def dim(
     return ended
 
 
-@compiled
+@inner
 def turn(work: Any, alive: Any, products: Any) -> None:
     """Reflect the rays that met a mirror.
 
@@ -228,7 +231,7 @@ def turn(work: Any, alive: Any, products: Any) -> None:
         work[RISE + k] -= p * a[9] + q * b[9] + r * c[9] + s * d[9]
 
 
-@compiled
+@inner
 def meet_object(work: Any, alive: Any, shape: int, half_width: Any, half_height: Any) -> None:
     """Find where the rays meet the object that stands free, a ball or a card; `NEVER` where they miss it."""
     for k in range(alive):

@@ -220,6 +220,17 @@ def test_a_smaller_opening_hides_the_rest() -> None:
     assert 0 < hidden[0] < hidden[1] < 1
 
 
+def test_an_eye_in_the_opening_may_look_out_of_it() -> None:
+    # Rays that end where they set out have gone no way at all: shares of their width must stay numbers.
+    within = optics.corner(["120", "36", "36"], 120)
+    assert within.eye[2] == pytest.approx(within.mouth[0][2])
+    turned = within.with_view(eye=within.eye, target=np.array([-30.9, 8.87, 18.0]))
+    at = trace(turned, size=(232, 147), samples=1).astype(int)
+    inside = turned.with_view(eye=turned.eye - np.array([0, 0, 1e-3]), target=turned.target)
+    near = trace(inside, size=(232, 147), samples=1).astype(int)
+    assert np.mean(np.abs(at - near).max(axis=2) > 8) < 1e-3
+
+
 def test_more_samples_smooth_but_keep_the_brightness() -> None:
     assembly = optics.tube(["60"] * 3, 200, 50)
     scene = make_scene(assembly)
