@@ -227,7 +227,7 @@ class Filing(QObject):
 
 def _reason(error: Exception, path: Path) -> str:
     """The error's message without the path that the sentence has named already."""
-    return str(error).removeprefix(f"{path}: ")
+    return str(error).removeprefix(f"{path}: ").removeprefix(f"{path.name}: ")
 
 
 def _file_name(name: str) -> str:

@@ -84,6 +84,7 @@ def test_a_damaged_cif_names_the_item_and_changes_nothing(window, tmp_path, text
     assert window.benches.current is bench
     assert window.notice.isVisible()
     assert told in window.notice.words.text()
+    assert window.notice.words.text().count(path.name) == 1
 
 
 def test_a_dropped_file_is_opened(window, k5):
