@@ -21,10 +21,18 @@ OPTIONS: dict[str, Any] = {
     "error_model": "numpy",
 }
 
+INNER: dict[str, Any] = {"no_cpython_wrapper": True, "no_cfunc_wrapper": True}
+"""For functions that only compiled ones call: without a way in from outside they compile sooner."""
+
 
 def compiled(function: Callable[..., Any]) -> Any:
     """Return the function compiled on first call, its machine code kept in `cache_folder` where there is one."""
     return _compiled(function)
+
+
+def inner(function: Callable[..., Any]) -> Any:
+    """Return the function compiled for other compiled ones to call; never call it from Python, there is no way in."""
+    return _compiled(function, **INNER)
 
 
 def inlined(function: Callable[..., Any]) -> Any:
@@ -32,7 +40,7 @@ def inlined(function: Callable[..., Any]) -> Any:
 
     Left to itself the compiler makes it a call, and an array is seven arguments of one.
     """
-    return _compiled(function, inline="always")
+    return _compiled(function, forceinline=True, **INNER)
 
 
 def _compiled(function: Callable[..., Any], **more: Any) -> Any:

@@ -10,7 +10,7 @@ from typing import Any
 
 import numpy as np
 
-from mirrorlab.optics.compiled import compiled, inlined
+from mirrorlab.optics.compiled import compiled, inlined, inner
 from mirrorlab.optics.packet import (
     COLOURS,
     DOWN,
@@ -40,7 +40,7 @@ from mirrorlab.optics.packet import (
     meet_object,
     turn,
 )
-from mirrorlab.optics.shade import end_rays, show_object
+from mirrorlab.optics.shade import end_rays, land, show_object
 from mirrorlab.optics.tile import (
     ACROSS,
     CORNER,
@@ -67,13 +67,13 @@ from mirrorlab.optics.tile import (
 )
 
 
-@compiled
+@inner
 def whole_eights(count: Any) -> Any:
     """Round up to a multiple of eight: what is left over would be done one by one, five times as slowly."""
     return (count + np.uintp(7)) // np.uintp(8) * np.uintp(8)
 
 
-@compiled
+@inner
 def hold(work: Any, k: Any) -> None:
     """Make ray k stand still in no light."""
     for i in range(RATES):
@@ -83,28 +83,38 @@ def hold(work: Any, k: Any) -> None:
 
 
 @inlined
-def pack(work: Any, alive: Any, home: Any, sums: Any) -> Any:
+def pick(work: Any, alive: Any, over: Any) -> Any:
+    """List the rays that have ended, and return how many they are."""
+    count = np.uintp(0)
+    for k in range(alive):
+        # No branch, which would often be guessed wrongly.
+        over[count] = k
+        count += np.uintp(work[OVER + k] > ZERO)
+    return count
+
+
+@inlined
+def pack(work: Any, alive: Any, over: Any, count: Any, home: Any, sums: Any) -> Any:
     """Write out the rays that have ended, fill their places from the back, and return how many go on."""
-    k = alive
-    while k > np.uintp(0):
-        k -= np.uintp(1)
-        if work[OVER + k] > ZERO:
-            pixel = home[k]
-            sums[pixel] += work[TOTAL[0] + k]
-            sums[pixel + np.uintp(1)] += work[TOTAL[1] + k]
-            sums[pixel + np.uintp(2)] += work[TOTAL[2] + k]
-            # From the back, so that the last one is known to go on.
-            alive -= np.uintp(1)
-            if k < alive:
-                for i in range(KEPT):
-                    work[ROW * i + k] = work[ROW * i + alive]
-                for c in range(COLOURS):
-                    work[TOTAL[0] + ROW * c + k] = work[TOTAL[0] + ROW * c + alive]
-                home[k] = home[alive]
+    while count > np.uintp(0):
+        count -= np.uintp(1)
+        k = over[count]
+        pixel = home[k]
+        sums[pixel] += work[TOTAL[0] + k]
+        sums[pixel + np.uintp(1)] += work[TOTAL[1] + k]
+        sums[pixel + np.uintp(2)] += work[TOTAL[2] + k]
+        # From the back, so that the last one is known to go on.
+        alive -= np.uintp(1)
+        if k < alive:
+            for i in range(KEPT):
+                work[ROW * i + k] = work[ROW * i + alive]
+            for c in range(COLOURS):
+                work[TOTAL[0] + ROW * c + k] = work[TOTAL[0] + ROW * c + alive]
+            home[k] = home[alive]
     return alive
 
 
-@compiled
+@inner
 def enter_rays(
     work: Any, first: Any, count: Any, place: Any, view: Any, kinds: Any, mouth: int, surround: Any
 ) -> None:
@@ -130,6 +140,7 @@ def enter_rays(
 def step(
     work: Any,
     alive: Any,
+    over: Any,
     home: Any,
     sums: Any,
     body: Any,
@@ -153,8 +164,9 @@ def step(
         show_object(work, alive, card, spread, texture)
     ended = dim(work, eights, slants, losses, joint, spread, np.float32(body[1]), faintest)
     if ended > np.float32(eights - alive):
-        end_rays(work, alive, body, card, spread, texture, lights)
-        alive = pack(work, alive, home, sums)
+        count = pick(work, alive, over)
+        end_rays(work, over, count, body, card, spread, texture, lights)
+        alive = pack(work, alive, over, count, home, sums)
     turn(work, whole_eights(alive), products)
     return alive
 
@@ -176,7 +188,7 @@ def column(squares: Any, s: int, which: Any, factor: float) -> tuple[Any, ...]:
     )
 
 
-@compiled
+@inner
 def load_square(work: Any, first: Any, count: Any, squares: Any, s: int, most: int) -> None:
     """Put the rays of a square into a packet, each at the mirror that the square has come through."""
     part = 1.0 / (squares[s, PLACE, SIZE] - 1)
@@ -203,7 +215,7 @@ def load_square(work: Any, first: Any, count: Any, squares: Any, s: int, most: i
     load(work, first, count, start, looks, through, light, np.float32(most - squares[s, LIGHT, 3]))
 
 
-@compiled
+@inner
 def order() -> Any:
     """Rays of a square of 8 by 8 pixels, see `tile.SHARE`, in such an order that each quarter's come together.
 
@@ -216,7 +228,7 @@ def order() -> Any:
     return rays
 
 
-@compiled
+@inner
 def measure(rays: Any, count: Any, left: float, top: float, fine: float) -> None:
     """Work out how long a step of each ray of a square is; no joint has taken of it yet."""
     for k in range(count):
@@ -225,7 +237,7 @@ def measure(rays: Any, count: Any, left: float, top: float, fine: float) -> None
         rays[3, k] = 1
 
 
-@compiled
+@inner
 def surround_square(sums: Any, of_row: Any, y: int, of_column: Any, x: int, size: int, surround: Any) -> None:
     """Add the light around the opening to the pixels of a square; the sums have room for what sticks out."""
     for j in range(y, y + size):
@@ -234,7 +246,7 @@ def surround_square(sums: Any, of_row: Any, y: int, of_column: Any, x: int, size
                 sums[of_row[j] + of_column[i] + c] += surround[c]
 
 
-@compiled
+@inner
 def write(out: Any, band: int, last: int, sums: Any, across: int, share: Any, table: Any) -> None:
     """Write a band of rows out as bytes."""
     top = np.float32(len(table) - 1)
@@ -311,6 +323,9 @@ def trace_rows(
     for k in range(WIDEST * samples):
         of_row[k] = k // samples * 3 * across
     work, home, rays = np.zeros(ROWS * RAYS, np.float32), np.empty(RAYS, np.uintp), order()
+    right, down = rays[0].astype(np.uintp), rays[1].astype(np.uintp)
+    each, over = np.arange(RAYS).astype(np.uintp), np.empty(RAYS, np.uintp)
+    ended = np.zeros(ROWS * RAYS, np.float32)
     squares = np.empty((SLOTS, SQUARE_ROWS, 4))
     beside = across * samples // WIDEST
     alive = np.uintp(0)
@@ -336,11 +351,11 @@ def trace_rows(
                     begin(squares, view, corners, x, y)
                 if size == LEAST:
                     measure(rays, LEAST * LEAST, left, top, fine)
-                why = ENDS
+                why, face = ENDS, -1
                 if outside and squares[s, PLACE, LAST] < 0:
                     why = enter_square(squares, s, view, kinds, mirrors, corners)
                 if why == ENDS:
-                    why = follow(squares, s, rays, corners, len(kinds), mirrors, glass, limits)
+                    why, face = follow(squares, s, rays, corners, len(kinds), mirrors, glass, limits)
                 if why == MISSES:
                     surround_square(sums, of_row, y - band_y, of_column, x, size, surround)
                 if why in (MISSES, NOTHING):
@@ -349,18 +364,27 @@ def trace_rows(
                 if size > (SIDE if why == ENDS else LEAST):
                     s = quarter(squares, s, columns, rows)
                     continue
+                if size > LEAST:
+                    measure(rays, size * size, left, top, fine)
                 room = np.uintp(size * size)
+                to_row, to_column = np.uintp(y - band_y), np.uintp(x)
+                if why == ENDS:
+                    land(ended, room, squares, s, face, rays)
+                    end_rays(ended, each, room, body, card, ray_limits[0], texture, lights)
+                    for k in range(room):
+                        pixel = of_row[to_row + down[k]] + of_column[to_column + right[k]]
+                        for c in range(COLOURS):
+                            sums[pixel + c] += ended[TOTAL[0] + ROW * c + k]
+                    s -= 1
+                    continue
             while alive + room > np.uintp(RAYS):
-                alive = step(work, alive, home, sums, body, bounce, card, texture, lights, ray_limits)
+                alive = step(work, alive, over, home, sums, body, bounce, card, texture, lights, ray_limits)
             if s < 0:
                 break
-            if size > LEAST:
-                measure(rays, size * size, left, top, fine)
             for k in range(room):
-                i, j = int(rays[0, k]), int(rays[1, k])
                 work[RIGHT + alive + k], work[DOWN + alive + k] = rays[0, k], rays[1, k]
                 work[LENGTH + alive + k], work[WEIGHT[0] + alive + k] = rays[2, k], rays[3, k]
-                home[alive + k] = of_row[y + j - band_y] + of_column[x + i]
+                home[alive + k] = of_row[to_row + down[k]] + of_column[to_column + right[k]]
             load_square(work, alive, room, squares, s, most)
             if outside and squares[s, PLACE, LAST] < 0:
                 enter_rays(work, alive, room, (left, top, fine), view, kinds, mirrors, surround)

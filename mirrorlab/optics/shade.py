@@ -10,18 +10,18 @@ from typing import Any
 
 import numpy as np
 
-from mirrorlab.optics.compiled import compiled, inlined
+from mirrorlab.optics.compiled import inlined, inner
 from mirrorlab.optics.packet import (
     BALL,
     COLOURS,
     DRIFT,
+    FACES,
     FAR_END,
     GONE,
     HALF,
     HIT,
     MET,
     ONE,
-    OVER,
     PLACE,
     RATE,
     RISE,
@@ -31,6 +31,10 @@ from mirrorlab.optics.packet import (
     WEIGHT,
     ZERO,
 )
+from mirrorlab.optics.tile import AXES, LENGTH, LIGHT, SHARE, SIZE, line
+from mirrorlab.optics.tile import DOWN as BELOW
+from mirrorlab.optics.tile import PLACE as AT
+from mirrorlab.optics.tile import RIGHT as BESIDE
 
 # Values of `body.Face`; a compiled function takes plain numbers.
 ROOM, OBJECT, DARK = 1, 2, 3
@@ -80,7 +84,7 @@ def add(work: Any, k: Any, red: Any, green: Any, blue: Any) -> None:
     work[TOTAL[2] + k] += work[WEIGHT[2] + k] * blue
 
 
-@compiled
+@inner
 def show_object(work: Any, alive: Any, card: Any, spread: float, texture: Any) -> None:
     """Add the object's light to the rays that meet it, and let through what its picture lets through."""
     shape, half_width, _, scale_u, scale_v = card
@@ -112,16 +116,19 @@ def show_object(work: Any, alive: Any, card: Any, spread: float, texture: Any) -
             work[WEIGHT[0] + ROW * c + k] *= clear
 
 
-@compiled
-def end_rays(work: Any, alive: Any, body: Any, card: Any, spread: float, texture: Any, lights: Any) -> None:
-    """Add the light of what the rays that end here have met."""
+@inner
+def end_rays(
+    work: Any, over: Any, count: Any, body: Any, card: Any, spread: float, texture: Any, lights: Any
+) -> None:
+    """Add the light of what the rays listed in `over`, which end here, have met."""
     kinds, mirrors = body
     shape, _, _, scale_u, scale_v = card
     texels, starts, widths, heights = texture
     texels_across = np.float32(widths[0])
-    for k in range(alive):
+    for j in range(count):
+        k = over[j]
         face = int(work[HIT + k])
-        if work[OVER + k] == ZERO or face < mirrors:
+        if face < mirrors:
             continue
         kind = kinds[face]
         if kind == OBJECT and shape == FAR_END:
@@ -147,3 +154,44 @@ def end_rays(work: Any, alive: Any, body: Any, card: Any, spread: float, texture
         else:
             plain = 2 if kind == OBJECT else (3 if kind == DARK else 4)
             add(work, k, lights[plain, 0], lights[plain, 1], lights[plain, 2])
+
+
+@inlined
+def plain(squares: Any, s: int, row: int) -> tuple[Any, Any, Any, Any]:
+    """A row of a square's table as float32, its changes for one pixel."""
+    part = 1.0 / (squares[s, AT, SIZE] - 1)
+    eye, corner, across, downwards = line(squares, s, row)
+    return np.float32(eye), np.float32(corner), np.float32(across * part), np.float32(downwards * part)
+
+
+@inner
+def land(work: Any, count: Any, squares: Any, s: int, face: int, rays: Any) -> None:
+    """Put the rays of a square where they end on a face that all of them meet: what `end_rays` needs of them."""
+    here, rise = plain(squares, s, face), plain(squares, s, AXES - 1)
+    across, up = plain(squares, s, FACES), plain(squares, s, FACES + 1)
+    red, green, blue = (
+        np.float32(squares[s, LIGHT, 0]),
+        np.float32(squares[s, LIGHT, 1]),
+        np.float32(squares[s, LIGHT, 2]),
+    )
+    hit = np.float32(face)
+    for k in range(count):
+        x, y = np.float32(rays[BESIDE, k]), np.float32(rays[BELOW, k])
+        length, share = np.float32(rays[LENGTH, k]), np.float32(rays[SHARE, k])
+        change = here[1] + x * here[2] + y * here[3]
+        steps = -here[0] / change
+        slope = change / length
+        # Whichever face it is: a row that is not known would keep the loop from being widened.
+        work[RATE[0] + k], work[RATE[1] + k], work[RATE[2] + k] = slope, slope, slope
+        work[RATE[3] + k], work[RATE[4] + k], work[RATE[5] + k] = slope, slope, slope
+        work[RISE + k] = (rise[1] + x * rise[2] + y * rise[3]) / length
+        work[PLACE[0] + k] = across[0] + steps * (across[1] + x * across[2] + y * across[3])
+        work[PLACE[1] + k] = up[0] + steps * (up[1] + x * up[2] + y * up[3])
+        work[GONE + k] = steps * length
+        work[WEIGHT[0] + k], work[WEIGHT[1] + k], work[WEIGHT[2] + k] = (
+            share * red,
+            share * green,
+            share * blue,
+        )
+        work[TOTAL[0] + k], work[TOTAL[1] + k], work[TOTAL[2] + k] = ZERO, ZERO, ZERO
+        work[HIT + k] = hit

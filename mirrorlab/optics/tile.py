@@ -22,7 +22,7 @@ from __future__ import annotations
 import math
 from typing import Any
 
-from mirrorlab.optics.compiled import compiled, inlined
+from mirrorlab.optics.compiled import inlined, inner
 from mirrorlab.optics.packet import FACES
 
 WIDEST = 16
@@ -58,7 +58,7 @@ FARTHEST = 1e30
 ROOM = 1  # value of `body.Face`; a compiled function takes plain numbers
 
 
-@compiled
+@inner
 def enter(view: Any, kinds: Any, mouth: int, x: float, y: float) -> tuple[int, float]:
     """Say through which face a ray from outside comes into the body, and after how many steps.
 
@@ -91,7 +91,7 @@ def enter(view: Any, kinds: Any, mouth: int, x: float, y: float) -> tuple[int, f
     return front, near
 
 
-@compiled
+@inner
 def enter_square(squares: Any, s: int, view: Any, kinds: Any, mouth: int, corners: Any) -> int:
     """Bring a square from outside into the body; `ENDS` where it comes in."""
     left, right, top, bottom = corners
@@ -172,7 +172,7 @@ def off(mirror: Any, slant: float, x: float, y: float, steps: float) -> float:
     return away if slant > 0 else FARTHEST
 
 
-@compiled
+@inner
 def take_joints(squares: Any, s: int, face: int, glass: Any, limits: Any, rays: Any, count: int) -> None:
     """Take the light that falls on the lines of joints from each ray of one of the smallest squares."""
     joint, fine = limits[0], limits[1]
@@ -208,8 +208,8 @@ def reflect(squares: Any, s: int, face: int, glass: Any) -> None:
 @inlined
 def follow(
     squares: Any, s: int, rays: Any, corners: Any, faces: int, mirrors: int, glass: Any, limits: Any
-) -> int:
-    """Follow a square as far as its corners go together, and say why no further.
+) -> tuple[int, int]:
+    """Follow a square as far as its corners go together; return why no further, and the face met if it ends.
 
     Parameters
     ----------
@@ -237,16 +237,16 @@ def follow(
     )
     while True:
         if radius >= 0 and may_see_object(squares, s, reach, radius):
-            return SPLIT
+            return SPLIT, -1
         face, nearest, farthest = agree(squares, s, faces, mirrors, glass, lengths)
         if face < 0:
-            return SPLIT
+            return SPLIT, -1
         if face >= mirrors:
-            return ENDS
+            return ENDS, face
         # What a joint takes begins half a pixel beside its line.
         if nearest < joint + 0.5 * farthest * fine:
             if squares[s, PLACE, SIZE] > LEAST:
-                return SPLIT
+                return SPLIT, -1
             take_joints(squares, s, face, glass, limits, rays, int(squares[s, PLACE, SIZE]) ** 2)
         brightest = 0.0
         for c in range(3):
@@ -254,12 +254,12 @@ def follow(
             brightest = max(brightest, squares[s, LIGHT, c])
         squares[s, LIGHT, 3] += 1
         if brightest < faintest or squares[s, LIGHT, 3] >= most:
-            return NOTHING
+            return NOTHING, -1
         squares[s, PLACE, LAST] = face
         reflect(squares, s, face, glass)
 
 
-@compiled
+@inner
 def begin(squares: Any, view: Any, corners: Any, x: int, y: int) -> None:
     """Put one of the widest squares, as the eye sees it, into the first slot."""
     left, right, top, bottom = corners
@@ -275,7 +275,7 @@ def begin(squares: Any, view: Any, corners: Any, x: int, y: int) -> None:
     squares[0, PLACE, SIZE], squares[0, PLACE, LAST] = WIDEST, -1
 
 
-@compiled
+@inner
 def quarter(squares: Any, s: int, columns: int, rows: int) -> int:
     """Put the quarters of a square that lie in the view in its place; return the last one's slot."""
     size, last = squares[s, PLACE, SIZE], s
