@@ -227,7 +227,11 @@ class Filing(QObject):
 
 def _reason(error: Exception, path: Path) -> str:
     """The error's message without the path that the sentence has named already."""
-    return str(error).removeprefix(f"{path}: ").removeprefix(f"{path.name}: ")
+    told = str(error)
+    for name in (str(path), path.name):
+        for beside in (": ", ", "):
+            told = told.removeprefix(name + beside)
+    return told
 
 
 def _file_name(name: str) -> str:
