@@ -94,15 +94,11 @@ def pick(work: Any, alive: Any, over: Any) -> Any:
 
 
 @inlined
-def pack(work: Any, alive: Any, over: Any, count: Any, home: Any, sums: Any) -> Any:
-    """Write out the rays that have ended, fill their places from the back, and return how many go on."""
+def pack(work: Any, alive: Any, over: Any, count: Any, home: Any) -> Any:
+    """Fill the places of rays that have ended from the back; return how many go on."""
     while count > np.uintp(0):
         count -= np.uintp(1)
         k = over[count]
-        pixel = home[k]
-        sums[pixel] += work[TOTAL[0] + k]
-        sums[pixel + np.uintp(1)] += work[TOTAL[1] + k]
-        sums[pixel + np.uintp(2)] += work[TOTAL[2] + k]
         # From the back, so that the last one is known to go on.
         alive -= np.uintp(1)
         if k < alive:
@@ -165,8 +161,8 @@ def step(
     ended = dim(work, eights, slants, losses, joint, spread, np.float32(body[1]), faintest)
     if ended > np.float32(eights - alive):
         count = pick(work, alive, over)
-        end_rays(work, over, count, body, card, spread, texture, lights)
-        alive = pack(work, alive, over, count, home, sums)
+        end_rays(work, over, count, home, sums, body, card, spread, texture, lights)
+        alive = pack(work, alive, over, count, home)
     turn(work, whole_eights(alive), products)
     return alive
 
@@ -250,11 +246,13 @@ def surround_square(sums: Any, of_row: Any, y: int, of_column: Any, x: int, size
 def write(out: Any, band: int, last: int, sums: Any, across: int, share: Any, table: Any) -> None:
     """Write a band of rows out as bytes."""
     top = np.float32(len(table) - 1)
-    for row in range(band, min(band + WIDEST, last)):
-        for column_at in range(out.shape[1]):
-            for c in range(3):
-                light = sums[3 * ((row - band) * across + column_at) + c] * share
-                out[row, column_at, c] = table[int(min(max(light, ZERO), ONE) * top + HALF)]
+    pixels, width = out.reshape(-1), np.uintp(out.shape[1])
+    for row in range(min(WIDEST, last - band)):
+        here, there = np.uintp(4 * across * row), np.uintp(COLOURS) * width * np.uintp(band + row)
+        for k in range(width):
+            for c in range(COLOURS):
+                light = min(max(sums[here + np.uintp(4) * k + c] * share, ZERO), ONE)
+                pixels[there + COLOURS * k + c] = table[np.uint32(light * top + HALF)]
 
 
 @compiled
@@ -316,16 +314,16 @@ def trace_rows(
     ray_limits = (np.float32(fine), np.float32(faintest))
     # Whole squares stick out of the view; the sums have room for that.
     across = (out.shape[1] + WIDEST - 1) // WIDEST * WIDEST
-    sums = np.empty(3 * WIDEST * across, np.float32)
+    sums = np.empty(4 * WIDEST * across, np.float32)
     of_column, of_row = np.empty(across * samples, np.uintp), np.empty(WIDEST * samples, np.uintp)
     for k in range(across * samples):
-        of_column[k] = k // samples * 3
+        of_column[k] = k // samples * 4
     for k in range(WIDEST * samples):
-        of_row[k] = k // samples * 3 * across
+        of_row[k] = k // samples * 4 * across
     work, home, rays = np.zeros(ROWS * RAYS, np.float32), np.empty(RAYS, np.uintp), order()
     right, down = rays[0].astype(np.uintp), rays[1].astype(np.uintp)
     each, over = np.arange(RAYS).astype(np.uintp), np.empty(RAYS, np.uintp)
-    ended = np.zeros(ROWS * RAYS, np.float32)
+    ended, ends_at = np.zeros(ROWS * RAYS, np.float32), np.empty(RAYS, np.uintp)
     squares = np.empty((SLOTS, SQUARE_ROWS, 4))
     beside = across * samples // WIDEST
     alive = np.uintp(0)
@@ -355,7 +353,7 @@ def trace_rows(
                 if outside and squares[s, PLACE, LAST] < 0:
                     why = enter_square(squares, s, view, kinds, mirrors, corners)
                 if why == ENDS:
-                    why, face = follow(squares, s, rays, corners, len(kinds), mirrors, glass, limits)
+                    why, face = follow(squares, s, rays, corners, mirrors, glass, limits)
                 if why == MISSES:
                     surround_square(sums, of_row, y - band_y, of_column, x, size, surround)
                 if why in (MISSES, NOTHING):
@@ -370,11 +368,9 @@ def trace_rows(
                 to_row, to_column = np.uintp(y - band_y), np.uintp(x)
                 if why == ENDS:
                     land(ended, room, squares, s, face, rays)
-                    end_rays(ended, each, room, body, card, ray_limits[0], texture, lights)
                     for k in range(room):
-                        pixel = of_row[to_row + down[k]] + of_column[to_column + right[k]]
-                        for c in range(COLOURS):
-                            sums[pixel + c] += ended[TOTAL[0] + ROW * c + k]
+                        ends_at[k] = of_row[to_row + down[k]] + of_column[to_column + right[k]]
+                    end_rays(ended, each, room, ends_at, sums, body, card, ray_limits[0], texture, lights)
                     s -= 1
                     continue
             while alive + room > np.uintp(RAYS):

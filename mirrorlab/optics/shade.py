@@ -36,6 +36,8 @@ from mirrorlab.optics.tile import DOWN as BELOW
 from mirrorlab.optics.tile import PLACE as AT
 from mirrorlab.optics.tile import RIGHT as BESIDE
 
+ONE_ON, TWO_ON, THREE_ON = (np.uintp(k) for k in (1, 2, 3))
+
 # Values of `body.Face`; a compiled function takes plain numbers.
 ROOM, OBJECT, DARK = 1, 2, 3
 
@@ -67,7 +69,7 @@ def sample(
     c, d = a + step, b + step
     # No store between the reads, so that all stays in registers.
     p, q, r, s = (ONE - fx) * (ONE - fy), fx * (ONE - fy), (ONE - fx) * fy, fx * fy
-    i, j, k = np.uintp(1), np.uintp(2), np.uintp(3)
+    i, j, k = ONE_ON, TWO_ON, THREE_ON
     return (
         p * texels[a] + q * texels[b] + r * texels[c] + s * texels[d],
         p * texels[a + i] + q * texels[b + i] + r * texels[c + i] + s * texels[d + i],
@@ -116,19 +118,42 @@ def show_object(work: Any, alive: Any, card: Any, spread: float, texture: Any) -
             work[WEIGHT[0] + ROW * c + k] *= clear
 
 
+@inlined
+def put(sums: Any, pixel: Any, work: Any, k: Any, red: Any, green: Any, blue: Any, rest: Any) -> None:
+    """Add to a pixel what its ray k has gathered, and this light, as dim as the ray has become."""
+    # A fourth colour that means nothing: so the compiler does four at once.
+    one, two, three, four = sums[pixel], sums[pixel + ONE_ON], sums[pixel + TWO_ON], sums[pixel + THREE_ON]
+    one += work[TOTAL[0] + k] + work[WEIGHT[0] + k] * red
+    two += work[TOTAL[1] + k] + work[WEIGHT[1] + k] * green
+    three += work[TOTAL[2] + k] + work[WEIGHT[2] + k] * blue
+    four += rest
+    sums[pixel], sums[pixel + ONE_ON], sums[pixel + TWO_ON], sums[pixel + THREE_ON] = one, two, three, four
+
+
 @inner
 def end_rays(
-    work: Any, over: Any, count: Any, body: Any, card: Any, spread: float, texture: Any, lights: Any
+    work: Any,
+    over: Any,
+    count: Any,
+    home: Any,
+    sums: Any,
+    body: Any,
+    card: Any,
+    spread: float,
+    texture: Any,
+    lights: Any,
 ) -> None:
-    """Add the light of what the rays listed in `over`, which end here, have met."""
+    """Write out the rays listed in `over`, which end here, with the light of what they have met."""
     kinds, mirrors = body
     shape, _, _, scale_u, scale_v = card
     texels, starts, widths, heights = texture
     texels_across = np.float32(widths[0])
+    behind = (lights[2, 0], lights[2, 1], lights[2, 2])
     for j in range(count):
         k = over[j]
-        face = int(work[HIT + k])
+        face, pixel = int(work[HIT + k]), home[k]
         if face < mirrors:
+            put(sums, pixel, work, k, ZERO, ZERO, ZERO, ZERO)
             continue
         kind = kinds[face]
         if kind == OBJECT and shape == FAR_END:
@@ -138,22 +163,18 @@ def end_rays(
             blur = work[GONE + k] * spread * fineness
             red, green, blue, opacity = sample(texels, starts, widths, heights, u, v, blur)
             clear = ONE - opacity
-            add(
-                work, k, red + clear * lights[2, 0], green + clear * lights[2, 1], blue + clear * lights[2, 2]
-            )
+            red, green, blue = red + clear * behind[0], green + clear * behind[1], blue + clear * behind[2]
+            put(sums, pixel, work, k, red, green, blue, opacity)
         elif kind == ROOM:
             rise = HALF + HALF * work[RISE + k]
             fall = ONE - rise
-            add(
-                work,
-                k,
-                fall * lights[0, 0] + rise * lights[1, 0],
-                fall * lights[0, 1] + rise * lights[1, 1],
-                fall * lights[0, 2] + rise * lights[1, 2],
-            )
+            red = fall * lights[0, 0] + rise * lights[1, 0]
+            green = fall * lights[0, 1] + rise * lights[1, 1]
+            blue = fall * lights[0, 2] + rise * lights[1, 2]
+            put(sums, pixel, work, k, red, green, blue, ZERO)
         else:
             plain = 2 if kind == OBJECT else (3 if kind == DARK else 4)
-            add(work, k, lights[plain, 0], lights[plain, 1], lights[plain, 2])
+            put(sums, pixel, work, k, lights[plain, 0], lights[plain, 1], lights[plain, 2], ZERO)
 
 
 @inlined

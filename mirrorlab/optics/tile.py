@@ -23,7 +23,7 @@ import math
 from typing import Any
 
 from mirrorlab.optics.compiled import inlined, inner
-from mirrorlab.optics.packet import FACES
+from mirrorlab.optics.packet import FACES, MIRRORS
 
 WIDEST = 16
 """Pixels along a side of a square that is first tried as one."""
@@ -105,19 +105,20 @@ def enter_square(squares: Any, s: int, view: Any, kinds: Any, mouth: int, corner
 
 
 @inlined
-def agree(
-    squares: Any, s: int, faces: int, mirrors: int, glass: Any, lengths: Any
-) -> tuple[int, float, float]:
+def agree(squares: Any, s: int, glass: Any, lengths: Any) -> tuple[int, float, float]:
     """Return the face that all four corners meet first, −1 if they differ.
 
     Returns also how near the square comes to a joint there, and how far its farthest corner has gone. Both are
     extreme at a corner: the one is linear on the face, the other convex.
     """
+    # No branches where they would often be guessed wrongly. Faces that are not there are never met nor crossed.
     best, which = FARTHEST, -1
-    for i in range(faces):
+    for i in range(FACES):
         change = squares[s, i, CORNER]
-        if change < 0 and squares[s, i, EYE] < best * -change:
-            best, which = squares[s, i, EYE] / -change, i
+        steps = squares[s, i, EYE] / -change
+        steps = steps if change < 0 else FARTHEST
+        which = i if steps < best else which
+        best = min(steps, best)
     if which < 0:
         return -1, 0.0, 0.0
     first = squares[s, which, CORNER]
@@ -125,21 +126,24 @@ def agree(
     fourth = second + squares[s, which, DOWNWARDS]
     if (second >= 0) | (third >= 0) | (fourth >= 0):
         return -1, 0.0, 0.0
-    height, nearest = squares[s, which, EYE], FARTHEST
+    height, least, nearest, row = squares[s, which, EYE], FARTHEST, FARTHEST, min(which, MIRRORS - 1)
     a, b, c, d = best, height / -second, height / -third, height / -fourth
-    for i in range(faces):
-        if i != which:
-            # Where a corner meets the face, no other face has been crossed: all heights are over zero.
-            height, first, down = squares[s, i, EYE], squares[s, i, CORNER], squares[s, i, DOWNWARDS]
-            second = first + squares[s, i, ACROSS]
-            lowest = min(
-                min(height + a * first, height + b * second),
-                min(height + c * (first + down), height + d * (second + down)),
-            )
-            if lowest < 0:
-                return -1, 0.0, 0.0
-            if i < mirrors and which < mirrors and glass[which, OFF + i] > 0:
-                nearest = min(nearest, lowest * glass[which, OFF + i])
+    for i in range(FACES):
+        # Where a corner meets the face, no other face has been crossed: all heights are over zero.
+        height, first, down = squares[s, i, EYE], squares[s, i, CORNER], squares[s, i, DOWNWARDS]
+        second = first + squares[s, i, ACROSS]
+        lowest = min(
+            min(height + a * first, height + b * second),
+            min(height + c * (first + down), height + d * (second + down)),
+        )
+        lowest = lowest if i != which else FARTHEST
+        least = min(least, lowest)
+        if i < MIRRORS:
+            slant = glass[row, OFF + i]
+            away = lowest * slant if slant > 0 else FARTHEST
+            nearest = min(nearest, away)
+    if least < 0:
+        return -1, 0.0, 0.0
     farthest = max(max(a * lengths[0], b * lengths[1]), max(c * lengths[2], d * lengths[3]))
     return which, nearest, farthest
 
@@ -207,7 +211,7 @@ def reflect(squares: Any, s: int, face: int, glass: Any) -> None:
 
 @inlined
 def follow(
-    squares: Any, s: int, rays: Any, corners: Any, faces: int, mirrors: int, glass: Any, limits: Any
+    squares: Any, s: int, rays: Any, corners: Any, mirrors: int, glass: Any, limits: Any
 ) -> tuple[int, int]:
     """Follow a square as far as its corners go together; return why no further, and the face met if it ends.
 
@@ -238,7 +242,7 @@ def follow(
     while True:
         if radius >= 0 and may_see_object(squares, s, reach, radius):
             return SPLIT, -1
-        face, nearest, farthest = agree(squares, s, faces, mirrors, glass, lengths)
+        face, nearest, farthest = agree(squares, s, glass, lengths)
         if face < 0:
             return SPLIT, -1
         if face >= mirrors:
