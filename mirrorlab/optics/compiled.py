@@ -30,12 +30,23 @@ INNER: dict[str, Any] = {"no_cpython_wrapper": True, "no_cfunc_wrapper": True}
 
 def compiled(function: Callable[..., Any]) -> Any:
     """Return the function compiled on first call, its machine code kept in `cache_folder` where there is one."""
-    return _compiled(function)
+    folder = cache_folder()
+    if folder is not None:
+        before = numba.config.CACHE_DIR
+        numba.config.CACHE_DIR = str(folder)
+        try:
+            return numba.njit(cache=True, **OPTIONS)(function)
+        except (RuntimeError, OSError):
+            pass
+        finally:
+            numba.config.CACHE_DIR = before
+    return numba.njit(**OPTIONS)(function)
 
 
 def inner(function: Callable[..., Any]) -> Any:
     """Return the function compiled for other compiled ones to call; never call it from Python, there is no way in."""
-    return _compiled(function, **INNER)
+    # Not kept on disk: what is kept of the function that calls it has it within.
+    return numba.njit(**OPTIONS, **INNER)(function)
 
 
 def inlined(function: Callable[..., Any]) -> Any:
@@ -43,21 +54,7 @@ def inlined(function: Callable[..., Any]) -> Any:
 
     Left to itself the compiler makes it a call, and an array is seven arguments of one.
     """
-    return _compiled(function, forceinline=True, **INNER)
-
-
-def _compiled(function: Callable[..., Any], **more: Any) -> Any:
-    folder = cache_folder()
-    if folder is not None:
-        before = numba.config.CACHE_DIR
-        numba.config.CACHE_DIR = str(folder)
-        try:
-            return numba.njit(cache=True, **OPTIONS, **more)(function)
-        except (RuntimeError, OSError):
-            pass
-        finally:
-            numba.config.CACHE_DIR = before
-    return numba.njit(**OPTIONS, **more)(function)
+    return numba.njit(forceinline=True, **OPTIONS, **INNER)(function)
 
 
 @lru_cache(maxsize=1)

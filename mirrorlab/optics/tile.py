@@ -22,6 +22,8 @@ from __future__ import annotations
 import math
 from typing import Any
 
+import numpy as np
+
 from mirrorlab.optics.compiled import inlined, inner
 from mirrorlab.optics.packet import FACES, MIRRORS
 
@@ -41,8 +43,8 @@ LIGHT, PLACE, SQUARE_ROWS = AXES, AXES + 1, AXES + 2
 X, Y, SIZE, LAST = range(4)
 """Its place: the first pixel, pixels along a side, the face that it comes through (−1: the eye is inside)."""
 
-EYE, CORNER, ACROSS, DOWNWARDS = range(4)
-"""Columns of a square's table."""
+EYE, CORNER, ACROSS, DOWNWARDS = (np.intp(k) for k in range(4))
+"""Columns of a square's table; of numpy's type, or a function that takes one would be compiled for each."""
 
 RIGHT, DOWN, LENGTH, SHARE = range(4)
 """Rows of a square's rays: pixels right and down, length of a step, what the lines of joints leave of its light."""
