@@ -13,7 +13,7 @@ from mirrorlab.desktop.document import Document
 from mirrorlab.desktop.glass.answers import Answer
 from mirrorlab.desktop.glass.glass_section import GlassSection, told
 from mirrorlab.desktop.parts import button, label
-from mirrorlab.desktop.rows import Column
+from mirrorlab.desktop.rows import Column, fixed
 from mirrorlab.desktop.words import PARITIES
 from mirrorlab.drawing.model import Key
 from mirrorlab.mirrors import Arrangement, Orbit
@@ -181,7 +181,4 @@ def image_columns(found: ImageCount) -> list[Column]:
             text=True,
         ),
     ]
-    return columns + [
-        Column(f"{axis} mm", places[:, k], lambda v: f"{v + 0.0:.2f}".replace("-", "−"))
-        for k, axis in enumerate("xyz")
-    ]
+    return columns + [Column(f"{axis} mm", places[:, k], fixed(2)) for k, axis in enumerate("xyz")]

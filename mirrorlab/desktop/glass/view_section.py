@@ -17,7 +17,7 @@ from mirrorlab.desktop.glass.glass_section import GlassSection, told
 from mirrorlab.desktop.glass.glass_state import WORDS
 from mirrorlab.desktop.glass.workings import hazards
 from mirrorlab.desktop.parts import Segments, button, label
-from mirrorlab.desktop.rows import Column
+from mirrorlab.desktop.rows import Column, fixed
 from mirrorlab.optics.cautions import Place, cautions_for
 from mirrorlab.optics.lengths import AssemblyError
 from mirrorlab.optics.pattern import PATTERNS
@@ -174,15 +174,13 @@ class ViewSection(GlassSection):
             places = {"eye": made.eye, "looked at": made.target, "object": made.place.centre}
             table = np.array(list(places.values()))
             columns = [Column("place", list(places), text=True)]
-            columns += [
-                Column(f"{axis} mm", table[:, k], lambda v: f"{v + 0.0:.2f}") for k, axis in enumerate(AXES)
-            ]
+            columns += [Column(f"{axis} mm", table[:, k], fixed(2)) for k, axis in enumerate(AXES)]
             heights = np.array([made.heights(spot) for spot in places.values()])
             columns += [
                 Column(
                     f"from {letter} mm",
                     heights[:, k],
-                    lambda v: f"{v + 0.0:.2f}",
+                    fixed(2),
                     "distance before the mirror",
                 )
                 for k, letter in enumerate(made.letters)
