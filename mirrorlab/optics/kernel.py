@@ -251,7 +251,10 @@ def write(out: Any, band: int, last: int, sums: Any, across: int, share: Any, ta
         here, there = np.uintp(4 * across * row), np.uintp(COLOURS) * width * np.uintp(band + row)
         for k in range(width):
             for c in range(COLOURS):
-                light = min(max(sums[here + np.uintp(4) * k + c] * share, ZERO), ONE)
+                light = sums[here + np.uintp(4) * k + c] * share
+                light = (
+                    min(light, ONE) if light > ZERO else ZERO
+                )  # what is no number must not lead out of the table
                 pixels[there + COLOURS * k + c] = table[np.uint32(light * top + HALF)]
 
 

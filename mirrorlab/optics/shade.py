@@ -59,8 +59,10 @@ def sample(
         blur *= HALF
         level += np.uintp(1)
     width, height = widths[level], heights[level]
-    x = min(max(u * np.float32(width) - HALF, ZERO), np.float32(width - 1))
-    y = min(max(v * np.float32(height) - HALF, ZERO), np.float32(height - 1))
+    # Written so that what is no number reads the first texel, not one that is not there.
+    x, y = u * np.float32(width) - HALF, v * np.float32(height) - HALF
+    x = min(x, np.float32(width - 1)) if x > ZERO else ZERO
+    y = min(y, np.float32(height - 1)) if y > ZERO else ZERO
     column, row = np.int32(x), np.int32(y)
     fx, fy = x - np.float32(column), y - np.float32(row)
     a = np.uintp((starts[level] + row * width + column) * 4)
