@@ -29,6 +29,9 @@ fractions up to m = 360 lie close: at 1e-6 one pair of planes in forty would fin
 MOST_TOLERANCE = 1e-4
 """Widest tolerance for given normals, in radians: beyond it the planes are measured, not given."""
 
+SPACE = 3
+"""Coordinates are called x, y, z in up to so many dimensions, else x1, x2, …"""
+
 DEFAULT_SETTINGS = AngleSettings()
 
 
@@ -189,9 +192,11 @@ class Arrangement:
         """Which axes coordinates are in."""
         if self.given_normals:
             return "the axes of the given normals; origin where the mirrors meet"
+        dimension = 0 if self.normals is None else self.normals.shape[1]
+        first, plane = ("x1", "x1 x2") if dimension > SPACE else ("x", "xy")
         return (
-            "Cartesian, right-handed; x along the inward normal of a, the normal of b in the xy plane"
-            + (", z along the edge of a and b" if self.size > 2 else "")
+            f"Cartesian, right-handed; {first} along the inward normal of a, the normal of b in the {plane} plane"
+            + (", z along the edge of a and b" if dimension == SPACE else "")
             + "; origin where the mirrors meet"
         )
 

@@ -48,9 +48,8 @@ def test_normals_have_the_typed_angles_in_the_stated_frame(name):
     assert np.abs(np.triu(n, 1)).max() == 0
     assert (np.diag(n) > 0).all()
     assert n[0, 0] == 1
-    if arrangement.size > 2:
-        assert "z along the edge of a and b" in arrangement.frame
-        assert (n[:2, 2:] == 0).all()
+    assert ("z along the edge of a and b" in arrangement.frame) == (arrangement.size == 3)
+    assert (n[:2, 2:] == 0).all()
 
 
 def test_a_tube_has_normals_in_a_plane():
@@ -123,6 +122,14 @@ def test_with_angle_changes_one_pair_only():
 def test_finding_is_made_once():
     arrangement = Arrangement.from_angles(["90", "60", "45"])
     assert arrangement.finding() is arrangement.finding()
+
+
+def test_the_frame_names_the_coordinates_there_are():
+    assert "x1 x2 plane" in Arrangement.from_family("A4").frame
+    assert "z along" not in Arrangement.from_family("A4").frame
+    assert "z along" not in Arrangement.from_angles(["60", "60", "60"]).frame, (
+        "a tube's mirrors stand in a plane"
+    )
 
 
 def test_normals_of_any_length_and_their_frame():
