@@ -17,11 +17,10 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from mirrorlab.angles import AngleSettings
+from mirrorlab.angles import STYLES, AngleSettings
 from mirrorlab.desktop.document import FEWEST_MIRRORS, MOST_MIRRORS, Document
 from mirrorlab.desktop.parts import Elided, button, inset, label, rule
 from mirrorlab.desktop.reading import PairReading
-from mirrorlab.desktop.state import NOTATIONS
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.triangle import Triangle
 from mirrorlab.desktop.ways_in import WaysIn
@@ -148,7 +147,7 @@ class ReadingSettings(QWidget):
         self.notation = QComboBox()
         self.notation.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.notation.setMinimumContentsLength(6)
-        for value, text in zip(NOTATIONS, EXAMPLES, strict=True):
+        for value, text in zip(STYLES, EXAMPLES, strict=True):
             self.notation.addItem(text, value)
         form = QFormLayout(self)
         form.setContentsMargins(0, 0, 0, 0)

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from PySide6.QtCore import QSettings
 
-from mirrorlab.desktop.state import MOST_IMAGES_RANGE, NOTATIONS, Settings
+from mirrorlab.angles import STYLES
+from mirrorlab.desktop.state import MOST_IMAGES_RANGE, Settings
 
 NOTATION, MOST_IMAGES = "notation", "most images"
 
@@ -19,7 +20,7 @@ def kept_settings(store: QSettings) -> Settings:
         most = plain.most_images
     low, high = MOST_IMAGES_RANGE
     return Settings(
-        notation=notation if notation in NOTATIONS else plain.notation,
+        notation=notation if notation in STYLES else plain.notation,
         most_images=most if low <= most <= high else plain.most_images,
     )
 

@@ -31,7 +31,6 @@ class Seed:
     rotations: bool = False
 
 
-NOTATIONS = ("degrees", "pi", "dms")
 MOST_IMAGES_RANGE = (1000, 50_000_000)
 """What the limit of images may be set to."""
 

@@ -117,9 +117,3 @@ def test_the_verbs_that_write_angles_take_it_and_no_others(answer: Answer) -> No
     assert taking == TAKERS
     status, out, err = answer("check", "90", "--write-as", "grads")
     assert (status, out, err.count("\n")) == (2, "", 1)
-
-
-def test_the_window_offers_the_same_ways() -> None:
-    from mirrorlab.desktop.state import NOTATIONS
-
-    assert tuple(NOTATIONS) == STYLES

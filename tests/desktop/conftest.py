@@ -4,19 +4,22 @@ from __future__ import annotations
 
 import gc
 import threading
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator, Sequence
 from pathlib import Path
 
 import pytest
 import shiboken6
 from PySide6.QtCore import QEvent, QSettings, Qt, QThread, QTimer
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QLineEdit
 
 from mirrorlab.desktop.app import first_state, make_window
+from mirrorlab.desktop.bench_section import BenchSection
 from mirrorlab.desktop.document import Document
+from mirrorlab.desktop.section_bench import SectionBench
 from mirrorlab.desktop.theming import theming
 from mirrorlab.desktop.window import FIRST_SIZE, Window
+from mirrorlab.mirrors import Arrangement
 
 
 @pytest.fixture
@@ -89,6 +92,44 @@ def window(one_window: Window, settings: QSettings) -> Iterator[Window]:
         assert QTest.qWaitForWindowActive(one_window, 10_000)
     yield one_window
     clear(one_window)
+
+
+@pytest.fixture
+def section(bench: SectionBench) -> Callable[[str], BenchSection]:
+    """Open a section of the bench in sight by clicking its chip."""
+
+    def open_section(name: str) -> BenchSection:
+        QTest.mouseClick(bench.chips.button(list(bench.sections).index(name)), Qt.MouseButton.LeftButton)
+        assert bench.section is bench.sections[name]
+        assert bench.section.isVisible()
+        return bench.section
+
+    return open_section
+
+
+@pytest.fixture
+def put(window: Window) -> Callable[[Sequence[str]], None]:
+    """Put mirrors of these angles on the sheet."""
+
+    def put_angles(texts: Sequence[str]) -> None:
+        window.document.put_sheet(Arrangement.from_angles(texts), "test")
+
+    return put_angles
+
+
+@pytest.fixture
+def type_into() -> Callable[[QLineEdit, str], None]:
+    """Type into a field with the keyboard; no text empties it."""
+
+    def typing(field: QLineEdit, text: str) -> None:
+        field.setFocus(Qt.FocusReason.TabFocusReason)
+        field.selectAll()
+        if text:
+            QTest.keyClicks(field, text)
+        else:
+            QTest.keyClick(field, Qt.Key.Key_Delete)
+
+    return typing
 
 
 def clear(window: Window) -> None:

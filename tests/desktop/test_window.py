@@ -12,6 +12,7 @@ from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QAbstractButton, QAbstractSpinBox, QApplication, QLabel, QWidget
 from pytestqt.qtbot import QtBot
 
+from mirrorlab.angles import STYLES
 from mirrorlab.desktop import app
 from mirrorlab.desktop.bench import BENCHES
 from mirrorlab.desktop.own_settings import kept_settings
@@ -170,6 +171,11 @@ def test_short_work_does_not_flash(window: Window, qtbot: QtBot) -> None:
         window.document.work.start("something short", lambda progress: 1, lambda r: None)
     qtbot.wait(SOON + 100)
     assert not window.status.working.isVisible()
+
+
+def test_the_window_offers_the_ways_to_write_that_there_are(window: Window) -> None:
+    box = window.mirrors.settings.notation
+    assert tuple(box.itemData(k) for k in range(box.count())) == STYLES
 
 
 def test_notation_and_limit_are_the_users_own(window: Window) -> None:
